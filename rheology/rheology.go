@@ -1,0 +1,48 @@
+// Package rheology gives the viscosity of rock: creep laws and their catalogue,
+// the effective viscosity at a strain rate, and the tangent stress exponent.
+//
+// Every law is kept in invariant SI form,
+//
+//	ε_II = A τ_II^n d^-m f^r exp(-(E + P V)/(R T)),
+//
+// with ε_II² = ½ ε:ε in 1/s, τ_II² = ½ τ:τ in Pa, d the grain size in m, f the
+// water fugacity in Pa or the water content in H per 10⁶ Si, P the lithostatic
+// pressure in Pa. The secant viscosity is η = τ_II/(2 ε_II) in Pa s.
+// Not covered yet: low-temperature plasticity, melt, frictional yield, mixtures.
+package rheology
+
+// GasConstant is R in J/(mol K); exact since the 2019 SI definition.
+const GasConstant = 8.31446261815324
+
+// WaterMeasure says how a law counts water.
+type WaterMeasure int
+
+// A law needs no water value, a fugacity in Pa, or a content in H per 10⁶ Si.
+// The two forms of one law have different constants and are never mixed.
+const (
+	NoWater WaterMeasure = iota
+	WaterFugacity
+	WaterContent
+)
+
+// Conditions are what a creep law is evaluated at.
+type Conditions struct {
+	T         float64 // temperature, K, > 0
+	P         float64 // lithostatic pressure, Pa, >= 0
+	GrainSize float64 // m; 0 where no law needs it
+	Water     float64 // Pa or H/10⁶ Si, as the law's WaterMeasure says; 0 where no law needs it
+}
+
+// Limits bound a creep viscosity, in Pa s. The highest acts as one more Newtonian
+// mechanism at the same stress, the lowest as a dashpot at the same strain rate.
+// Zero means no limit.
+type Limits struct{ Lowest, Highest float64 }
+
+// Response is how a rock answers one strain rate.
+type Response struct {
+	Stress    float64 // τ_II, Pa
+	Viscosity float64 // τ_II/(2 ε_II), Pa s
+	Exponent  float64 // tangent exponent n = d ln ε_II/d ln τ_II
+	Capped    bool    // more than half the strain rate is taken by the upper limit
+	Floored   bool    // more than half the stress is carried by the lower limit
+}
