@@ -1,0 +1,78 @@
+// Package growth computes linear growth rates of a layered viscous column.
+package growth
+
+// Boundary is a mechanical boundary condition of the column's top or base.
+type Boundary int
+
+// The top is Free, FreeSlip or Rigid; the base HalfSpace, Inviscid, FreeSlip or Rigid.
+const (
+	Free Boundary = iota
+	FreeSlip
+	Rigid
+	HalfSpace
+	Inviscid
+)
+
+// Layer is one layer of constant or smoothly varying rock.
+type Layer struct {
+	Thickness float64 // m, > 0
+	// Viscosity returns η_S and η_N in Pa s at depth z (m, in the column), both > 0.
+	// It must be smooth inside the layer except at Kinks.
+	Viscosity func(z float64) (etaS, etaN float64)
+	Kinks     []float64 // depths in m, increasing, where the viscosity's slope jumps
+	// Gradient returns the compositional density gradient ρ_c in kg/m⁴ at depth z;
+	// nil where composition is uniform.
+	Gradient func(z float64) float64
+}
+
+// Column is what the growth solver needs of a column, SI.
+type Column struct {
+	Gravity   float64 // m/s²
+	Top, Base Boundary
+	Layers    []Layer // from the surface down
+	// Jumps are [ρ] below minus above in kg/m³: the surface first, then each contact,
+	// last the base of the last layer (len(Layers)+1 values). The first counts only
+	// under a Free top, the last only over HalfSpace and Inviscid.
+	Jumps          []float64
+	EtaS, EtaN     float64 // half-space viscosities, Pa s
+	ShearRate      float64 // d of the background, 1/s: (e_k − e_z)/2
+	VerticalStrain float64 // e_z of the background, 1/s
+}
+
+// Rate is the leading growth rate at one wavelength.
+type Rate struct {
+	Wavelength    float64 // m
+	Growth        float64 // largest real part over all modes, 1/s
+	Imaginary     float64 // its imaginary part, 1/s, >= 0
+	RelativeError float64 // estimated, of the complex rate
+}
+
+// Peak is a local maximum of growth against wavelength.
+type Peak struct {
+	Wavelength  float64 // m
+	Growth      float64 // 1/s
+	AtRangeEdge bool    // the largest value sits at an end of the range, so no maximum was bracketed
+}
+
+// Spectrum is growth against wavelength.
+type Spectrum struct {
+	Rates   []Rate // by increasing wavelength, or in the order asked for
+	Peaks   []Peak // by decreasing growth; maxima inside the range
+	Fastest Peak   // over the whole range
+	Mode    *Mode  // at Fastest; nil where every interface is neutral
+}
+
+// Mode is one eigenmode: shape, budget and sensitivities. Amplitudes are scaled so
+// that the largest |interface displacement| is 1 m; W and U are then in 1/s × 1 m.
+type Mode struct {
+	Wavelength, Growth, Imaginary float64
+	Displacement                  []float64 // of each interface: surface, contacts, base; 0 where it cannot move
+	Depth, W, U, Shear, Normal    []float64 // profile: z (m), vertical and horizontal velocity amplitude (m/s), S and Σ (Pa)
+	DissipationShare              []float64 // of each layer, the half-space last; sums to 1
+	WorkShare                     []float64 // of each interface; with GradientWork sums to 1
+	GradientWork                  []float64 // of each layer's compositional gradient
+	DlnqDlnEta                    []float64 // ∂ln q/∂ln η of each layer, the half-space last
+	DqDrho                        []float64 // ∂q/∂ρ of each layer, the half-space last, 1/s per kg/m³
+	DqDh                          []float64 // ∂q/∂h of each layer, everything below moving down with it, 1/s per m
+	MaxShearRate                  float64   // largest second invariant of the mode's strain rate, 1/s per m of amplitude
+}
