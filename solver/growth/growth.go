@@ -74,5 +74,7 @@ type Mode struct {
 	DlnqDlnEta                    []float64 // ∂ln q/∂ln η of each layer, the half-space last
 	DqDrho                        []float64 // ∂q/∂ρ of each layer, the half-space last, 1/s per kg/m³
 	DqDh                          []float64 // ∂q/∂h of each layer, everything below moving down with it, 1/s per m
+	Layer                         []int     // of each profile point
+	Residual                      float64   // relative gap between work and dissipation (d = 0)
 	MaxShearRate                  float64   // largest second invariant of the mode's strain rate, 1/s per m of amplitude
 }

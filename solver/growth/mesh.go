@@ -1,0 +1,166 @@
+package growth
+
+import "math"
+
+// mesh is a division of the column that serves every k of a band.
+type mesh struct {
+	elems    []element
+	low      float64 // smallest k it serves
+	high     float64 // largest k it serves
+	states   int     // size of A: movable interfaces and Gauss points of graded layers
+	fineness float64 // tolerance scale it was made with
+}
+
+// rule turns a tolerance into the mesh rule's numbers: an element may span
+// c = 5 (tol/1e-8)^(1/16) units of ln η and of kh, and what is further than D/k from
+// every interface is felt by none. The order 16 makes tolerance nearly free.
+type rule struct{ span, depth float64 }
+
+func ruleFor(tol float64) rule {
+	return rule{5 * math.Pow(tol/1e-8, 1.0/(2*stages)), 3 + math.Log(1/tol)/2}
+}
+
+// finer halves every element and looks e⁻² deeper: the error falls by 2^16, so the
+// change against the coarser mesh is the coarser one's error.
+func (r rule) finer() rule { return rule{r.span / 2, r.depth + 2} }
+
+// segment is a stretch of one layer where the viscosity is smooth.
+type segment struct {
+	layer       int
+	top, bottom float64
+	upper       bool // top is an interface
+	lower       bool // bottom is an interface
+	layerTop    float64
+	layerBottom float64
+}
+
+// divide fills m with a mesh for the band [low, high].
+func (s *Solver) divide(m *mesh, low, high float64, r rule) {
+	m.elems = m.elems[:0]
+	m.low, m.high = low, high
+	for _, g := range s.segments {
+		s.split(m, g.layer, g.top, g.bottom, r)
+		if g.lower {
+			m.elems[len(m.elems)-1].last = true
+		}
+	}
+	m.states = s.interfaces
+	for i := range m.elems {
+		if m.elems[i].gradient != nil {
+			m.elems[i].firstNode = m.states
+			m.states += stages
+		}
+	}
+}
+
+// swing returns four times the largest change of ln η over a quarter of [a, b]: the
+// end-to-end change would miss a viscosity that rises and falls again.
+func (s *Solver) swing(layer int, a, b float64) float64 {
+	f := s.c.Layers[layer].Viscosity
+	var largest, ps, pn float64
+	for q := 0; q <= 4; q++ {
+		z := a + (b-a)*float64(q)/4
+		es, en := f(z)
+		ls, ln := math.Log(es), math.Log(en)
+		if q > 0 {
+			largest = math.Max(largest, math.Max(math.Abs(ls-ps), math.Abs(ln-pn)))
+		}
+		ps, pn = ls, ln
+	}
+	return 4 * largest
+}
+
+// split adds elements for [a, b] of a layer, top first.
+func (s *Solver) split(m *mesh, layer int, a, b float64, r rule) {
+	h := b - a
+	top, bottom := s.depths[layer], s.depths[layer+1]
+	graded := s.c.Layers[layer].Gradient != nil
+	near := math.Min(a-top, bottom-b)
+	if near < 0 {
+		near = 0
+	}
+	if !graded && near > 0 {
+		es, en := s.c.Layers[layer].Viscosity((a + b) / 2)
+		// a power-law field decays as exp(−kd/√n̂)
+		if m.low*near > r.depth*math.Max(1, math.Sqrt(es/en)) {
+			s.addOpaque(m, layer, a, b)
+			return
+		}
+	}
+	visc := s.swing(layer, a, b) / r.span
+	reach := r.span * (1 + m.high*near/4)
+	if graded {
+		reach = r.span
+	}
+	wave := m.high * h / reach
+	if visc+wave <= 1 || h < 1e-9*s.depths[len(s.depths)-1] {
+		s.add(m, layer, a, b)
+		return
+	}
+	if visc >= wave || graded {
+		n := int(math.Ceil(visc + wave))
+		if n < 2 {
+			n = 2
+		}
+		n = min(n, 64)
+		for i := 0; i < n; i++ {
+			s.split(m, layer, a+h*float64(i)/float64(n), a+h*float64(i+1)/float64(n), r)
+		}
+		return
+	}
+	// wavelength-limited: one piece at the nearer interface, growing away from it
+	da, db := a-top, bottom-b
+	if math.Abs(da-db) <= h*1e-9 { // the middle of the layer: halve
+		s.split(m, layer, a, a+h/2, r)
+		s.split(m, layer, a+h/2, b, r)
+		return
+	}
+	piece := r.span * (1 + m.high*math.Min(da, db)/4) / m.high * math.Max(0.25, 1-visc*0.5)
+	if piece >= 0.75*h {
+		piece = h / 2
+	}
+	if da < db {
+		s.split(m, layer, a, a+piece, r)
+		s.split(m, layer, a+piece, b, r)
+	} else {
+		s.split(m, layer, a, b-piece, r)
+		s.split(m, layer, b-piece, b, r)
+	}
+}
+
+// next returns a zeroed element at the end of m without losing its storage.
+func (m *mesh) next() *element {
+	if len(m.elems) < cap(m.elems) {
+		m.elems = m.elems[:len(m.elems)+1]
+		m.elems[len(m.elems)-1] = element{}
+	} else {
+		m.elems = append(m.elems, element{})
+	}
+	return &m.elems[len(m.elems)-1]
+}
+
+func (s *Solver) add(m *mesh, layer int, a, b float64) {
+	e := m.next()
+	e.z, e.h, e.layer = a, b-a, layer
+	l := &s.c.Layers[layer]
+	for i := range nodeC {
+		e.etaS[i], e.etaN[i] = l.Viscosity(a + e.h*nodeC[i])
+	}
+	e.build()
+	if l.Gradient != nil {
+		e.gradient = new([stages]float64)
+		for i := range nodeC {
+			e.gradient[i] = e.h * nodeB[i] * l.Gradient(a+e.h*nodeC[i])
+		}
+	}
+}
+
+// addOpaque adds a stretch that no interface feels: each side sees a half-space.
+func (s *Solver) addOpaque(m *mesh, layer int, a, b float64) {
+	e := m.next()
+	e.z, e.h, e.layer, e.opaque = a, b-a, layer, true
+	es, en := s.c.Layers[layer].Viscosity(a)
+	e.zTop = 2 * math.Sqrt(es*en)
+	es, en = s.c.Layers[layer].Viscosity(b)
+	e.zBase = 2 * math.Sqrt(es*en)
+}

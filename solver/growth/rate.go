@@ -1,0 +1,75 @@
+package growth
+
+import (
+	"fmt"
+	"math"
+)
+
+// Rate returns the leading growth rate at a wavelength in m, with an estimate of its
+// relative error: the change between two meshes at the ends of the band of
+// wavenumbers that share one, or what rounding leaves of a slow rate beside a fast
+// one, whichever is larger. Meshes are refined until the first is below the tolerance.
+func (s *Solver) Rate(wavelength float64) (Rate, error) {
+	if !positive(wavelength) {
+		return Rate{}, fmt.Errorf("%w: %g m", ErrWavelength, wavelength)
+	}
+	k := 2 * math.Pi / wavelength
+	if !(k >= s.mesh.low && k <= s.mesh.high) {
+		if err := s.band(k); err != nil {
+			return Rate{}, err
+		}
+	}
+	re, im, fastest, err := s.leading(&s.mesh, k)
+	if err != nil {
+		return Rate{}, err
+	}
+	size := math.Hypot(re, im)
+	rounding := 0.0
+	if size > 0 {
+		rounding = 4 * 0x1p-52 * fastest / size
+	}
+	return Rate{wavelength, re, im, math.Max(s.bandError, rounding)}, nil
+}
+
+// bandOf returns the band of wavenumbers that k belongs to: fixed bands of a factor
+// √2, so that a rate does not depend on which wavelengths were asked before.
+func bandOf(k float64) (low, high float64) {
+	i := math.Floor(2 * math.Log2(k))
+	return math.Exp2(i / 2), math.Exp2((i + 1) / 2)
+}
+
+// band meshes the band of k and estimates its error.
+func (s *Solver) band(k float64) error {
+	low, high := bandOf(k)
+	r := s.rule
+	for try := 0; ; try++ {
+		s.divide(&s.mesh, low, high, r)
+		s.divide(&s.fine, low, high, r.finer())
+		var worst float64
+		for _, kk := range [2]float64{low, high} {
+			re, im, fast, err := s.leading(&s.mesh, kk)
+			if err != nil {
+				return err
+			}
+			fre, fim, _, err := s.leading(&s.fine, kk)
+			if err != nil {
+				return err
+			}
+			size := math.Hypot(fre, fim)
+			if size == 0 {
+				continue
+			}
+			e := math.Hypot(re-fre, im-fim) / size
+			if floor := 4 * 0x1p-52 * fast / size; e < floor {
+				e = 0 // rounding, counted for each k on its own
+			}
+			worst = math.Max(worst, e)
+		}
+		s.bandError = worst
+		if worst <= s.tol || try == 3 {
+			return nil
+		}
+		f := math.Pow(s.tol/worst, 1.0/(2*stages)) * 0.9
+		r = rule{r.span * math.Max(f, 0.25), r.depth + 1}
+	}
+}
