@@ -6,9 +6,7 @@ import (
 	"keelfall/column"
 	"keelfall/solver/drip"
 	"keelfall/solver/excision"
-	"keelfall/solver/growth"
 	"keelfall/solver/heat"
-	"keelfall/solver/state"
 )
 
 // Wavevector says along which direction the undulation varies.
@@ -74,44 +72,4 @@ type Observation struct {
 	At                      float64 // s
 	Value, Error            float64 // SI
 	Between                 [2]float64
-}
-
-// Result is everything a run found.
-type Result struct {
-	Problem  *Problem
-	State    *state.State
-	Growth   *growth.Column
-	Spectrum *growth.Spectrum
-	Drip     *drip.Result
-	Excision *excision.Result
-	Verdict  Verdict
-	Warnings []string
-	Limits   []string // what the method leaves out, in words
-}
-
-// Shares are the parts of the root's initial mass that each mechanism took.
-type Shares struct{ Drip, Excision float64 }
-
-// Flip is the value of one quantity at which the verdict changes, all else equal.
-type Flip struct {
-	Key, Label string
-	From, To   float64
-	Unit       string // of From and To: "x" for a factor, else SI
-	Found      bool
-	Decides    bool // the flip nearest to the value used
-}
-
-// Verdict says which fate comes first, by what margin and why. Times are +Inf where
-// the thing does not happen within the search; reports print null.
-type Verdict struct {
-	Outcome              string  // "dripped", "excised", "both" or "preserved"
-	Time                 float64 // s
-	Margin               float64 // s between the first and the next thing that would stop the clock
-	MarginLog10Viscosity float64 // log₁₀ factor of root viscosity that flips the verdict; ±Inf where none within 3
-	Shares               Shares  // in the user's column
-	ArcMean              Shares  // averaged over the arc
-	Share                float64 // share of the root's mass at which the clock stops
-	Reasons              []string
-	Sentence             string
-	Flips                []Flip
 }

@@ -1,0 +1,122 @@
+package race
+
+import (
+	"fmt"
+	"math"
+)
+
+// judge applies the contract's clock: it stops when the share of the root's initial
+// mass is gone. The mechanism with the larger part is named; both, where the smaller
+// part is at least half the larger; preserved, where the window ends first.
+func (r *Result) judge() {
+	p, d, x := r.Problem, r.Drip, r.Excision
+	v := &r.Verdict
+	v.Share = p.Share()
+	v.MarginLog10Viscosity = math.Inf(1)
+	window := p.Drip.Window
+	switch {
+	case x.Time <= window && x.Time <= d.Time:
+		v.Outcome, v.Time = "excised", x.Time
+		v.Margin = d.Time - x.Time
+		v.Shares = Shares{0, v.Share}
+	case d.Time <= window:
+		gone := math.Max(0, at(x.History.Time, x.History.RootMassShare, d.Time))
+		v.Outcome, v.Time = "dripped", d.Time
+		v.Margin = math.Min(x.LocalBeyond, math.Inf(1)) - d.Time
+		v.Shares = Shares{v.Share * (1 - gone), gone} // of the mass left at that moment
+		if small, large := math.Min(v.Shares.Drip, gone), math.Max(v.Shares.Drip, gone); small >= large/2 {
+			v.Outcome = "both"
+		}
+	default:
+		v.Outcome, v.Time = "preserved", window
+		v.Margin = math.Min(d.Time, x.LocalBeyond) - window
+		v.Shares = Shares{0, math.Max(0, at(x.History.Time, x.History.RootMassShare, window))}
+	}
+	v.ArcMean = Shares{Drip: v.Shares.Drip}
+	if len(x.History.ArcMeanShare) > 0 {
+		v.ArcMean.Excision = at(x.History.Time, x.History.ArcMeanShare, v.Time)
+	}
+	v.Sentence = r.sentence()
+	r.reasons()
+}
+
+// at interpolates y(x) linearly; it holds the last value beyond the end.
+func at(x, y []float64, v float64) float64 {
+	for i := 1; i < len(x); i++ {
+		if v <= x[i] {
+			if x[i] == x[i-1] {
+				return y[i]
+			}
+			return y[i-1] + (y[i]-y[i-1])*(v-x[i-1])/(x[i]-x[i-1])
+		}
+	}
+	if len(y) == 0 {
+		return 0
+	}
+	return y[len(y)-1]
+}
+
+// reasons says why, in the order that matters.
+func (r *Result) reasons() {
+	v, d, x := &r.Verdict, r.Drip, r.Excision
+	add := func(format string, a ...any) { v.Reasons = append(v.Reasons, fmt.Sprintf(format, a...)) }
+	_, last, _ := r.Problem.Column.RootSpan()
+	contrast := -r.State.Jumps[last+1]
+	switch {
+	case contrast <= 0:
+		add("too buoyant: the root is %.0f kg/m³ lighter than what lies below it", -contrast)
+	case d.Outcome == "drips":
+		add("dense enough: the root is %.0f kg/m³ denser than what lies below it", contrast)
+	case math.IsInf(d.Time, 1):
+		add("%s", d.Reason)
+	default:
+		add("not enough time: the root would drip, but only after the window has closed")
+	}
+	if d.Mode != nil && d.Mode.DissipationShare != nil {
+		best := 0
+		for i, s := range d.Mode.DissipationShare {
+			if s > d.Mode.DissipationShare[best] {
+				best = i
+			}
+		}
+		name := "the half-space below"
+		if best < len(r.Problem.Column.Layers) {
+			name = r.Problem.Column.Layers[best].Name
+		}
+		add("%.0f %% of the resistance to the drip is in %s", 100*d.Mode.DissipationShare[best], name)
+	}
+	switch x.Outcome {
+	case "no zones":
+		add("no shear zone cuts the root")
+	case "window":
+		add("the shear zones do not take %.0f %% of the root within the window", 100*v.Share)
+	}
+}
+
+// sentence says the verdict in words, in Myr from the start.
+func (r *Result) sentence() string {
+	const myr = 1e6 * 365.25 * 86400 // s
+	v, d, x := &r.Verdict, r.Drip, r.Excision
+	when := func(t float64) string { return fmt.Sprintf("%.3g Myr", t/myr) }
+	share := fmt.Sprintf("%.0f %% of it", 100*v.Share)
+	zones := "no shear zone cuts it"
+	if x.Outcome != "no zones" {
+		zones = "the shear zones would never take " + share
+		if !math.IsInf(x.LocalBeyond, 1) {
+			zones = "the shear zones would need " + when(x.LocalBeyond) + " for " + share
+		}
+	}
+	drips := "it would never drip"
+	if !math.IsInf(d.Time, 1) {
+		drips = "it would drip at " + when(d.Time)
+	}
+	switch v.Outcome {
+	case "dripped":
+		return "The root drips first, at " + when(v.Time) + "; " + zones + "."
+	case "both":
+		return "The root drips at " + when(v.Time) + fmt.Sprintf(", when the shear zones have already taken %.0f %% of it: both remove it.", 100*v.Shares.Excision)
+	case "excised":
+		return "Shear zones cut the root out first, " + share + " by " + when(v.Time) + "; " + drips + "."
+	}
+	return "The root is still there when the window ends at " + when(r.Problem.Drip.Window) + ": " + drips + ", and " + zones + "."
+}
