@@ -8,8 +8,15 @@
 // with ε_II² = ½ ε:ε in 1/s, τ_II² = ½ τ:τ in Pa, d the grain size in m, f the
 // water fugacity in Pa or the water content in H per 10⁶ Si, P the lithostatic
 // pressure in Pa. The secant viscosity is η = τ_II/(2 ε_II) in Pa s.
+// Laws of one rock act in parallel: one stress, rates added. A published rate
+// against differential stress becomes an invariant one through the geometry of the
+// test, see Test.Factor. The laws of the catalogue keep the laboratory's numbers and,
+// for each, whether it was read or recalled.
+//
 // Not covered yet: low-temperature plasticity, melt, frictional yield, mixtures.
 package rheology
+
+import "fmt"
 
 // GasConstant is R in J/(mol K); exact since the 2019 SI definition.
 const GasConstant = 8.31446261815324
@@ -25,12 +32,35 @@ const (
 	WaterContent
 )
 
+// String returns none, fugacity or content.
+func (w WaterMeasure) String() string {
+	switch w {
+	case NoWater:
+		return "none"
+	case WaterFugacity:
+		return "fugacity"
+	case WaterContent:
+		return "content"
+	}
+	return fmt.Sprintf("water measure %d", int(w))
+}
+
+// need words what a law of this measure asks of its rock.
+func (w WaterMeasure) need() string {
+	if w == WaterContent {
+		return "a water content in H/10⁶ Si"
+	}
+	return "a water fugacity in Pa"
+}
+
 // Conditions are what a creep law is evaluated at.
 type Conditions struct {
 	T         float64 // temperature, K, > 0
 	P         float64 // lithostatic pressure, Pa, >= 0
 	GrainSize float64 // m; 0 where no law needs it
-	Water     float64 // Pa or H/10⁶ Si, as the law's WaterMeasure says; 0 where no law needs it
+	Water     float64 // Pa or H/10⁶ Si, as WaterMeasure says; 0 where no law needs it
+
+	WaterMeasure WaterMeasure // what Water counts; a law of the other measure is an error
 }
 
 // Limits bound a creep viscosity, in Pa s. The highest acts as one more Newtonian

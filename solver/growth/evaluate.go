@@ -80,7 +80,7 @@ func Compute(ctx context.Context, c *Column, o Options) (*Spectrum, error) {
 	from, to, auto := o.From, o.To, false
 	if from == 0 || to == 0 {
 		auto = true
-		f, t := s.naturalRange()
+		f, t := s.Range()
 		if from == 0 {
 			from = f
 		}
@@ -159,8 +159,9 @@ func Compute(ctx context.Context, c *Column, o Options) (*Spectrum, error) {
 	return sp, nil
 }
 
-// naturalRange spans from the thinnest layer to twenty times the column.
-func (s *Solver) naturalRange() (from, to float64) {
+// Range returns the wavelengths in m that a spectrum covers where none are asked:
+// from the thinnest layer to twenty times the column.
+func (s *Solver) Range() (from, to float64) {
 	depth := s.depths[len(s.depths)-1]
 	thinnest := depth
 	for i := range s.c.Layers {

@@ -224,12 +224,13 @@ func (f *flow) describe(m *Mode, x []float64) {
 			f.sensitivities(m, w, du, sh, loss)
 		}
 	}
+	m.StrainRate = make([]float64, layers)
 	for _, p := range f.points {
 		m.Depth = append(m.Depth, p.z)
 		m.W, m.U = append(m.W, p.w), append(m.U, p.u)
 		m.Shear, m.Normal = append(m.Shear, p.shear), append(m.Normal, p.normal)
 		m.Layer = append(m.Layer, p.layer)
-		m.MaxShearRate = math.Max(m.MaxShearRate, p.strain)
+		m.StrainRate[p.layer] = math.Max(m.StrainRate[p.layer], p.strain)
 	}
 }
 

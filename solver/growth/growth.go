@@ -76,5 +76,5 @@ type Mode struct {
 	DqDh                          []float64 // ∂q/∂h of each layer, everything below moving down with it, 1/s per m
 	Layer                         []int     // of each profile point
 	Residual                      float64   // relative gap between work and dissipation (d = 0)
-	MaxShearRate                  float64   // largest second invariant of the mode's strain rate, 1/s per m of amplitude
+	StrainRate                    []float64 // of each layer, the largest second invariant, 1/s
 }

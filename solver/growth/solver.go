@@ -90,11 +90,7 @@ func NewSolver(c *Column, tol float64) (*Solver, error) {
 	}
 	s.active = make([]bool, len(s.forces))
 	for i, f := range s.forces {
-		movable := i > 0 || c.Top == Free
-		if i == len(c.Layers) {
-			movable = c.Base == HalfSpace || c.Base == Inviscid
-		}
-		if s.active[i] = movable && f != (force{}); s.active[i] {
+		if s.active[i] = s.movable(i) && f != (force{}); s.active[i] {
 			s.interfaces++
 		}
 	}
