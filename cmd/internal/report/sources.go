@@ -1,0 +1,149 @@
+package report
+
+import (
+	"fmt"
+	"regexp"
+	"strings"
+
+	"keelfall/rheology"
+	"keelfall/solver/race"
+)
+
+// Version of the program.
+const Version = "0.1.0"
+
+// SourceJSON is one source that a result rests on.
+type SourceJSON struct {
+	ID     string `json:"id"`
+	Status string `json:"status"` // published, derived, from memory, common practice; for laws, of the numbers
+	Text   string `json:"text"`
+}
+
+// ProvenanceJSON says what was run and what it rests on.
+type ProvenanceJSON struct {
+	Program    string         `json:"program"`
+	Version    string         `json:"version"`
+	Input      string         `json:"input_sha256"`
+	Experiment map[string]any `json:"experiment"`
+	Sources    []SourceJSON   `json:"sources"`
+	Limits     []string       `json:"limits"`
+	Warnings   []string       `json:"warnings"`
+}
+
+// Provenance joins the resolved experiment and the sources of p.
+func Provenance(sha string, experiment map[string]any, p *race.Problem, limits []string) ProvenanceJSON {
+	return ProvenanceJSON{"keelfall", Version, sha, experiment, Sources(p), list(limits), list(nil)}
+}
+
+// Sources lists the equations, laws and constants that p uses.
+func Sources(p *race.Problem) []SourceJSON {
+	s := []SourceJSON{
+		{"chandrasekhar1961", "published", "Chandrasekhar 1961, Hydrodynamic and Hydromagnetic Stability: gravitational instability of superposed viscous fluids"},
+		{"ramberg1968", "published", "Ramberg 1968, Phys. Earth Planet. Inter. 1: layered viscous fluids between walls"},
+		{"keelfall-collocation", "derived", "Gauss–Legendre collocation of the layered Stokes equations, condensed by element; derived for this program, checked by `keelfall verify`"},
+		{"houseman1997", "published", "Houseman & Molnar 1997, Geophys. J. Int. 128, 125: convective thinning of a dense layer, geometry of the checks"},
+	}
+	if p.Column.Base.HasTemperature || p.Column.Base.HasHeatFlow {
+		s = append(s, SourceJSON{"carslaw1959", "published", "Carslaw & Jaeger 1959, Conduction of Heat in Solids: steady conduction"})
+	}
+	for i := range p.Column.Layers {
+		if p.Column.Layers[i].HeatProduction.DecayLength > 0 {
+			s = append(s, SourceJSON{"lachenbruch1968", "published", "Lachenbruch 1968, J. Geophys. Res. 73: heat production falling exponentially with depth"})
+			break
+		}
+	}
+	if _, _, ok := p.Column.RootSpan(); ok {
+		s = append(s, SourceJSON{"bird1979", "published", "Bird 1979, J. Geophys. Res. 84, 7561 (abstract): delamination needs rock of 1e19 poise = 1e18 Pa s or less"})
+	}
+	if len(p.Zones) > 0 {
+		s = append(s, SourceJSON{"omission", "common practice", "omission, heave and throw of a zone from its dip and slip: plane geometry; arc mean h × heave/(B + heave): derived"})
+	}
+	for _, l := range lawsOf(p) {
+		s = append(s, SourceJSON{"creep-" + slug(l.Name), lawStatus(&l), l.Name + ": " + l.Source})
+	}
+	return append(s, SourceJSON{"gas-constant", "published", "R = 8.31446261815324 J/(mol K), exact since the SI of 2019"})
+}
+
+// lawsOf returns the creep laws in use, each once, from the surface down.
+func lawsOf(p *race.Problem) []rheology.Law {
+	var laws []rheology.Law
+	seen := map[string]bool{}
+	add := func(c *rheology.Creep) {
+		if c == nil {
+			return
+		}
+		for _, l := range c.Laws {
+			if !seen[l.Name] {
+				seen[l.Name] = true
+				laws = append(laws, l)
+			}
+		}
+	}
+	for i := range p.Column.Layers {
+		add(p.Column.Layers[i].Viscosity.Creep)
+	}
+	add(p.Column.Base.Viscosity.Creep)
+	return laws
+}
+
+// lawStatus says the weakest status among a law's numbers.
+func lawStatus(l *rheology.Law) string {
+	st := l.Status
+	all := []string{st.A, st.N, st.M, st.R, st.E, st.V}
+	for _, s := range all {
+		if s == "memory" {
+			if l.Confidence != "" {
+				return "from memory (" + l.Confidence + " confidence)"
+			}
+			return "from memory"
+		}
+	}
+	for _, s := range all {
+		if s == "given" {
+			return "typed by the user"
+		}
+	}
+	for _, s := range all {
+		if strings.HasPrefix(s, "not determined") {
+			return "published, activation volume not determined"
+		}
+	}
+	return "published"
+}
+
+var notWord = regexp.MustCompile(`[^a-z0-9]+`)
+
+func slug(s string) string {
+	return strings.Trim(notWord.ReplaceAllString(strings.ToLower(s), "-"), "-")
+}
+
+var yearIn = regexp.MustCompile(`\b(1[89]\d\d|20\d\d)\b`)
+
+// Bibliography returns sources.bib: one entry a source, the text as it is known here.
+func Bibliography(sources []SourceJSON) string {
+	var b strings.Builder
+	b.WriteString("% Sources of this result. Titles are not given where they were not looked up.\n")
+	for _, s := range sources {
+		if s.Status == "derived" || s.Status == "common practice" {
+			continue
+		}
+		text := s.Text
+		author, year := "", yearIn.FindString(text)
+		name := text
+		if strings.HasPrefix(s.ID, "creep-") {
+			_, name, _ = strings.Cut(text, ": ")
+		}
+		if i := strings.Index(name, year); year != "" && i > 0 {
+			author = strings.ReplaceAll(strings.Trim(name[:i], " ,;:"), " & ", " and ")
+		}
+		fmt.Fprintf(&b, "\n@misc{%s,\n", s.ID)
+		if author != "" && !strings.Contains(author, "=") {
+			fmt.Fprintf(&b, "  author = {%s},\n", author)
+		}
+		if year != "" {
+			fmt.Fprintf(&b, "  year = {%s},\n", year)
+		}
+		fmt.Fprintf(&b, "  howpublished = {%s},\n  note = {numbers: %s}\n}\n", name, s.Status)
+	}
+	return b.String()
+}

@@ -1,0 +1,173 @@
+package main
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"strings"
+
+	"github.com/spf13/cobra"
+	"gonum.org/v1/plot/vg"
+
+	"keelfall/cmd/internal/report"
+	"keelfall/configs"
+	"keelfall/plots"
+	"keelfall/solver/drip"
+	"keelfall/solver/growth"
+	"keelfall/solver/race"
+	"keelfall/solver/state"
+)
+
+// part is what one computing command prints and writes.
+type part struct {
+	name     string
+	text     string
+	value    any
+	table    report.Table
+	figure   func(width vg.Length) (plots.Figure, error)
+	warnings []string
+}
+
+// newPartCmd makes a command that computes one part of an experiment.
+func newPartCmd(s Streams, use, short string, compute func(context.Context, *options, *race.Problem, *state.State) (*part, error)) (*cobra.Command, *options) {
+	o := &options{Streams: s}
+	cmd := &cobra.Command{
+		Use: use, Short: short, Args: args(cobra.ExactArgs(1)),
+		RunE: func(cmd *cobra.Command, a []string) error {
+			o.File = a[0]
+			_, p, err := o.load()
+			if err != nil {
+				return err
+			}
+			st, err := race.Prepare(p)
+			if err != nil {
+				return err
+			}
+			r, err := compute(cmd.Context(), o, p, st)
+			if err != nil {
+				return err
+			}
+			if err := o.folder(r); err != nil {
+				return err
+			}
+			o.warn(r.warnings)
+			return o.print(r.text, r.value, r.table)
+		},
+	}
+	o.flags(cmd)
+	return cmd, o
+}
+
+// folder writes the part's folder where --out asks for one.
+func (o *options) folder(r *part) error {
+	if o.Settings.Out == "" {
+		return nil
+	}
+	w := &output{}
+	if err := w.json(r.name+".json", r.value); err != nil {
+		return err
+	}
+	w.add(r.table.Name+".csv", r.table.Encode())
+	if r.figure != nil {
+		f, err := r.figure(vg.Length(o.Width) * vg.Millimeter)
+		if err != nil {
+			return err
+		}
+		w.figures = append(w.figures, f)
+	}
+	return o.write(o.Settings.Out, w)
+}
+
+func newColumnCmd(s Streams) *cobra.Command {
+	cmd, _ := newPartCmd(s, "column FILE", "Temperature, pressure, density and viscosity against depth",
+		func(_ context.Context, _ *options, p *race.Problem, st *state.State) (*part, error) {
+			return &part{name: "column", text: report.ColumnPage(p, st), value: report.Column(st), table: report.ColumnTable(st),
+				figure:   func(w vg.Length) (plots.Figure, error) { return plots.Column(st, w) },
+				warnings: st.Warnings}, nil
+		})
+	return cmd
+}
+
+func newSpectrumCmd(s Streams) *cobra.Command {
+	var at string
+	cmd, _ := newPartCmd(s, "spectrum FILE", "Growth rate against wavelength",
+		func(ctx context.Context, o *options, p *race.Problem, st *state.State) (*part, error) {
+			sp, err := race.Spectrum(ctx, p, st)
+			if err != nil {
+				return nil, err
+			}
+			rates := sp.Rates
+			var exact []growth.Rate
+			if at != "" {
+				wavelengths, err := lengths(at)
+				if err != nil {
+					return nil, usageError{err}
+				}
+				if exact, err = growth.Evaluate(ctx, drip.Model(st), wavelengths, growth.Options{Workers: p.Workers}); err != nil {
+					return nil, err
+				}
+				rates = exact
+			}
+			return &part{name: "spectrum", text: report.SpectrumPage(p, st, sp, exact), value: report.Spectrum(st, sp, exact), table: report.SpectrumTable(rates),
+				figure: func(w vg.Length) (plots.Figure, error) {
+					return plots.Spectrum(sp, nil, plots.Setting{ArcWidth: p.ArcWidth, Window: p.Drip.Window}, w)
+				},
+				warnings: st.Warnings}, nil
+		})
+	cmd.Flags().StringVar(&at, "at", "", "evaluate exactly these wavelengths: 50km,100km")
+	return cmd
+}
+
+// lengths reads a list of wavelengths with units.
+func lengths(list string) ([]float64, error) {
+	var out []float64
+	for _, s := range strings.Split(list, ",") {
+		x, err := configs.ParseLength(strings.TrimSpace(s))
+		if err != nil {
+			return nil, fmt.Errorf("--at: %w", err)
+		}
+		if !(x > 0) {
+			return nil, fmt.Errorf("--at: a wavelength of %s; must be above 0", s)
+		}
+		out = append(out, x)
+	}
+	if len(out) == 0 {
+		return nil, errors.New("--at needs wavelengths, for example 50km,100km")
+	}
+	return out, nil
+}
+
+func newDripCmd(s Streams) *cobra.Command {
+	cmd, _ := newPartCmd(s, "drip FILE", "When the root drips, and at what spacing",
+		func(ctx context.Context, _ *options, p *race.Problem, st *state.State) (*part, error) {
+			r := &race.Result{Problem: p, State: st}
+			var err error
+			if r.Drip, err = race.Drip(ctx, p, st); err != nil {
+				return nil, err
+			}
+			return &part{name: "drip", text: report.DripPage(p, r), value: report.Drip(p, r.Drip), table: report.DripTable(r),
+				figure: func(w vg.Length) (plots.Figure, error) {
+					return plots.Spectrum(nil, r.Drip, plots.Setting{ArcWidth: p.ArcWidth, Window: p.Drip.Window}, w)
+				},
+				warnings: append(st.Warnings, r.Drip.Warnings...)}, nil
+		})
+	return cmd
+}
+
+func newExciseCmd(s Streams) *cobra.Command {
+	cmd, _ := newPartCmd(s, "excise FILE", "When shear zones have cut the root out",
+		func(_ context.Context, _ *options, p *race.Problem, st *state.State) (*part, error) {
+			r := &race.Result{Problem: p, State: st}
+			var err error
+			if r.Excision, err = race.Excise(p, st); err != nil {
+				return nil, err
+			}
+			out := &part{name: "excise", text: report.ExcisionPage(p, r), value: report.Excision(p, r.Excision), table: report.ExcisionTable(r),
+				warnings: append(st.Warnings, r.Excision.Warnings...)}
+			if len(p.Zones) > 0 {
+				out.figure = func(w vg.Length) (plots.Figure, error) { return plots.Fates(r, w) }
+			}
+			return out, nil
+		})
+	return cmd
+}

@@ -1,0 +1,247 @@
+package configs
+
+import (
+	"fmt"
+	"math"
+	"slices"
+
+	"keelfall/column"
+	"keelfall/rheology"
+	"keelfall/solver/drip"
+	"keelfall/solver/excision"
+	"keelfall/solver/race"
+)
+
+var surfaceBoundaries = map[string]column.Boundary{"free": column.Free, "free-slip": column.FreeSlip, "rigid": column.Rigid}
+
+var baseBoundaries = map[string]column.Boundary{"half-space": column.HalfSpace, "inviscid": column.Inviscid, "free-slip": column.FreeSlip, "rigid": column.Rigid}
+
+// build makes the problem from the decoded experiment. What only shows here (a law
+// that is in no catalogue, a geotherm that does not cover the column) becomes a
+// mistake of w. It is called once the tree has no other mistakes.
+func (e *Experiment) build(w *walker) race.Problem {
+	d := &e.data
+	p := race.Problem{
+		Title: d.Title.Value, Notes: d.Notes.Value,
+		Column:          e.column(w),
+		HasTimeZero:     d.TimeZero.given(),
+		TimeZero:        d.TimeZero.SI,
+		Strain:          race.Strain{ExtensionRate: d.Strain.ExtensionRate.SI, ReferenceRate: d.Strain.ReferenceRate.SI},
+		ThermalBuoyancy: d.Buoyancy.Thermal.Value,
+		Drip: drip.Settings{
+			Amplitude: d.Drip.Amplitude.SI, Criterion: d.Drip.Criterion.SI, Window: d.Drip.Window.SI,
+			Removes: d.Drip.Removes.SI, Spectrum: d.Drip.Spectrum.Value, Softening: d.Drip.Softening.Value,
+		},
+		Removed:  d.Race.Removed.SI,
+		Defaults: slices.Clone(e.taken),
+	}
+	if d.Strain.Wavevector.Value == "strike" {
+		p.Strain.Wavevector = race.AlongStrike
+	}
+	if d.Arc != nil {
+		p.ArcWidth, p.ArcLength = d.Arc.Width.SI, d.Arc.Length.SI
+	}
+	if d.Spectrum != nil {
+		p.SpectrumFrom, p.SpectrumTo = d.Spectrum.From.SI, d.Spectrum.To.SI
+	}
+	if d.Excision != nil {
+		for i := range d.Excision.Zones {
+			p.Zones = append(p.Zones, d.Excision.Zones[i].problem())
+		}
+	}
+	if err := p.Column.Validate(); err != nil && len(w.mistakes) == 0 { // whatever the checks with positions missed
+		w.add(e.filled.get("layers"), "layers", err.Error())
+	}
+	return p
+}
+
+func (z *zone) problem() excision.Zone {
+	out := excision.Zone{Name: z.Name.Value, Dip: z.Dip.SI, LayeringDip: z.LayeringDip.SI, From: z.From.SI, To: z.To.SI, SlipRate: z.SlipRate.SI, Width: z.Width.SI}
+	for _, c := range z.Cuts {
+		out.Cuts = append(out.Cuts, c.Value)
+	}
+	return out
+}
+
+func (e *Experiment) column(w *walker) column.Column {
+	d := &e.data
+	c := column.Column{
+		Gravity: d.Gravity.SI,
+		Surface: column.Surface{Boundary: surfaceBoundaries[d.Surface.Boundary.Value], Temperature: d.Surface.Temperature.SI},
+		Limits:  rheology.Limits{Lowest: d.Limits.Lowest.SI, Highest: d.Limits.Highest.SI},
+		Base: column.Base{
+			Boundary:    baseBoundaries[d.Base.Boundary.Value],
+			Temperature: d.Base.Temperature.SI, HasTemperature: d.Base.Temperature.given(),
+			HeatFlow: d.Base.HeatFlow.SI, HasHeatFlow: d.Base.HeatFlow.given(),
+		},
+	}
+	for i := range d.Layers {
+		l := d.Layers[i].Layer
+		c.Layers = append(c.Layers, column.Layer{Name: l.Name.Value, Thickness: l.Thickness.SI, Root: l.Root.On, Rock: e.rock(w, &l.rock)})
+	}
+	c.Geotherm = e.points(w, c.Depth())
+	c.Base.Rock = e.rock(w, &d.Base.rock)
+	warm := hasTemperature(e.filled) // also where the geotherm itself has a mistake
+	for i := range d.Layers {
+		e.temperatureNeeds(w, &d.Layers[i].Layer.rock, &c.Layers[i].Rock, warm)
+	}
+	if c.Base.Boundary == column.HalfSpace {
+		e.temperatureNeeds(w, &d.Base.rock, &c.Base.Rock, warm)
+	}
+	return c
+}
+
+func (e *Experiment) rock(w *walker, r *rock) column.Rock {
+	out := column.Rock{
+		Density:      r.Density.model(),
+		Viscosity:    column.Viscosity{Factor: 1, Exponent: 1},
+		HeatCapacity: r.HeatCapacity.SI,
+		Source:       r.Source.Value, Notes: r.Notes.Value,
+	}
+	if r.Factor.given() {
+		out.Viscosity.Factor = r.Factor.SI
+	}
+	if r.StressExponent.given() {
+		out.Viscosity.Exponent = r.StressExponent.SI
+	}
+	switch v := r.Viscosity; {
+	case r.Creep != nil:
+		out.Viscosity.Creep = &rheology.Creep{Laws: r.Creep.laws(w, r.path+".creep", e.reader.Laws), Factor: 1}
+	case v != nil && v.Linear != nil:
+		out.Viscosity.Top, out.Viscosity.Bottom = v.Linear.Top.SI, v.Linear.Bottom.SI
+	case v != nil:
+		out.Viscosity.Top, out.Viscosity.Bottom = v.Value.SI, v.Value.SI
+	}
+	if g := r.GrainSize; g != nil {
+		out.GrainSize = g.Value.SI
+	}
+	switch f := r.Water; {
+	case f == nil:
+	case f.Fugacity.given():
+		out.Water, out.WaterMeasure = f.Fugacity.SI, rheology.WaterFugacity
+	default:
+		out.Water, out.WaterMeasure = f.Content.SI, rheology.WaterContent
+	}
+	if k := r.Conductivity; k != nil {
+		out.Conductivity = column.Conductivity{Reference: k.Value.SI, At: celsiusZero}
+		if s := k.State; s != nil {
+			out.Conductivity = column.Conductivity{Reference: s.Reference.SI, PerKelvin: s.Temperature.SI, PerPascal: s.Pressure.SI, At: s.At.SI}
+		}
+	}
+	if h := r.HeatProduction; h != nil {
+		out.HeatProduction.Top = h.Value.SI
+		if h.Decay != nil {
+			out.HeatProduction = column.HeatProduction{Top: h.Decay.Top.SI, DecayLength: h.Decay.Decay.SI}
+		}
+	}
+	return out
+}
+
+// model is the density as column takes it; nil where there is none.
+func (d *density) model() column.Density {
+	switch {
+	case d == nil:
+		return nil
+	case d.Linear != nil:
+		return column.Linear{Top: d.Linear.Top.SI, Bottom: d.Linear.Bottom.SI}
+	case d.State != nil:
+		s := d.State
+		return column.EquationOfState{Reference: s.Reference.SI, Expansivity: s.Expansivity.SI, Compressibility: s.Compressibility.SI, ReferenceTemperature: s.At.SI}
+	}
+	return column.Uniform(d.Value.SI)
+}
+
+// temperatureNeeds reports a rock that needs a temperature the experiment does not
+// give, or water and grain size its creep laws ask for.
+func (e *Experiment) temperatureNeeds(w *walker, r *rock, out *column.Rock, warm bool) {
+	const how = "add base.temperature or base.heat-flow, or a geotherm"
+	if out.Density != nil && out.Density.NeedsTemperature() && !warm {
+		w.addf(r.at.get("density"), r.path+".density", "depends on temperature (expansivity) and the experiment has none; %s", how)
+	}
+	creep := out.Viscosity.Creep
+	if creep == nil {
+		return
+	}
+	at := r.at.get("creep")
+	if !warm {
+		w.addf(at, r.path+".creep", "needs a temperature and the experiment has none; %s", how)
+	}
+	said := map[string]bool{}
+	say := func(key, format string, args ...any) {
+		if !said[key] {
+			w.addf(at, r.path+"."+key, format, args...)
+		}
+		said[key] = true
+	}
+	for i := range creep.Laws {
+		l := &creep.Laws[i]
+		if l.M != 0 && !(out.GrainSize > 0) {
+			say("grain-size", "is missing; %s needs one, for example grain-size: 2 mm", l.Name)
+		}
+		if l.R == 0 || l.Water == out.WaterMeasure {
+			continue
+		}
+		needs := "a fugacity, for example water: {fugacity: 250 MPa}"
+		if l.Water == rheology.WaterContent {
+			needs = "a content in H per 10⁶ Si, for example water: {content: 1000}"
+		}
+		if out.WaterMeasure == rheology.NoWater {
+			say("water", "is missing; %s needs %s", l.Name, needs)
+		} else {
+			say("water", "is given in the other measure; %s needs %s", l.Name, needs)
+		}
+	}
+}
+
+// crossCheck checks what layers and zones say about one another. It works on a tree
+// that may have other mistakes, and then leaves out what it cannot know.
+func (e *Experiment) crossCheck(w *walker) {
+	index := map[string]int{}
+	names := []string{}
+	complete := true // no layer whose name is unknown
+	last := -1
+	for i := range e.data.Layers {
+		l := e.data.Layers[i].Layer
+		if l == nil || !l.Name.given() {
+			complete = false
+			continue
+		}
+		index[l.Name.Value] = i
+		names = append(names, l.Name.Value)
+		if !l.Root.On {
+			continue
+		}
+		if last >= 0 && last != i-1 {
+			w.addf(l.Root.n, l.path+".root", "is not adjacent to the root layer %s; root layers follow one another", e.data.Layers[last].Layer.Name.Value)
+		}
+		last = i
+	}
+	if e.data.Excision == nil || !complete {
+		return
+	}
+	for i := range e.data.Excision.Zones {
+		z := &e.data.Excision.Zones[i]
+		before := -1
+		for j, cut := range z.Cuts {
+			if !cut.given() {
+				break
+			}
+			k, ok := index[cut.Value]
+			path := fmt.Sprintf("%s.cuts[%d]", z.path, j)
+			if !ok {
+				w.addf(cut.n, path, "%s is not a layer; %s", cut.n.show(), didYouMean(cut.Value, firstFew(names)))
+				break
+			}
+			if before >= 0 && k != before+1 {
+				w.addf(cut.n, path, "%s does not lie directly below %s; a zone cuts adjacent layers, named from above", cut.Value, z.Cuts[j-1].Value)
+				break
+			}
+			before = k
+		}
+	}
+}
+
+func firstFew(names []string) []string { return names[:min(len(names), 200)] }
+
+// finite is what every number that leaves the package is.
+func finite(x float64) bool { return !math.IsNaN(x) && !math.IsInf(x, 0) }

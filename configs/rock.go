@@ -1,0 +1,216 @@
+package configs
+
+import (
+	"fmt"
+	"math"
+)
+
+// rock is what a layer, the base or an intrusion is made of.
+type rock struct {
+	_ struct{} `most:"viscosity creep"`
+	block
+	Density        *density        `key:"density" doc:"a number, a gradient, an equation of state, mineral modes, a table, or a reaction"`
+	Viscosity      *viscosity      `key:"viscosity" doc:"a number, or top and bottom (log-linear in depth)"`
+	StressExponent quantity        `key:"stress-exponent" dim:"number" range:"[1,100]" eg:"3" doc:"of a viscosity given as a number; 1 if left out"`
+	Creep          *creep          `key:"creep" doc:"creep laws in place of a viscosity"`
+	Water          *water          `key:"water" doc:"for creep laws that need it"`
+	GrainSize      *grainSize      `key:"grain-size" doc:"for creep laws that need it"`
+	Factor         quantity        `key:"viscosity-factor" dim:"number" range:"[1e-6,1e6]" eg:"1" doc:"multiplies the viscosity; 1 if left out"`
+	Friction       *friction       `key:"friction" doc:"frictional yield"`
+	Melt           *melt           `key:"melt" doc:"partial melt"`
+	Conductivity   *conductivity   `key:"conductivity" doc:"2.5 W/m/K if left out"`
+	HeatProduction *heatProduction `key:"heat-production" doc:"0 if left out"`
+	HeatCapacity   quantity        `key:"heat-capacity" dim:"heat-capacity" range:"(0 J/kg/K,100000 J/kg/K]" doc:"1000 J/kg/K if left out"`
+}
+
+func (r *rock) check(w *walker) {
+	if r.StressExponent.given() && r.Creep != nil && r.Viscosity == nil {
+		w.addf(r.StressExponent.n, r.path+".stress-exponent", "belongs to a viscosity given as a number; creep laws bring their own")
+	}
+}
+
+type layerEntry struct {
+	_       struct{} `kind:"union"`
+	Layer   *layer   `form:"map"`
+	Section *section `form:"map"`
+}
+
+type layer struct {
+	_ struct{} `required:"density" exactly:"viscosity creep"`
+	rock
+	Name      text     `key:"name,required" as:"name" doc:"of the layer"`
+	Thickness quantity `key:"thickness,required" dim:"length" range:"(0 m,3000 km]" doc:"of the layer at the start"`
+	Root      flag     `key:"root" doc:"part of the root whose fate is asked; root layers are adjacent"`
+}
+
+type section struct {
+	rock
+	Section text `key:"section,required" as:"file" doc:"CSV file whose rows become layers"`
+	Root    flag `key:"root" doc:"part of the root whose fate is asked"`
+}
+
+type density struct {
+	_        struct{}         `kind:"union"`
+	Value    quantity         `form:"scalar" dim:"density" range:"(0 kg/m3,20000 kg/m3]" doc:"in situ, without thermal buoyancy"`
+	Linear   *densityLinear   `form:"map"`
+	State    *densityState    `form:"map"`
+	Modes    *densityModes    `form:"map"`
+	Table    *densityTable    `form:"map"`
+	Reaction *densityReaction `form:"map"`
+}
+
+type densityLinear struct {
+	block
+	Top    quantity `key:"top,required" dim:"density" range:"(0 kg/m3,20000 kg/m3]" doc:"at the layer's top"`
+	Bottom quantity `key:"bottom,required" dim:"density" range:"(0 kg/m3,20000 kg/m3]" doc:"at the layer's bottom; the gradient is compositional"`
+}
+
+type densityState struct {
+	block
+	Reference       quantity `key:"reference,required" dim:"density" range:"(0 kg/m3,20000 kg/m3]" doc:"at the temperature at and zero pressure"`
+	Expansivity     quantity `key:"expansivity" dim:"per-kelvin" range:"[-1e-3 1/K,1e-3 1/K]" doc:"thermal; 0 if left out"`
+	Compressibility quantity `key:"compressibility" dim:"per-pressure" range:"[0 1/Pa,1e-9 1/Pa]" doc:"0 if left out"`
+	At              quantity `key:"at" dim:"temperature" range:"[0 K,5000 K]" eg:"20 degC" doc:"20 degC if left out"`
+}
+
+type densityModes struct {
+	block
+	Modes shares `key:"modes,required" doc:"mineral modes, summing to 1"`
+	By    text   `key:"by" one:"volume|weight" doc:"what the modes are shares of"`
+}
+
+func (m *densityModes) check(w *walker) {
+	var sum float64
+	for _, v := range m.Modes.Values {
+		sum += v
+	}
+	if m.Modes.n != nil && len(m.Modes.Values) == len(m.Modes.n.keys) && math.Abs(sum-1) > 0.01 {
+		w.addf(m.Modes.n, m.path+".modes", "sum to %.4g; need 1 (within 0.01)", sum)
+	}
+}
+
+type densityTable struct {
+	block
+	Table         text `key:"table,required" as:"file" doc:"CSV file of temperature, pressure and density"`
+	Interpolation text `key:"interpolation" one:"bilinear" doc:"between the table's points"`
+}
+
+type densityReaction struct {
+	block
+	Protolith *density      `key:"protolith,required" doc:"rock before the reaction"`
+	Product   *density      `key:"product,required" doc:"rock after it"`
+	Extent    quantity      `key:"extent" dim:"number" range:"[0,1]" doc:"reacted share at the start"`
+	Cap       quantity      `key:"cap" dim:"number" range:"[0,1]" doc:"the reacted share never passes this"`
+	Stable    *stability    `key:"stable" doc:"where the product is stable"`
+	Rate      *reactionRate `key:"rate" doc:"of the reaction"`
+}
+
+type stability struct {
+	block
+	Above quantity `key:"above,required" dim:"pressure" range:"[0 Pa,100 GPa]" eg:"1.0 GPa" doc:"pressure above which the product is stable, at the temperature at"`
+	At    quantity `key:"at" dim:"temperature" range:"[0 K,5000 K]" doc:"temperature of above"`
+	Slope quantity `key:"slope" dim:"pressure-per-kelvin" doc:"of the boundary"`
+}
+
+type reactionRate struct {
+	block
+	Prefactor        quantity `key:"prefactor,required" dim:"strain-rate" range:"[0 1/s,)" eg:"2e-5 1/s"`
+	ActivationEnergy quantity `key:"activation-energy,required" dim:"molar-energy" range:"[0 J/mol,)"`
+}
+
+type viscosity struct {
+	_      struct{}         `kind:"union"`
+	Value  quantity         `form:"scalar" dim:"viscosity" range:"(0 Pa s,1e30 Pa s]"`
+	Linear *viscosityLinear `form:"map"`
+}
+
+type viscosityLinear struct {
+	block
+	Top    quantity `key:"top,required" dim:"viscosity" range:"(0 Pa s,1e30 Pa s]" doc:"at the layer's top"`
+	Bottom quantity `key:"bottom,required" dim:"viscosity" range:"(0 Pa s,1e30 Pa s]" doc:"at the layer's bottom; log-linear in between"`
+}
+
+type water struct {
+	_ struct{} `exactly:"fugacity content"`
+	block
+	Fugacity quantity `key:"fugacity" dim:"pressure" range:"(0 Pa,100 GPa]" doc:"water fugacity"`
+	Content  quantity `key:"content" dim:"number" range:"(0,1e7]" eg:"1000" doc:"water content in H per 10⁶ Si, a bare number"`
+}
+
+type grainSize struct {
+	_          struct{}    `kind:"union"`
+	Value      quantity    `form:"scalar" dim:"length" range:"(0 m,1 m]" eg:"5 mm"`
+	Piezometer *piezometer `form:"map"`
+}
+
+type piezometer struct {
+	block
+	Piezometer text `key:"piezometer,required" doc:"mineral whose grain size follows the stress"`
+}
+
+type friction struct {
+	block
+	Cohesion  quantity `key:"cohesion" dim:"pressure" range:"[0 Pa,10 GPa]" eg:"20 MPa"`
+	Angle     quantity `key:"angle" dim:"angle" range:"[0 deg,90 deg)" doc:"of internal friction"`
+	PoreFluid quantity `key:"pore-fluid-factor" dim:"number" range:"[0,1]" eg:"0.4" doc:"pore pressure over lithostatic pressure"`
+}
+
+type melt struct {
+	block
+	Fraction   quantity   `key:"fraction" dim:"number" range:"[0,1]" doc:"given melt fraction"`
+	Solidus    *meltCurve `key:"solidus" doc:"where melting begins"`
+	Liquidus   *meltCurve `key:"liquidus" doc:"where it ends"`
+	LatentHeat quantity   `key:"latent-heat" dim:"latent-heat" range:"[0 J/kg,1e7 J/kg]"`
+	Density    quantity   `key:"density" dim:"density" range:"(0 kg/m3,20000 kg/m3]" doc:"of the melt"`
+	Weakening  quantity   `key:"weakening" dim:"number" range:"[0,1000]" eg:"30" doc:"a in exp(a x melt fraction), of the strain rate"`
+}
+
+type meltCurve struct {
+	_     struct{}   `kind:"union"`
+	Value quantity   `form:"scalar" dim:"temperature" range:"[0 K,5000 K]"`
+	Line  *meltSlope `form:"map"`
+}
+
+type meltSlope struct {
+	block
+	Surface quantity `key:"surface,required" dim:"temperature" range:"[0 K,5000 K]" doc:"at zero pressure"`
+	Slope   quantity `key:"slope,required" dim:"kelvin-per-pressure"`
+}
+
+type conductivity struct {
+	_     struct{}           `kind:"union"`
+	Value quantity           `form:"scalar" dim:"conductivity" range:"(0 W/m/K,1000 W/m/K]"`
+	State *conductivityState `form:"map"`
+}
+
+type conductivityState struct {
+	block
+	Reference   quantity `key:"reference,required" dim:"conductivity" range:"(0 W/m/K,1000 W/m/K]"`
+	Temperature quantity `key:"temperature-coefficient" dim:"per-kelvin" range:"[-1e-1 1/K,1e-1 1/K]" eg:"1.5e-3 1/K" doc:"0 if left out"`
+	Pressure    quantity `key:"pressure-coefficient" dim:"per-pressure" range:"[-1e-6 1/Pa,1e-6 1/Pa]" eg:"0.04 1/GPa" doc:"0 if left out"`
+	At          quantity `key:"at" dim:"temperature" range:"[0 K,5000 K]" eg:"0 degC" doc:"temperature of reference; 0 degC if left out"`
+}
+
+type heatProduction struct {
+	_     struct{}  `kind:"union"`
+	Value quantity  `form:"scalar" dim:"heat-production" range:"[0 W/m3,1e-3 W/m3]"`
+	Decay *heatFall `form:"map"`
+}
+
+type heatFall struct {
+	block
+	Top   quantity `key:"top,required" dim:"heat-production" range:"[0 W/m3,1e-3 W/m3]" doc:"at the layer's top"`
+	Decay quantity `key:"decay-length,required" dim:"length" range:"(0 m,1000 km]" doc:"over which it falls by e"`
+}
+
+// increasing reports bounds that are not in order.
+func (w *walker) increasing(from, to quantity, path string) {
+	if !from.given() || !to.given() || from.SI < to.SI {
+		return
+	}
+	n := to.n
+	if n.from == fromDefault {
+		n = from.n
+	}
+	w.add(n, path, fmt.Sprintf("from %s is not before to %s", from.n.show(), to.n.show()))
+}

@@ -1,0 +1,59 @@
+package plots
+
+import (
+	"fmt"
+
+	"gonum.org/v1/plot/vg"
+
+	"keelfall/solver/race"
+)
+
+// All returns every figure that a result has the data for, in order: column, spectrum,
+// mode, fates. width is ColumnWidth where 0. It fails where a part is there and cannot
+// be drawn.
+func All(res *race.Result, width vg.Length) ([]Figure, error) {
+	if res == nil || res.Problem == nil {
+		return nil, fmt.Errorf("plots: there is no result to draw")
+	}
+	var out []Figure
+	add := func(f Figure, err error) error {
+		if err == nil {
+			out = append(out, f)
+		}
+		return err
+	}
+	if res.State != nil {
+		if err := add(Column(res.State, width)); err != nil {
+			return nil, err
+		}
+	}
+	sp, dr := res.Spectrum, res.Drip
+	if (sp != nil && len(sp.Rates) > 0) || (dr != nil && anyFinite(dr.Curve.Time)) {
+		against := Setting{ArcWidth: res.Problem.ArcWidth, Window: res.Problem.Drip.Window}
+		if err := add(Spectrum(sp, dr, against, width)); err != nil {
+			return nil, err
+		}
+	}
+	if sp != nil && sp.Mode != nil {
+		col := &res.Problem.Column
+		if res.State != nil && res.State.Column != nil {
+			col = res.State.Column
+		}
+		if err := add(Mode(col, sp.Mode, width)); err != nil {
+			return nil, err
+		}
+	}
+	hasDrip := dr != nil && dr.Outcome != "buoyant" && len(dr.History.Time) > 0
+	hasZones := res.Excision != nil && res.Excision.Outcome != "no zones" && len(res.Excision.History.Time) > 0
+	if hasDrip || hasZones {
+		if err := add(Fates(res, width)); err != nil {
+			return nil, err
+		}
+	}
+	return out, nil
+}
+
+func anyFinite(v []float64) bool {
+	_, _, ok := bounds(v)
+	return ok
+}

@@ -1,0 +1,202 @@
+package plots
+
+import (
+	"fmt"
+	"math"
+	"slices"
+
+	"gonum.org/v1/plot/vg"
+
+	"keelfall/column"
+	"keelfall/solver/state"
+)
+
+// profile is a column's state against depth in the units of the axes. Depth at a
+// contact stands twice, upper side first.
+type profile struct {
+	depth, pressure, density, temperature, viscosity []float64
+	layer                                            []int
+	capped, floored                                  []bool
+}
+
+// newProfile collects a state's points and checks that they can be drawn.
+func newProfile(st *state.State) (*profile, error) {
+	p := &profile{}
+	for i, l := range st.Layers {
+		if len(l.Points) == 0 {
+			return nil, fmt.Errorf("plots: layer %d of the column has no points", i+1)
+		}
+		for _, q := range l.Points {
+			p.depth = append(p.depth, q.Depth/km)
+			p.pressure = append(p.pressure, q.P/gpa)
+			p.density = append(p.density, q.Density)
+			p.viscosity = append(p.viscosity, q.Viscosity)
+			p.temperature = append(p.temperature, q.T-zeroCelsius)
+			p.layer = append(p.layer, i)
+			p.capped = append(p.capped, q.Capped)
+			p.floored = append(p.floored, q.Floored)
+		}
+	}
+	for _, e := range []error{finite("depth", p.depth...), finite("pressure", p.pressure...), finite("density", p.density...),
+		finite("viscosity", p.viscosity...), finite("density below the column", st.Base.Density), finite("viscosity below the column", st.Base.Viscosity)} {
+		if e != nil {
+			return nil, e
+		}
+	}
+	if st.HasTemperature {
+		if err := finite("temperature", p.temperature...); err != nil {
+			return nil, err
+		}
+	}
+	for i, v := range p.viscosity {
+		if v <= 0 {
+			return nil, fmt.Errorf("plots: viscosity: %g Pa s at %g km cannot be drawn on a log axis", v, p.depth[i])
+		}
+	}
+	return p, nil
+}
+
+// Column draws a column's density, temperature (where it has one) and viscosity
+// against depth, side by side on one depth axis, with pressure at right. The root is
+// tinted; rock denser than the rock below it is filled and the difference written.
+// width is ColumnWidth where 0.
+func Column(st *state.State, width vg.Length) (Figure, error) {
+	width, err := pageWidth(width)
+	if err != nil {
+		return Figure{}, err
+	}
+	if st == nil || st.Column == nil {
+		return Figure{}, fmt.Errorf("plots: there is no column to draw")
+	}
+	layers, err := newStrata(st.Column)
+	if err != nil {
+		return Figure{}, err
+	}
+	if err := sameLength("layers of the column and its state", len(st.Column.Layers), len(st.Layers)); err != nil {
+		return Figure{}, err
+	}
+	prof, err := newProfile(st)
+	if err != nil {
+		return Figure{}, err
+	}
+	f := columnFigure{st: st, layers: layers, prof: prof}
+	return Figure{Name: "column", Caption: f.caption(), Width: width, Height: 95 * vg.Millimeter, draw: f.draw}, nil
+}
+
+type columnFigure struct {
+	st     *state.State
+	layers *strata
+	prof   *profile
+}
+
+func (f columnFigure) caption() string {
+	what := "density (a), temperature (b) and viscosity (c)"
+	if !f.st.HasTemperature {
+		what = "density (a) and viscosity (b)"
+	}
+	s := "The column: " + what + " against depth; pressure at right."
+	for _, l := range f.layers.all {
+		if l.root {
+			s += " The root is tinted."
+			break
+		}
+	}
+	if len(f.heavy()) > 0 {
+		s += " Filled: rock denser than the rock below it."
+	}
+	if f.st.StrainRate > 0 {
+		s += fmt.Sprintf(" Viscosity of creep at a strain rate of %s 1/s.", plain(number(f.st.StrainRate, 3)))
+	}
+	if slices.Contains(f.prof.capped, true) || slices.Contains(f.prof.floored, true) {
+		s += " Grey along the viscosity: held at a limit."
+	}
+	return s + f.layers.remark()
+}
+
+// heavy lists the indices of layers denser than what lies below them.
+func (f columnFigure) heavy() []int {
+	base := f.st.Column.Base.Boundary
+	open := base == column.HalfSpace || base == column.Inviscid
+	var out []int
+	for i := range f.st.Layers {
+		if !open && i == len(f.st.Layers)-1 {
+			break // there is no rock below
+		}
+		if i+1 < len(f.st.Jumps) && f.st.Jumps[i+1] < 0 {
+			out = append(out, i)
+		}
+	}
+	return out
+}
+
+// narrowest is the width at which the panels' titles do not yet touch.
+const narrowest vg.Length = 41
+
+// draw lays the panels out: depth axis, names, panels, pressure axis.
+func (f columnFigure) draw(s *sheet) {
+	const gap = 5
+	box := vg.Rectangle{Min: vg.Point{Y: s.Min.Y + xAxisHeight(2) + 2}, Max: vg.Point{Y: s.Max.Y - 14}}
+	probe := &panel{sheet: s, box: box, y: f.layers.depth()}
+	depths := linearTicks(probe.y, probe.yFits)
+	pressures := f.pressureTicks(probe)
+	n := 2
+	if f.st.HasTemperature {
+		n = 3
+	}
+	left := s.Min.X + yAxisWidth(depths) + 2
+	strip := f.layers.stripWidth(s.Max.X - s.Min.X)
+	right := s.Max.X - yAxisWidth(pressures) - 2
+	wide := (right - left - strip - vg.Length(n-1)*gap) / vg.Length(n)
+	if short := narrowest - wide; short > 0 { // at the cost of names
+		strip, wide = strip-short*vg.Length(n), narrowest
+	}
+
+	names := &panel{sheet: s, box: box, x: linear(0, 1), y: probe.y}
+	names.box.Min.X, names.box.Max.X = left, left+strip
+	f.layers.strip(names)
+	names.frame()
+	names.vertical("Depth (km)", depths, false)
+
+	draws := []func(*panel){f.density, f.viscosity}
+	if n == 3 {
+		draws = []func(*panel){f.density, f.temperature, f.viscosity}
+	}
+	for i, draw := range draws {
+		p := &panel{sheet: s, box: box, y: probe.y, overhang: 1}
+		p.box.Min.X = left + strip + vg.Length(i)*(wide+gap)
+		p.box.Max.X = p.box.Min.X + wide
+		draw(p)
+		p.frame()
+		p.letter("(" + string(rune('a'+i)) + ")")
+		if i == n-1 {
+			p.vertical("Pressure (GPa)", pressures, true)
+		}
+	}
+}
+
+// pressureTicks puts round pressures at their depths.
+func (f columnFigure) pressureTicks(p *panel) []tick {
+	z, pr := f.prof.depth, f.prof.pressure
+	var most float64
+	for i := range z {
+		if z[i] <= f.layers.bottom {
+			most = math.Max(most, pr[i])
+		}
+	}
+	at := func(v float64) float64 {
+		for i := 1; i < len(z); i++ {
+			if v <= pr[i] && pr[i] > pr[i-1] {
+				return z[i-1] + (z[i]-z[i-1])*(v-pr[i-1])/(pr[i]-pr[i-1])
+			}
+		}
+		return z[0]
+	}
+	place := func(ts []tick) []tick {
+		out := make([]tick, len(ts))
+		for i, t := range ts {
+			out[i] = tick{at(t.at), t.label}
+		}
+		return out
+	}
+	return place(linearTicks(linear(0, most), func(ts []tick) bool { return p.yFits(place(ts)) }))
+}

@@ -1,0 +1,234 @@
+package plots
+
+import (
+	"fmt"
+	"math"
+
+	"gonum.org/v1/plot/text"
+	"gonum.org/v1/plot/vg"
+
+	"keelfall/solver/drip"
+	"keelfall/solver/excision"
+	"keelfall/solver/race"
+)
+
+// Fates draws what becomes of the root against time: its thickness where shear zones
+// cut it out (in the user's column and over the arc), and below it the undulation's
+// amplitude up to the drip; the window's end, drip and excision in words. Either part
+// may be missing; an error where both are. width is ColumnWidth where 0.
+func Fates(res *race.Result, width vg.Length) (Figure, error) {
+	width, err := pageWidth(width)
+	if err != nil {
+		return Figure{}, err
+	}
+	if res == nil || res.Problem == nil {
+		return Figure{}, fmt.Errorf("plots: there is no result to draw")
+	}
+	f := fatesFigure{window: res.Problem.Drip.Window / myr, age: math.NaN()}
+	if res.Problem.HasTimeZero {
+		f.age = res.Problem.TimeZero / myr
+	}
+	if first, last, ok := res.Problem.Column.RootSpan(); ok {
+		for _, l := range res.Problem.Column.Layers[first : last+1] {
+			f.tip += l.Thickness / km * res.Problem.Drip.Criterion
+		}
+	}
+	if err := finite("window and criterion", f.window, f.tip); err != nil {
+		return Figure{}, err
+	}
+	if err := f.takeExcision(res.Excision); err != nil {
+		return Figure{}, err
+	}
+	if err := f.takeDrip(res.Drip); err != nil {
+		return Figure{}, err
+	}
+	height := 72 * vg.Millimeter
+	switch {
+	case f.excision == nil && f.drip == nil:
+		return Figure{}, fmt.Errorf("plots: neither excision nor a drip has a history to draw")
+	case f.excision != nil && f.drip != nil:
+		height = 118 * vg.Millimeter
+	}
+	f.headline = headline(&res.Verdict, f.window)
+	f.x = linear(0, f.lastTime())
+	f.buoyant = res.Drip != nil && res.Drip.Outcome == "buoyant"
+	return Figure{Name: "fates", Caption: f.caption(res.Verdict.Sentence), Width: width, Height: height, draw: f.draw}, nil
+}
+
+// fatesFigure is in km and Myr.
+type fatesFigure struct {
+	x           scale
+	window, age float64 // age of time zero, Ma; NaN where not given
+	tip         float64 // descent that counts as a drip
+	headline    string
+	buoyant     bool
+	excision    *excision.Result
+	time        []float64
+	column, arc []float64 // root thickness
+	drip        *drip.Result
+	dripTime    []float64
+	amplitude   []float64
+}
+
+func (f *fatesFigure) takeExcision(e *excision.Result) error {
+	if e == nil || e.Outcome == "no zones" || len(e.History.Time) == 0 {
+		return nil
+	}
+	h := e.History
+	f.time, f.column, f.arc = divided(h.Time, myr), divided(h.RootThickness, km), divided(h.ArcMean, km)
+	if len(f.arc) == 0 {
+		f.arc = nil
+	} else if err := sameLength("arc mean and time", len(f.arc), len(f.time)); err != nil {
+		return err
+	}
+	for _, err := range []error{sameLength("root thickness and time", len(f.column), len(f.time)),
+		finite("time", f.time...), finite("root thickness", f.column...), finite("arc mean", f.arc...)} {
+		if err != nil {
+			return err
+		}
+	}
+	if math.IsNaN(e.Time) {
+		return fmt.Errorf("plots: the excision time is not a number")
+	}
+	f.excision = e
+	return nil
+}
+
+func (f *fatesFigure) takeDrip(d *drip.Result) error {
+	if d == nil || d.Outcome == "buoyant" || len(d.History.Time) == 0 {
+		return nil
+	}
+	f.dripTime, f.amplitude = divided(d.History.Time, myr), divided(d.History.Base, km)
+	for _, err := range []error{sameLength("amplitude and time", len(f.amplitude), len(f.dripTime)),
+		finite("time", f.dripTime...), finite("amplitude", f.amplitude...)} {
+		if err != nil {
+			return err
+		}
+	}
+	if _, hi, _ := bounds(f.amplitude); hi <= 0 {
+		return nil
+	}
+	if math.IsNaN(d.Time) {
+		return fmt.Errorf("plots: the drip time is not a number")
+	}
+	f.drip = d
+	return nil
+}
+
+// lastTime is the end of the time axis: a little after the window and what happens soon
+// after it.
+func (f *fatesFigure) lastTime() float64 {
+	last := f.window
+	if last == 0 {
+		_, last, _ = bounds(f.time, f.dripTime)
+	}
+	limit := 1.6 * last
+	if limit == 0 {
+		return 1
+	}
+	see := func(t float64) {
+		if t/myr <= limit {
+			last = math.Max(last, t/myr)
+		}
+	}
+	if f.excision != nil {
+		see(excisionTime(f.excision))
+	}
+	if f.drip != nil {
+		see(f.drip.Time)
+		see(f.drip.TimeHigh)
+	}
+	return 1.06 * last
+}
+
+// headline is the verdict in a few words.
+func headline(v *race.Verdict, window float64) string {
+	at := ""
+	if !math.IsInf(v.Time, 0) && !math.IsNaN(v.Time) && v.Time > 0 {
+		at = ", at " + span(v.Time)
+	}
+	switch v.Outcome {
+	case "dripped":
+		return "The root drips first" + at
+	case "excised":
+		return "The root is cut out first" + at
+	case "both":
+		return "Drip and shear zones both take the root" + at
+	case "preserved":
+		return "The root is still there after " + number(window, 3) + " Myr"
+	}
+	return ""
+}
+
+func (f fatesFigure) caption(sentence string) string {
+	var s string
+	switch {
+	case f.drip == nil:
+		s = "The root's thickness against time where shear zones cut it out."
+	case f.excision == nil:
+		s = "Amplitude of the undulation on the root's base against time."
+	default:
+		s = "The root's thickness where shear zones cut it out (a) and the amplitude of the undulation on its base (b) against time."
+	}
+	if f.arc != nil && f.excision != nil {
+		s += " Solid: the column that the zones cross; dashed: mean over the arc."
+	}
+	if f.hasBand() {
+		s += fmt.Sprintf(" Grey band: drip times for an undulation three times as high (%s) and a third as high (%s).",
+			plain(span(f.drip.TimeLow)), plain(span(f.drip.TimeHigh)))
+	}
+	if f.buoyant {
+		s += " The root is buoyant and does not drip."
+	}
+	if sentence != "" {
+		s += " " + sentence
+	}
+	return s
+}
+
+func (f fatesFigure) hasBand() bool {
+	return f.drip != nil && f.drip.TimeLow > 0 && f.drip.TimeHigh > f.drip.TimeLow && !math.IsInf(f.drip.TimeLow, 1)
+}
+
+// draw stacks the panels on one time axis; ages run along the top.
+func (f fatesFigure) draw(s *sheet) {
+	var parts []part
+	if f.excision != nil {
+		parts = append(parts, f.thickness())
+	}
+	if f.drip != nil {
+		parts = append(parts, f.amplitudes())
+	}
+	top := s.Max.Y - 4
+	if f.headline != "" {
+		const left, right = 36, 6
+		txt := wrap(f.headline, letterSize, s.Max.X-s.Min.X-left-right, 2)
+		_, up, _ := extent(txt, letterSize)
+		s.text(vg.Point{X: s.Min.X + left, Y: top}, txt, textStyle{size: letterSize, y: text.YTop})
+		top -= up + 6
+	}
+	if !math.IsNaN(f.age) {
+		top -= xAxisHeight(1)
+		parts[0].top = func(p *panel) (string, []tick) { return "Age (Ma)", f.ages(p) }
+	}
+	for i := range parts {
+		parts[i].front = func(p *panel) {
+			if f.window > 0 {
+				p.vline(f.window, stroke(vermillion, medium, dashed))
+			}
+		}
+	}
+	s.stack(parts, f.x, s.Min.Y+xAxisHeight(1)+2, top, "Time (Myr)", func(p *panel) []tick { return linearTicks(p.x, p.xFits) })
+}
+
+// ages are round ages at their times.
+func (f fatesFigure) ages(p *panel) []tick {
+	place := func(ts []tick) []tick {
+		out := make([]tick, len(ts))
+		for i, t := range ts {
+			out[len(ts)-1-i] = tick{f.age - t.at, t.label}
+		}
+		return out
+	}
+	return place(linearTicks(linear(f.age-f.x.hi, f.age-f.x.lo), func(ts []tick) bool { return p.xFits(place(ts)) }))
+}
