@@ -1,6 +1,10 @@
 package growth
 
-import "gonum.org/v1/gonum/integrate/quad"
+import (
+	"slices"
+
+	"gonum.org/v1/gonum/integrate/quad"
+)
 
 // stages is S, the number of Gauss points of an element; the method's order is 2S.
 const stages = 8
@@ -31,6 +35,10 @@ var (
 
 func init() {
 	quad.Legendre{}.FixedLocations(nodeC[:], nodeB[:], 0, 1)
+	if nodeC[0] > nodeC[stages-1] { // top first
+		slices.Reverse(nodeC[:])
+		slices.Reverse(nodeB[:])
+	}
 	var x, w [stages]float64
 	quad.Legendre{}.FixedLocations(x[:], w[:], 0, 1)
 	lagrange := func(j int, t float64) float64 {

@@ -2,6 +2,7 @@ package race
 
 import (
 	"context"
+	"fmt"
 	"math"
 	"slices"
 
@@ -9,99 +10,80 @@ import (
 	"keelfall/solver/excision"
 )
 
-// flips finds, for the numbers that matter most, the value at which the verdict
-// changes: those of the drip are moved until the drip time meets the time that it has
-// (the excision time, or the window's end); slip rates until the excision time does.
+// flips finds, for the numbers that matter most, the value nearest to the one in use
+// at which the verdict changes, all else equal. Numbers of the drip change the drip
+// time; slip rates change the excision.
 func (r *Result) flips(ctx context.Context) error {
-	p, d, x, v := r.Problem, r.Drip, r.Excision, &r.Verdict
-	target := math.Min(x.Time, p.Drip.Window) // the drip is first where it is below this
-	near := d.Wavelength
+	p, v := r.Problem, &r.Verdict
+	near := r.Drip.Wavelength
 	if near == 0 {
 		near = r.Spectrum.Fastest.Wavelength
 	}
-	dripAt := func(change func(*Problem)) float64 {
+	// changed says whether the verdict differs after a change of the problem
+	changed := func(change func(*Problem)) bool {
 		q := *p
 		q.Column.Layers = slices.Clone(p.Column.Layers)
 		change(&q)
 		t, err := dripTime(ctx, &q, near)
 		if err != nil {
-			if ctx.Err() != nil {
-				return math.NaN()
-			}
-			return math.Inf(1) // not a column that could be run: not a flip either
+			return false // not a column that can be run: no flip there
 		}
-		return t
+		return judge(t, r.Excision, v.Share, p.Drip.Window).outcome != v.Outcome
 	}
 	first, last, _ := p.Column.RootSpan()
-	scaleRoot := func(x float64) float64 {
-		return dripAt(func(q *Problem) {
+	root := p.Column.Layers[last].Name
+	scale := func(f *Flip, unit string, from, most float64, change func(*Problem, float64)) {
+		f.Unit, f.From = unit, from
+		if u, ok := nearest(func(x float64) bool {
+			return changed(func(q *Problem) { change(q, math.Exp(x)) })
+		}, most); ok {
+			f.To, f.Found, f.Distance = from*math.Exp(u), true, math.Abs(u)
+		}
+		f.Default = p.isDefault(f.Key)
+		v.Flips = append(v.Flips, *f)
+	}
+	scale(&Flip{Key: "layers." + root + ".viscosity-factor", Label: "root viscosity"}, "x", p.Column.Layers[last].Viscosity.FactorOr1(), math.Log(1000), func(q *Problem, x float64) {
+		for i := first; i <= last; i++ {
+			q.Column.Layers[i].Viscosity.Factor = q.Column.Layers[i].Viscosity.FactorOr1() * x
+		}
+	})
+	if f := v.Flips[0]; f.Found {
+		v.MarginLog10Viscosity = math.Log10(f.To / f.From)
+	}
+	tip := p.Drip.Criterion * p.rootThickness()
+	scale(&Flip{Key: "drip.amplitude", Label: "initial undulation"}, "m", p.Drip.Amplitude, math.Log(0.99*tip/p.Drip.Amplitude), func(q *Problem, x float64) {
+		q.Drip.Amplitude *= x
+	})
+	if contrast := -r.State.Jumps[last+1]; contrast > 0 {
+		scale(&Flip{Key: "layers." + root + ".density", Label: "density contrast"}, "kg/m3", contrast, math.Log(10), func(q *Problem, x float64) {
 			for i := first; i <= last; i++ {
-				q.Column.Layers[i].Viscosity.Factor *= math.Exp(x)
+				q.Column.Layers[i].Density = heavier{q.Column.Layers[i].Density, contrast * (x - 1)}
 			}
 		})
 	}
-	viscosity := Flip{Key: "viscosity-factor", Label: "root viscosity", From: 1, Unit: "x"}
-	if u, ok := crossing(scaleRoot, target, math.Log(1000)); ok {
-		viscosity.To, viscosity.Found, viscosity.Distance = math.Exp(u), true, math.Abs(u)
-		v.MarginLog10Viscosity = u / math.Ln10
-	}
-	add := func(f Flip) { v.Flips = append(v.Flips, f) }
-	add(viscosity)
-
-	amplitude := Flip{Key: "drip.amplitude", Label: "initial undulation", From: p.Drip.Amplitude, Unit: "m", Default: p.isDefault("drip.amplitude")}
-	var thickness float64
-	for i := first; i <= last; i++ {
-		thickness += p.Column.Layers[i].Thickness
-	}
-	most := math.Log(p.Drip.Criterion * thickness / p.Drip.Amplitude * 0.999)
-	if u, ok := crossing(func(x float64) float64 {
-		return dripAt(func(q *Problem) { q.Drip.Amplitude *= math.Exp(math.Min(x, most)) })
-	}, target, math.Log(1000)); ok && u < most {
-		amplitude.To, amplitude.Found, amplitude.Distance = p.Drip.Amplitude*math.Exp(u), true, math.Abs(u)
-	}
-	add(amplitude)
-
-	if contrast := -r.State.Jumps[last+1]; contrast > 0 {
-		density := Flip{Key: "density", Label: "density contrast", From: contrast, Unit: "kg/m3"}
-		if u, ok := crossing(func(x float64) float64 {
-			more := contrast * (math.Exp(x) - 1)
-			return dripAt(func(q *Problem) {
-				for i := first; i <= last; i++ {
-					q.Column.Layers[i].Density = heavier{q.Column.Layers[i].Density, more}
-				}
-			})
-		}, target, math.Log(10)); ok {
-			density.To, density.Found, density.Distance = contrast*math.Exp(u), true, math.Abs(u)
-		}
-		add(density)
-	}
 	if p.Column.Base.HasTemperature && r.State.HasTemperature && len(p.Column.Geotherm) == 0 {
 		const unit = 100.0 // K
-		temperature := Flip{Key: "base.temperature", Label: "basal temperature", From: p.Column.Base.Temperature, Unit: "K"}
-		if u, ok := crossing(func(x float64) float64 {
-			return dripAt(func(q *Problem) { q.Column.Base.Temperature += unit * x })
-		}, target, 5); ok {
-			temperature.To, temperature.Found, temperature.Distance = p.Column.Base.Temperature+unit*u, true, math.Abs(u)
+		f := Flip{Key: "base.temperature", Label: "basal temperature", Unit: "K", From: p.Column.Base.Temperature}
+		if u, ok := nearest(func(x float64) bool {
+			return changed(func(q *Problem) { q.Column.Base.Temperature += unit * x })
+		}, 5); ok {
+			f.To, f.Found, f.Distance = f.From+unit*u, true, math.Abs(u)
 		}
-		add(temperature)
+		v.Flips = append(v.Flips, f)
 	}
 	if r.Rate.Used {
-		rate := Flip{Key: "strain.reference-rate", Label: "reference strain rate", From: p.Strain.ReferenceRate, Unit: "1/s", Default: p.isDefault("strain.reference-rate")}
-		if u, ok := crossing(func(x float64) float64 {
-			return dripAt(func(q *Problem) { q.Strain.ReferenceRate *= math.Exp(x) })
-		}, target, math.Log(1000)); ok {
-			rate.To, rate.Found, rate.Distance = p.Strain.ReferenceRate*math.Exp(u), true, math.Abs(u)
-		}
-		add(rate)
+		scale(&Flip{Key: "strain.reference-rate", Label: "reference strain rate"}, "1/s", p.Strain.ReferenceRate, math.Log(1000), func(q *Problem, x float64) {
+			q.Strain.ReferenceRate *= x
+		})
 	}
 	if len(p.Zones) > 0 {
-		add(r.slipFlip())
+		v.Flips = append(v.Flips, r.slipFlip())
 	}
 	slices.SortStableFunc(v.Flips, func(a, b Flip) int {
 		switch {
-		case a.Found != b.Found && a.Found, a.Found && b.Found && a.Distance < b.Distance:
+		case a.Found && (!b.Found || a.Distance < b.Distance):
 			return -1
-		case a.Found != b.Found, a.Found && b.Found && a.Distance > b.Distance:
+		case b.Found && (!a.Found || b.Distance < a.Distance):
 			return 1
 		}
 		return 0
@@ -109,72 +91,75 @@ func (r *Result) flips(ctx context.Context) error {
 	return ctx.Err()
 }
 
-// slipFlip finds the factor on every zone's slip rate that changes which is first.
+// slipFlip finds the factor on every zone's slip rate that changes the verdict.
 func (r *Result) slipFlip() Flip {
-	p, d := r.Problem, r.Drip
-	f := Flip{Key: "excision.slip-rate", Label: "slip rate of the zones", From: 1, Unit: "x"}
+	p, v := r.Problem, &r.Verdict
+	f := Flip{Key: "excision.zones.slip-rate", Label: "slip rate of the zones", From: 1, Unit: "x"}
+	if len(p.Zones) == 1 {
+		f = Flip{Key: fmt.Sprintf("excision.zones.%s.slip-rate", p.Zones[0].Name), Label: "slip rate", From: p.Zones[0].SlipRate, Unit: "m/s"}
+	}
 	set := p.excisionSetting(r.State)
-	target := math.Min(d.Time, p.Drip.Window)
-	u, ok := crossing(func(x float64) float64 {
+	u, ok := nearest(func(x float64) bool {
 		zones := slices.Clone(p.Zones)
 		for i := range zones {
 			zones[i].SlipRate *= math.Exp(x)
 		}
 		res, err := excision.Solve(zones, set)
-		if err != nil {
-			return math.Inf(1)
-		}
-		return res.Time
-	}, target, math.Log(1000))
+		return err == nil && judge(r.Drip.Time, res, v.Share, p.Drip.Window).outcome != v.Outcome
+	}, math.Log(1000))
 	if ok {
-		f.To, f.Found, f.Distance = math.Exp(u), true, math.Abs(u)
+		f.To, f.Found, f.Distance = f.From*math.Exp(u), true, math.Abs(u)
 	}
 	return f
 }
 
-// crossing returns the smallest |x|, up to most, at which the time t(x) passes target:
-// steps outwards that double, then bisection to 1e-4. A time is +Inf where never.
-func crossing(t func(float64) float64, target, most float64) (float64, bool) {
-	if math.IsInf(target, 1) {
+// nearest returns the x of smallest |x| up to most at which changed holds: growing
+// steps outwards on both sides in turn, then bisection to 1e-4.
+func nearest(changed func(float64) bool, most float64) (float64, bool) {
+	if !(most > 0) {
 		return 0, false
 	}
-	start := t(0) < target
-	found := math.Inf(1)
-	for _, sign := range []float64{1, -1} {
-		lo := 0.0
-		for step := 0.1; lo < most && lo < math.Abs(found); step *= 1.6 {
-			hi := math.Min(lo+step, most)
-			th := t(sign * hi)
-			if math.IsNaN(th) {
-				return 0, false
+	lo := 0.0
+	for step := 0.1; lo < most; step *= 1.6 {
+		hi := math.Min(lo+step, most)
+		found, ok := 0.0, false
+		for _, sign := range []float64{1, -1} {
+			if !changed(sign * hi) {
+				continue
 			}
-			if (th < target) != start {
-				for hi-lo > 1e-4 {
-					mid := (lo + hi) / 2
-					if (t(sign*mid) < target) != start {
-						hi = mid
-					} else {
-						lo = mid
-					}
+			a, b := lo, hi
+			for b-a > 1e-4 {
+				if mid := (a + b) / 2; changed(sign * mid) {
+					b = mid
+				} else {
+					a = mid
 				}
-				if hi < math.Abs(found) {
-					found = sign * hi
-				}
-				break
 			}
-			lo = hi
+			if !ok || b < math.Abs(found) {
+				found, ok = sign*b, true
+			}
+		}
+		if ok {
+			return found, true
+		}
+		lo = hi
+	}
+	return 0, false
+}
+
+// rootThickness returns the sum of the root layers' thicknesses, m.
+func (p *Problem) rootThickness() float64 {
+	var h float64
+	for i := range p.Column.Layers {
+		if p.Column.Layers[i].Root {
+			h += p.Column.Layers[i].Thickness
 		}
 	}
-	return found, !math.IsInf(found, 1)
+	return h
 }
 
 func (p *Problem) isDefault(key string) bool {
-	for _, d := range p.Defaults {
-		if d.Key == key {
-			return true
-		}
-	}
-	return false
+	return slices.ContainsFunc(p.Defaults, func(d Default) bool { return d.Key == key })
 }
 
 // heavier is a rock whose density is raised by a constant.
@@ -183,4 +168,5 @@ type heavier struct {
 	more float64 // kg/m³
 }
 
+// At returns the raised density.
 func (h heavier) At(T, P, x float64) float64 { return h.Density.At(T, P, x) + h.more }

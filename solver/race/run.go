@@ -133,8 +133,8 @@ func Run(ctx context.Context, p *Problem) (*Result, error) {
 	return r, nil
 }
 
-// rateDependent says whether any viscosity of the column depends on strain rate.
-func rateDependent(s *state.State) bool {
+// RateDependent says whether any viscosity of the column depends on strain rate.
+func RateDependent(s *state.State) bool {
 	const newtonian = 1 + 1e-6
 	for _, l := range s.Layers {
 		for _, p := range l.Points {
@@ -150,7 +150,7 @@ func rateDependent(s *state.State) bool {
 // computes the drip time at three times and a third of that.
 func (r *Result) strainRates(ctx context.Context) error {
 	p := r.Problem
-	r.Rate = RateBand{Used: rateDependent(r.State), AtThrice: math.Inf(1), AtOneThird: math.Inf(1)}
+	r.Rate = RateBand{Used: RateDependent(r.State), AtThrice: math.Inf(1), AtOneThird: math.Inf(1)}
 	if !r.Rate.Used {
 		r.Rate.AtThrice, r.Rate.AtOneThird = r.Drip.Time, r.Drip.Time
 		return nil

@@ -3,35 +3,44 @@ package race
 import (
 	"fmt"
 	"math"
+
+	"keelfall/solver/excision"
 )
+
+// ruling is what the contract's clock says of one drip time and one excision.
+type ruling struct {
+	outcome string
+	time    float64 // s, when the clock stops
+	margin  float64 // s to the next thing that would stop it
+	shares  Shares
+}
 
 // judge applies the contract's clock: it stops when the share of the root's initial
 // mass is gone. The mechanism with the larger part is named; both, where the smaller
 // part is at least half the larger; preserved, where the window ends first.
-func (r *Result) judge() {
-	p, d, x := r.Problem, r.Drip, r.Excision
-	v := &r.Verdict
-	v.Share = p.Share()
-	v.MarginLog10Viscosity = math.Inf(1)
-	window := p.Drip.Window
+func judge(drip float64, x *excision.Result, share, window float64) ruling {
 	switch {
-	case x.Time <= window && x.Time <= d.Time:
-		v.Outcome, v.Time = "excised", x.Time
-		v.Margin = d.Time - x.Time
-		v.Shares = Shares{0, v.Share}
-	case d.Time <= window:
-		gone := math.Max(0, at(x.History.Time, x.History.RootMassShare, d.Time))
-		v.Outcome, v.Time = "dripped", d.Time
-		v.Margin = math.Min(x.LocalBeyond, math.Inf(1)) - d.Time
-		v.Shares = Shares{v.Share * (1 - gone), gone} // of the mass left at that moment
-		if small, large := math.Min(v.Shares.Drip, gone), math.Max(v.Shares.Drip, gone); small >= large/2 {
-			v.Outcome = "both"
+	case x.Time <= window && x.Time <= drip:
+		return ruling{"excised", x.Time, drip - x.Time, Shares{0, share}}
+	case drip <= window:
+		gone := math.Max(0, at(x.History.Time, x.History.RootMassShare, drip))
+		v := ruling{"dripped", drip, x.LocalBeyond - drip, Shares{share * (1 - gone), gone}} // of the mass left at that moment
+		if math.Min(v.shares.Drip, gone) >= math.Max(v.shares.Drip, gone)/2 {
+			v.outcome = "both"
 		}
-	default:
-		v.Outcome, v.Time = "preserved", window
-		v.Margin = math.Min(d.Time, x.LocalBeyond) - window
-		v.Shares = Shares{0, math.Max(0, at(x.History.Time, x.History.RootMassShare, window))}
+		return v
 	}
+	return ruling{"preserved", window, math.Min(drip, x.LocalBeyond) - window,
+		Shares{0, math.Max(0, at(x.History.Time, x.History.RootMassShare, window))}}
+}
+
+// judge fills the verdict.
+func (r *Result) judge() {
+	v, x := &r.Verdict, r.Excision
+	v.Share = r.Problem.Share()
+	v.MarginLog10Viscosity = math.Inf(1)
+	j := judge(r.Drip.Time, x, v.Share, r.Problem.Drip.Window)
+	v.Outcome, v.Time, v.Margin, v.Shares = j.outcome, j.time, j.margin, j.shares
 	v.ArcMean = Shares{Drip: v.Shares.Drip}
 	if len(x.History.ArcMeanShare) > 0 {
 		v.ArcMean.Excision = at(x.History.Time, x.History.ArcMeanShare, v.Time)
@@ -97,7 +106,15 @@ func (r *Result) reasons() {
 func (r *Result) sentence() string {
 	const myr = 1e6 * 365.25 * 86400 // s
 	v, d, x := &r.Verdict, r.Drip, r.Excision
-	when := func(t float64) string { return fmt.Sprintf("%.3g Myr", t/myr) }
+	when := func(t float64) string {
+		switch t /= myr; {
+		case t >= 1000:
+			return "more than 1000 Myr"
+		case t >= 100:
+			return fmt.Sprintf("%.0f Myr", t)
+		}
+		return fmt.Sprintf("%.3g Myr", t)
+	}
 	share := fmt.Sprintf("%.0f %% of it", 100*v.Share)
 	zones := "no shear zone cuts it"
 	if x.Outcome != "no zones" {
@@ -109,6 +126,9 @@ func (r *Result) sentence() string {
 	drips := "it would never drip"
 	if !math.IsInf(d.Time, 1) {
 		drips = "it would drip at " + when(d.Time)
+		if d.Time >= 1000*myr {
+			drips = "it would take more than 1000 Myr to drip"
+		}
 	}
 	switch v.Outcome {
 	case "dripped":

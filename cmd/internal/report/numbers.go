@@ -7,6 +7,7 @@ import (
 	"encoding/json"
 	"math"
 	"strconv"
+	"strings"
 )
 
 // Units of the printing edge.
@@ -83,5 +84,18 @@ func myr(t float64) string {
 	if math.IsInf(t, 1) {
 		return "never"
 	}
-	return sig(t/Myr, 3) + " Myr"
+	if t > 1000*Myr {
+		return "more than 1000 Myr"
+	}
+	return short(t/Myr) + " Myr"
+}
+
+// short formats a length, time or factor with three significant digits and no zeros
+// that say nothing.
+func short(x float64) string {
+	s := sig(x, 3)
+	if strings.Contains(s, ".") && !strings.Contains(s, "e") {
+		s = strings.TrimRight(strings.TrimRight(s, "0"), ".")
+	}
+	return s
 }

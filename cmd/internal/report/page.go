@@ -54,6 +54,9 @@ func when(p *race.Problem, t float64) string {
 	if math.IsInf(t, 1) {
 		return "never"
 	}
+	if t > 1000*Myr {
+		return myr(t)
+	}
 	if p.HasTimeZero && p.TimeZero >= t {
 		return fmt.Sprintf("%.1f Ma (%s)", (p.TimeZero-t)/Myr, myr(t))
 	}
@@ -68,8 +71,8 @@ func answer(p *page, r *race.Result) {
 		return
 	}
 	p.say("%s", v.Sentence)
-	if r.Problem.HasTimeZero && v.Outcome != "preserved" {
-		p.say("That is %s.", when(r.Problem, v.Time))
+	if pb := r.Problem; pb.HasTimeZero && v.Outcome != "preserved" && pb.TimeZero >= v.Time {
+		p.say("That is at %.1f Ma.", (pb.TimeZero-v.Time)/Myr)
 	}
 	if f, ok := v.Decider(); ok {
 		given := ""
@@ -96,19 +99,19 @@ func answer(p *page, r *race.Result) {
 func value(f race.Flip, x float64) string {
 	switch f.Unit {
 	case "x":
-		return "× " + sig(x, 3)
+		return "× " + short(x)
 	case "m":
-		return sig(x, 3) + " m"
+		return short(x) + " m"
 	case "K":
 		return fmt.Sprintf("%.0f degC", x-zero)
 	case "kg/m3":
-		return sig(x, 3) + " kg/m3"
+		return short(x) + " kg/m3"
 	case "m/s":
-		return sig(x*1e3*Year, 3) + " mm/yr"
+		return short(x*1e3*Year) + " mm/yr"
 	case "1/s":
 		return fmt.Sprintf("%.2g 1/s", x)
 	}
-	return sig(x, 3) + " " + f.Unit
+	return short(x) + " " + f.Unit
 }
 
 func columnText(p *page, s *state.State) {
@@ -126,7 +129,10 @@ func columnText(p *page, s *state.State) {
 		a, b := l.Points[0], l.Points[len(l.Points)-1]
 		c := &s.Column.Layers[i]
 		name := c.Name
-		if c.Root {
+		switch {
+		case c.Root && strings.EqualFold(name, "root"):
+			name = "ROOT"
+		case c.Root:
 			name = cut(name, long-6) + ", ROOT"
 		}
 		t := "-"
@@ -134,7 +140,7 @@ func columnText(p *page, s *state.State) {
 			t = fmt.Sprintf("%.0f-%.0f", a.T-zero, b.T-zero)
 		}
 		p.line("%s  %9s  %10s  %11s  %9s  %10s  %s", pad(cut(name, long), long),
-			fmt.Sprintf("%s-%s", sig(a.Depth/km, 3), sig(b.Depth/km, 3)), t,
+			fmt.Sprintf("%s-%s", short(a.Depth/km), short(b.Depth/km)), t,
 			fmt.Sprintf("%.2f-%.2f", a.P/1e9, b.P/1e9), span("%.0f", a.Density, b.Density),
 			span("%.1f", math.Log10(a.Viscosity), math.Log10(b.Viscosity)), flow(c.Viscosity.Creep == nil, creepNames(s, i)))
 	}
@@ -152,7 +158,7 @@ func columnText(p *page, s *state.State) {
 			}
 		}
 		if j > 0 {
-			p.say("The root is %.0f kg/m3 denser than what lies below it: %.0f MPa over its %s km.", j, j*s.Column.Gravity*h/1e6, sig(h/km, 3))
+			p.say("The root is %.0f kg/m3 denser than what lies below it: %.0f MPa over its %s km.", j, j*s.Column.Gravity*h/1e6, short(h/km))
 		} else {
 			p.say("The root is %.0f kg/m3 lighter than what lies below it: buoyant.", -j)
 		}
@@ -163,10 +169,26 @@ func creepNames(s *state.State, layer int) []string {
 	var names []string
 	if c := s.Column.Layers[layer].Viscosity.Creep; c != nil {
 		for _, l := range c.Laws {
-			names = append(names, l.Name)
+			names = append(names, brief(l.Name))
 		}
 	}
 	return names
+}
+
+// brief is a law's name without its paper and the commonest mechanism, for a table;
+// the methods give it whole.
+func brief(name string) string {
+	words := strings.Fields(name)
+	for i, w := range words {
+		if i > 1 && yearIn.MatchString(w) {
+			words = words[:i-1]
+			break
+		}
+	}
+	if n := len(words); n > 1 && words[n-1] == "dislocation" {
+		words = words[:n-1]
+	}
+	return strings.Join(words, " ")
 }
 
 func flow(given bool, names []string) string {
@@ -188,7 +210,7 @@ func span(format string, a, b float64) string {
 // below describes what lies under the last layer.
 func below(p *page, s *state.State, long int) {
 	b := &s.Column.Base
-	depth := sig(s.Column.Depth()/km, 3)
+	depth := short(s.Column.Depth() / km)
 	switch b.Boundary.String() {
 	case "half-space":
 		t := "-"
@@ -198,7 +220,7 @@ func below(p *page, s *state.State, long int) {
 		var names []string
 		if b.Viscosity.Creep != nil {
 			for _, l := range b.Viscosity.Creep.Laws {
-				names = append(names, l.Name)
+				names = append(names, brief(l.Name))
 			}
 		}
 		p.line("%s  %9s  %10s  %11s  %9.0f  %10.1f  %s", pad("half-space", long), depth+" down", t,
@@ -249,16 +271,16 @@ func growthText(p *page, s *state.State, sp *growth.Spectrum) {
 	p.section("GROWTH")
 	f := sp.Fastest
 	if f.Growth <= 0 {
-		p.say("Nothing grows: every undulation decays or stays; slowest decay %.3g 1/Myr, at %s km.", -f.Growth*Myr, sig(f.Wavelength/km, 3))
+		p.say("Nothing grows: every undulation decays or stays; slowest decay %.3g 1/Myr, at %s km.", -f.Growth*Myr, short(f.Wavelength/km))
 		return
 	}
-	p.say("Fastest wavelength %s km, e-folding time %s at first.", sig(f.Wavelength/km, 3), myr(1/f.Growth))
+	p.say("Fastest wavelength %s km, e-folding time %s at first.", short(f.Wavelength/km), myr(1/f.Growth))
 	if f.AtRangeEdge {
 		p.say("That is an end of the range of wavelengths: no maximum was bracketed.")
 	}
 	for _, q := range sp.Peaks {
 		if q.Wavelength != f.Wavelength && q.Growth > 0 {
-			p.say("Another maximum at %s km, e-folding time %s.", sig(q.Wavelength/km, 3), myr(1/q.Growth))
+			p.say("Another maximum at %s km, e-folding time %s.", short(q.Wavelength/km), myr(1/q.Growth))
 		}
 	}
 	if w := shares(s, sp.Mode); w != "" {
@@ -282,15 +304,15 @@ func dripText(p *page, r *race.Result) {
 	if d.Outcome == "window" {
 		limit = fmt.Sprintf(", after the window of %s has closed", myr(pb.Drip.Window))
 	}
-	p.say("At %s%s. Spacing %s km; any between %s and %s km would follow within 10 %% of that time.", when(pb, d.Time), limit,
-		sig(d.Wavelength/km, 3), sig(d.SpacingFrom/km, 2), sig(d.SpacingTo/km, 2))
+	p.say("Drips at %s%s. Spacing %s km; any between %s and %s km would follow within 10 %% of that time.", when(pb, d.Time), limit,
+		short(d.Wavelength/km), sig(d.SpacingFrom/km, 2), sig(d.SpacingTo/km, 2))
 	if pb.ArcLength > 0 {
-		p.say("%.0f drips of that spacing fit along the arc's %s km.", math.Max(1, math.Floor(pb.ArcLength/d.Wavelength)), sig(pb.ArcLength/km, 3))
+		p.say("%.0f drips of that spacing fit along the arc's %s km.", math.Max(1, math.Floor(pb.ArcLength/d.Wavelength)), short(pb.ArcLength/km))
 	}
 	if d.Excluded != "" {
 		p.say("%s.", strings.ToUpper(d.Excluded[:1])+d.Excluded[1:])
 	}
-	p.say("From an undulation of %s m%s: three times that gives %s, a third %s.", sig(pb.Drip.Amplitude, 3), star(pb, "drip.amplitude"), myr(d.TimeLow), myr(d.TimeHigh))
+	p.say("From an undulation of %s m%s: three times that gives %s, a third %s.", short(pb.Drip.Amplitude), star(pb, "drip.amplitude"), myr(d.TimeLow), myr(d.TimeHigh))
 	if r.Rate.Used {
 		p.say("Viscosities at %.1e 1/s%s: at three times that %s, at a third %s.", pb.Strain.ReferenceRate, star(pb, "strain.reference-rate"), myr(r.Rate.AtThrice), myr(r.Rate.AtOneThird))
 	}
@@ -300,7 +322,7 @@ func dripText(p *page, r *race.Result) {
 			h += l.Thickness
 		}
 	}
-	p.say("\"Dripped\" = tip %s km%s below the old base; the drip takes %.0f %%%s of the root's mass.", sig(pb.Drip.Criterion*h/km, 3), star(pb, "drip.criterion"), 100*pb.Drip.Removes, star(pb, "drip.removes"))
+	p.say("\"Dripped\" = tip %s km%s below the old base; the drip takes %.0f %%%s of the root's mass.", short(pb.Drip.Criterion*h/km), star(pb, "drip.criterion"), 100*pb.Drip.Removes, star(pb, "drip.removes"))
 	p.say("Strain rate in the root %.1e 1/s at the start, %.1e at the drip.", d.StrainRate, d.StrainRateEnd)
 	if w := shares(r.State, d.Mode); w != "" {
 		p.say("Resistance at this wavelength: %s.", w)
@@ -315,7 +337,7 @@ func excisionText(p *page, r *race.Result) {
 		return
 	}
 	for _, z := range pb.Zones {
-		s := fmt.Sprintf("%s, dip %.0f deg, slip %s mm/yr, %s to %s", z.Name, z.Dip*180/math.Pi, sig(z.SlipRate*1e3*Year, 3), sig(z.From/Myr, 3), myr(z.To))
+		s := fmt.Sprintf("%s, dip %.0f deg, slip %s mm/yr, %s to %s", z.Name, z.Dip*180/math.Pi, short(z.SlipRate*1e3*Year), short(z.From/Myr), myr(z.To))
 		if e := z.StrainRate(); e > 0 {
 			s += fmt.Sprintf(", strain rate %.0e 1/s", e)
 		}
@@ -325,17 +347,21 @@ func excisionText(p *page, r *race.Result) {
 	if x.Outcome == "excised" {
 		moment = fmt.Sprintf("At %s, with %.0f %%%s of the root gone", when(pb, x.Time), 100*x.Share, star(pb, "drip.removes"))
 	}
-	p.say("%s: slip %s km, heave %s km, throw %s km, %.2f GPa missing across the zones.", moment, sig(x.Slip/km, 3), sig(x.Heave/km, 3), sig(x.Throw/km, 3), x.PressureGap/1e9)
+	p.say("%s: slip %s km, heave %s km, throw %s km, %.2f GPa missing across the zones.", moment, short(x.Slip/km), short(x.Heave/km), short(x.Throw/km), x.PressureGap/1e9)
 	if x.Outcome == "window" {
 		p.say("%.0f %%%s of the root would be gone at %s at these rates.", 100*x.Share, star(pb, "drip.removes"), when(pb, x.LocalBeyond))
 	}
 	if pb.ArcWidth > 0 {
-		p.say("That is %.0f %% extension of the arc. Averaged over the arc the same share takes until %s.", 100*x.ExtensionDemanded, when(pb, x.ArcMeanTime))
+		mean := "Averaged over the arc that share is never reached"
+		if !math.IsInf(x.ArcMeanTime, 1) {
+			mean = "Averaged over the arc that share is reached at " + when(pb, x.ArcMeanTime)
+		}
+		p.say("That is %.0f %% extension of the arc. %s.", 100*x.ExtensionDemanded, mean)
 	} else {
 		p.say("No arc width is given, so the mean over the arc cannot be said.")
 	}
 	if !math.IsInf(x.CutThroughTime, 1) {
-		s := fmt.Sprintf("Cut through: slip %s km, heave %s km", sig(x.CutThroughSlip/km, 3), sig(x.CutThroughHeave/km, 3))
+		s := fmt.Sprintf("Cut through: slip %s km, heave %s km", short(x.CutThroughSlip/km), short(x.CutThroughHeave/km))
 		if pb.ArcWidth > 0 {
 			s += fmt.Sprintf(" = %.0f %% extension", 100*x.CutThroughHeave/pb.ArcWidth)
 		}
@@ -373,12 +399,12 @@ func left(p *page, r *race.Result) {
 		p.say("Peeling from an edge (delamination) is not excluded: the weakest rock above the root is %s, 10^%.1f Pa s, %s 1e18 Pa s of Bird 1979.", v.Layer, math.Log10(v.Viscosity), word)
 	}
 	for _, l := range r.Limits {
-		p.say("- %s", l)
+		p.item(l)
 	}
 	if len(r.Warnings) > 0 {
 		p.section("WARNINGS")
 		for _, w := range r.Warnings {
-			p.say("- %s", w)
+			p.item(w)
 		}
 	}
 }

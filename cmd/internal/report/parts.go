@@ -27,7 +27,9 @@ func titled(p *race.Problem) *page {
 func ColumnPage(p *race.Problem, s *state.State) string {
 	pg := titled(p)
 	columnText(pg, s)
-	pg.say("Viscosity at %.1e 1/s%s.", p.Strain.ReferenceRate, star(p, "strain.reference-rate"))
+	if race.RateDependent(s) {
+		pg.say("Viscosity at %.1e 1/s%s.", p.Strain.ReferenceRate, star(p, "strain.reference-rate"))
+	}
 	if s.HasTemperature && len(p.Column.Geotherm) == 0 {
 		pg.say("Largest relative residual of the heat balance %.0e.", s.HeatResidual)
 	}

@@ -36,6 +36,17 @@ func (p *page) say(format string, a ...any) {
 	}
 }
 
+// item writes a wrapped list item, its further lines indented.
+func (p *page) item(text string) {
+	for i, l := range wrap(text, pageWidth-margin-2) {
+		lead := "  "
+		if i == 0 {
+			lead = "- "
+		}
+		p.line("%s%s", lead, l)
+	}
+}
+
 // wrap breaks text at spaces so that no line is longer than width characters.
 func wrap(text string, width int) []string {
 	var lines []string

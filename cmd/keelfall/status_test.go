@@ -1,0 +1,54 @@
+package main
+
+import (
+	"bytes"
+	"context"
+	"os"
+	"path/filepath"
+	"testing"
+)
+
+// Exit statuses are the contract's: scripts outside the project rely on them.
+func TestStatus(t *testing.T) {
+	t.Setenv("XDG_CONFIG_HOME", t.TempDir())
+	t.Chdir(t.TempDir())
+	write := func(name, text string) {
+		if err := os.WriteFile(name, []byte(text), 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+	write("good.yaml", "surface: {boundary: rigid}\nbase: {boundary: rigid}\nlayers:\n  - {name: a, root: true, thickness: 10 km, density: 3300 kg/m3, viscosity: 1e21 Pa s}\n  - {name: b, thickness: 10 km, density: 3200 kg/m3, viscosity: 1e21 Pa s}\n")
+	write("bad.yaml", "layers: []\n")
+	write("wall.yaml", "surface: {boundary: rigid}\nbase: {boundary: rigid}\nlayers:\n  - {name: a, root: true, thickness: 10 km, density: 3300 kg/m3, viscosity: 1e21 Pa s}\n")
+	write("file", "not a folder")
+	if err := os.MkdirAll("theirs/keep", 0o755); err != nil {
+		t.Fatal(err)
+	}
+	for _, c := range []struct {
+		want int
+		args []string
+	}{
+		{exitDone, []string{"run", "good.yaml"}},
+		{exitDone, []string{"drip", "good.yaml", "--set", "layers.a.density=3100 kg/m3"}}, // nothing drips
+		{exitDone, []string{"--version"}},
+		{exitDone, []string{"run", "--help"}},
+		{exitInput, []string{"run", "bad.yaml"}},
+		{exitInput, []string{"run", "wall.yaml"}},
+		{exitInput, []string{"run", "absent.yaml"}},
+		{exitInput, []string{"run", "a", "b"}},
+		{exitInput, []string{"run", "--nonsense"}},
+		{exitInput, []string{"nonsense"}},
+		{exitInput, []string{}},
+		{exitFailed, []string{"run", "good.yaml", "--out", "theirs"}},
+		{exitFailed, []string{"run", "good.yaml", "--out", "file"}},
+		{exitFailed, []string{"run", "good.yaml", "--out", "file/below"}},
+	} {
+		var out, errs bytes.Buffer
+		if got := Main(context.Background(), c.args, Streams{&out, &errs}); got != c.want {
+			t.Errorf("keelfall %v: status %d, want %d: %s", c.args, got, c.want, errs.String())
+		}
+	}
+	if left, _ := filepath.Glob(".*part*"); len(left) > 0 {
+		t.Errorf("left behind: %v", left)
+	}
+}
