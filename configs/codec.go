@@ -1,5 +1,3 @@
-package configs
-
 import (
 	"errors"
 	"reflect"

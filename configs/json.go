@@ -95,6 +95,16 @@ func parseJSON(b []byte) (*node, error) {
 			}
 			return nil, err
 		}
+		if top != nil {
+			if err := top.n.full(); err != nil {
+				for i := len(stack) - 2; i >= 0; i-- {
+					if stack[i].n.kind == mapNode {
+						err = under(stack[i].key, err)
+					}
+				}
+				return nil, err
+			}
+		}
 		switch {
 		case top == nil:
 			root = v

@@ -11,7 +11,9 @@ import (
 const (
 	maxBytes    = 10 << 20 // of a file
 	maxDepth    = 50       // of nested maps and lists
-	maxLayers   = 10000    // entries of layers
+	maxLayers   = 10000    // entries of layers, or of any list
+	maxKeys     = 1000     // of a map
+	maxBreaks   = 300000   // commas and line ends of a file: ten thousand layers of twenty keys and more
 	maxMistakes = 200      // reported for one file
 )
 

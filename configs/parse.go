@@ -89,6 +89,9 @@ func asText(b []byte) ([]byte, error) {
 	if len(bytes.TrimSpace(b)) == 0 {
 		return nil, atLine(0, "is empty; needs %s", formats)
 	}
+	if breaks := bytes.Count(b, []byte{','}) + bytes.Count(b, []byte{'\n'}); breaks > maxBreaks {
+		return nil, atLine(0, "has %d commas and line ends, more than an experiment can need (%d)", breaks, maxBreaks)
+	}
 	line := 1
 	for i := 0; i < len(b); {
 		r, size := utf8.DecodeRune(b[i:])
@@ -164,6 +167,17 @@ func plainScalar(line int, s string) (*node, error) {
 
 func tooDeep(line int) error {
 	return atLine(line, "is nested deeper than %d levels; an experiment needs fewer than ten", maxDepth)
+}
+
+// full reports a map or list that would hold more than it may.
+func (n *node) full() error {
+	switch {
+	case n.kind == listNode && len(n.items) >= maxLayers:
+		return atLine(n.line, "has more than %d entries", maxLayers)
+	case n.kind == mapNode && len(n.items) >= maxKeys:
+		return atLine(n.line, "has more than %d keys", maxKeys)
+	}
+	return nil
 }
 
 func duplicate(line int, key string, first int) error {

@@ -5,10 +5,20 @@ import (
 	"io/fs"
 	"os"
 	"path/filepath"
+	"strconv"
 	"strings"
 	"testing"
 	"time"
 )
+
+// manyKeys is 1001 keys and more, each followed by the same text.
+func manyKeys(then string) string {
+	var b strings.Builder
+	for i := range 1002 {
+		b.WriteString("k" + strconv.Itoa(i) + then)
+	}
+	return b.String()
+}
 
 // TestUnreadable: whatever is no experiment gives one clear message, and soon.
 func TestUnreadable(t *testing.T) {
@@ -29,6 +39,7 @@ func TestUnreadable(t *testing.T) {
 		{"x.yaml", "a: 1\ntitle: caf\xe9\n", "x.yaml:2: holds the byte 0xE9, which is not UTF-8 (perhaps Latin-1); save the file as UTF-8"},
 		{"x.yaml", "\xff\xfet\x00", "x.yaml:1: is UTF-16 text; save it as UTF-8"},
 		{"x.yaml", strings.Repeat("#", 10<<20+1), "x.yaml: is larger than 10 MB; needs " + formats},
+		{"x.yaml", "layers: [" + strings.Repeat("1,", 4<<20) + "1]", "x.yaml: has 4194304 commas and line ends, more than an experiment can need (300000)"},
 		{"x.yaml", "- a\n- b\n", "x.yaml:1: is a list at the top; needs keys such as title, layers and base"},
 		{"x.yaml", "title: a\ntitle: b\n", "x.yaml:2: title stands here and in line 1; a key may stand once"},
 		{"x.yaml", "drip:\n  window: 1 Myr\n  window: 2 Myr\n", "x.yaml:3: drip: window stands here and in line 2; a key may stand once"},
@@ -57,7 +68,12 @@ func TestUnreadable(t *testing.T) {
 		{"x.json", "{\"a\": [1,\n 2", "x.json:2: is not valid JSON: it ends before every bracket is closed"},
 		{"x.yaml", "? [a]\n: b\n", "x.yaml:1: has a list as a key; a key is a single word"},
 		{"x.dat", "just words", "x.dat:1: is not recognised; needs " + formats},
-		{"x.yaml", manyLayers, "x.yaml:1: layers: has 10001 entries; at most 10000 are taken"},
+		{"x.yaml", manyLayers, "x.yaml:1: layers: has more than 10000 entries"},
+		{"x.json", "{\"drip\": 1,\n\"layers\": [" + strings.Repeat("1,", 10000) + "1]}", "x.json:2: layers: has more than 10000 entries"},
+		{"x.toml", "title = \"a\"\n" + strings.Repeat("[[layers]]\n", 10001), "x.toml:2: layers: has more than 10000 entries"},
+		{"x.yaml", "drip:\n" + strings.Repeat(" ", 2) + manyKeys(": 1\n  "), "x.yaml:1: drip: has more than 1000 keys"},
+		{"x.toml", manyKeys(" = 1\n"), "x.toml:1: has more than 1000 keys"},
+		{"x.json", "{\"" + manyKeys("\": 1,\n\"") + "\": 1}", "x.json:1: has more than 1000 keys"},
 	} {
 		start := time.Now()
 		_, err := Read(c.name, strings.NewReader(c.in))

@@ -33,8 +33,8 @@ func parseTOML(b []byte) (*node, error) {
 		}
 		return nil, atLine(line, "is not valid TOML: %s", shorten(pe.Message))
 	}
-	var any map[string]any
-	if err := toml.Unmarshal(b, &any); err != nil {
+	var tables map[string]any
+	if err := toml.Unmarshal(b, &tables); err != nil {
 		var de *toml.DecodeError
 		line := 0
 		if errors.As(err, &de) {
@@ -62,6 +62,9 @@ func (t *tomlTree) expression(e *unstable.Node) error {
 		v := at.get(key)
 		if e.Kind == unstable.Table {
 			if v == nil {
+				if err := at.full(); err != nil {
+					return err
+				}
 				v = &node{kind: mapNode, line: line}
 				at.put(key, v)
 			}
@@ -70,8 +73,14 @@ func (t *tomlTree) expression(e *unstable.Node) error {
 			}
 		} else {
 			if v == nil {
+				if err := at.full(); err != nil {
+					return err
+				}
 				v = &node{kind: listNode, line: line}
 				at.put(key, v)
+			}
+			if err := v.full(); err != nil {
+				return under(key, err)
 			}
 			entry := &node{kind: mapNode, line: line}
 			if v.kind == listNode {
@@ -97,6 +106,9 @@ func (t *tomlTree) descend(n *node, depth int, it unstable.Iterator) (at *node, 
 		if at != nil {
 			v := n.get(key)
 			if v == nil {
+				if err := n.full(); err != nil {
+					return nil, "", 0, 0, err
+				}
 				v = &node{kind: mapNode, line: line}
 				n.put(key, v)
 			}
@@ -123,6 +135,9 @@ func (t *tomlTree) keyValue(n *node, depth int, e *unstable.Node) error {
 	}
 	if old := at.get(key); old != nil {
 		return duplicate(line, key, old.line)
+	}
+	if err := at.full(); err != nil {
+		return err
 	}
 	v, err := t.value(e.Value(), line, depth+1)
 	if err != nil {
@@ -156,6 +171,9 @@ func (t *tomlTree) value(e *unstable.Node, line, depth int) (*node, error) {
 			}
 			v, err := t.value(c, at, depth+1)
 			if err != nil {
+				return nil, err
+			}
+			if err := n.full(); err != nil {
 				return nil, err
 			}
 			n.items = append(n.items, v)

@@ -147,10 +147,6 @@ func (w *walker) list(n *node, s *spec, path, generic string, out reflect.Value)
 		w.addf(n, path, "is an empty list; needs at least one entry")
 		return
 	}
-	if len(n.items) > maxLayers {
-		w.addf(n, path, "has %d entries; at most %d are taken", len(n.items), maxLayers)
-		return
-	}
 	out.Set(reflect.MakeSlice(out.Type(), len(n.items), len(n.items)))
 	seen := map[string]*node{}
 	for i, item := range n.items {

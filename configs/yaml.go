@@ -96,6 +96,9 @@ func fromYAML(y *yaml.Node, line, depth int) (*node, error) {
 			if err != nil {
 				return nil, err
 			}
+			if err := n.full(); err != nil {
+				return nil, err
+			}
 			n.items = append(n.items, v)
 		}
 		return n, nil
@@ -120,6 +123,9 @@ func fromYAML(y *yaml.Node, line, depth int) (*node, error) {
 			v, err := fromYAML(y.Content[i+1], k.Line, depth+1)
 			if err != nil {
 				return nil, under(k.Value, err)
+			}
+			if err := n.full(); err != nil {
+				return nil, err
 			}
 			n.keys, n.items = append(n.keys, k.Value), append(n.items, v)
 		}

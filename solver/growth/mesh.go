@@ -4,11 +4,10 @@ import "math"
 
 // mesh is a division of the column that serves every k of a band.
 type mesh struct {
-	elems    []element
-	low      float64 // smallest k it serves
-	high     float64 // largest k it serves
-	states   int     // size of A: movable interfaces and Gauss points of graded layers
-	fineness float64 // tolerance scale it was made with
+	elems  []element
+	low    float64 // smallest k it serves
+	high   float64 // largest k it serves
+	states int     // size of A: movable interfaces and Gauss points of graded layers
 }
 
 // rule turns a tolerance into the mesh rule's numbers: an element may span
@@ -28,10 +27,7 @@ func (r rule) finer() rule { return rule{r.span / 2, r.depth + 2} }
 type segment struct {
 	layer       int
 	top, bottom float64
-	upper       bool // top is an interface
 	lower       bool // bottom is an interface
-	layerTop    float64
-	layerBottom float64
 }
 
 // divide fills m with a mesh for the band [low, high].
