@@ -1,3 +1,5 @@
+package configs
+
 import (
 	"errors"
 	"fmt"

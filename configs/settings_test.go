@@ -1,3 +1,5 @@
+package configs
+
 import (
 	"os"
 	"path/filepath"

@@ -4,32 +4,32 @@ package growth
 // L D Lᵀ without square roots and carries the four right-hand sides forward. On
 // return f.l holds L below the diagonal and 1/D on it. R is symmetric positive
 // definite for positive viscosities, so no pivoting is needed.
+//
+// Column by column, each column's update of all that follows it: the updates do not
+// wait for one another, which a dot product's sum would.
 func (f *factor) eliminate(diag *[stages]float64) {
 	l := &f.l
 	for j := 0; j < stages; j++ {
-		jj := j * (j + 1) / 2
-		d := l[jj+j] + diag[j]
+		jj := j*(j+1)/2 + j
+		inv := 1 / (l[jj] + diag[j])
+		l[jj] = inv
 		nw, nu, bw, bu := f.nw[j], f.nu[j], f.bw[j], f.bu[j]
-		for m := 0; m < j; m++ {
-			ljm := l[jj+m]
-			inv := l[m*(m+1)/2+m]
-			d -= ljm * ljm * inv // ljm is still L_jm D_m
-			ljm *= inv
-			nw -= ljm * f.nw[m]
-			nu -= ljm * f.nu[m]
-			bw -= ljm * f.bw[m]
-			bu -= ljm * f.bu[m]
-			l[jj+m] = ljm
+		var ld [stages]float64 // L_ij D_j, the column as it was
+		for i, at := j+1, jj+j+1; i < stages; i++ {
+			ld[i] = l[at]
+			at += i + 1
 		}
-		f.nw[j], f.nu[j], f.bw[j], f.bu[j] = nw, nu, bw, bu
-		l[jj+j] = 1 / d
-		for i := j + 1; i < stages; i++ {
-			ii := i * (i + 1) / 2
-			s := l[ii+j]
-			for m := 0; m < j; m++ {
-				s -= l[ii+m] * l[jj+m] // (L_im D_m) L_jm
+		for i, at := j+1, jj+j+1; i < stages; i++ {
+			lij := ld[i] * inv
+			l[at] = lij
+			f.nw[i] -= lij * nw
+			f.nu[i] -= lij * nu
+			f.bw[i] -= lij * bw
+			f.bu[i] -= lij * bu
+			for m := j + 1; m <= i; m++ {
+				l[at+m-j] -= lij * ld[m]
 			}
-			l[ii+j] = s
+			at += i + 1
 		}
 	}
 }

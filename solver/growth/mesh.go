@@ -5,9 +5,11 @@ import "math"
 // mesh is a division of the column that serves every k of a band.
 type mesh struct {
 	elems  []element
-	low    float64 // smallest k it serves
-	high   float64 // largest k it serves
-	states int     // size of A: movable interfaces and Gauss points of graded layers
+	spare  []element // of the mesh before, whose elements may serve again
+	old    int       // next of spare to look at
+	low    float64   // smallest k it serves
+	high   float64   // largest k it serves
+	states int       // size of A: movable interfaces and Gauss points of graded layers
 }
 
 // rule turns a tolerance into the mesh rule's numbers: an element may span
@@ -28,14 +30,48 @@ type segment struct {
 	layer       int
 	top, bottom float64
 	lower       bool // bottom is an interface
+	// slope holds the largest |d ln η/dz| of η_S and η_N over each of its equal parts
+	slope [slopeParts]float64
+}
+
+// slopeParts is how finely a segment's viscosity is looked at to place elements.
+const slopeParts = 24
+
+// survey fills the slopes of a segment from differences of ln η.
+func (g *segment) survey(f func(float64) (float64, float64)) {
+	h := (g.bottom - g.top) / slopeParts
+	var ps, pn float64
+	for i := 0; i <= slopeParts; i++ {
+		es, en := f(g.top + h*float64(i))
+		ls, ln := math.Log(es), math.Log(en)
+		if i > 0 {
+			g.slope[i-1] = math.Max(math.Abs(ls-ps), math.Abs(ln-pn)) / h
+		}
+		ps, pn = ls, ln
+	}
+}
+
+// swing returns h times the largest slope of ln η over [a, b]: the end-to-end change
+// would miss a viscosity that rises and falls again.
+func (g *segment) swing(a, b float64) float64 {
+	part := slopeParts / (g.bottom - g.top)
+	i := min(max(int((a-g.top)*part), 0), slopeParts-1)
+	j := min(max(int(math.Ceil((b-g.top)*part)), i+1), slopeParts)
+	var s float64
+	for _, x := range g.slope[i:j] {
+		s = math.Max(s, x)
+	}
+	return s * (b - a)
 }
 
 // divide fills m with a mesh for the band [low, high].
 func (s *Solver) divide(m *mesh, low, high float64, r rule) {
-	m.elems = m.elems[:0]
 	m.low, m.high = low, high
-	for _, g := range s.segments {
-		s.split(m, g.layer, g.top, g.bottom, r)
+	m.spare, m.elems = m.elems, m.spare[:0]
+	m.old = 0
+	for i := range s.segments {
+		g := &s.segments[i]
+		s.split(m, g, g.top, g.bottom, r)
 		if g.lower {
 			m.elems[len(m.elems)-1].last = true
 		}
@@ -49,26 +85,9 @@ func (s *Solver) divide(m *mesh, low, high float64, r rule) {
 	}
 }
 
-// swing returns four times the largest change of ln η over a quarter of [a, b]: the
-// end-to-end change would miss a viscosity that rises and falls again.
-func (s *Solver) swing(layer int, a, b float64) float64 {
-	f := s.c.Layers[layer].Viscosity
-	var largest, ps, pn float64
-	for q := 0; q <= 4; q++ {
-		z := a + (b-a)*float64(q)/4
-		es, en := f(z)
-		ls, ln := math.Log(es), math.Log(en)
-		if q > 0 {
-			largest = math.Max(largest, math.Max(math.Abs(ls-ps), math.Abs(ln-pn)))
-		}
-		ps, pn = ls, ln
-	}
-	return 4 * largest
-}
-
-// split adds elements for [a, b] of a layer, top first.
-func (s *Solver) split(m *mesh, layer int, a, b float64, r rule) {
-	h := b - a
+// split adds elements for [a, b] of a segment, top first.
+func (s *Solver) split(m *mesh, g *segment, a, b float64, r rule) {
+	h, layer := b-a, g.layer
 	top, bottom := s.depths[layer], s.depths[layer+1]
 	graded := s.c.Layers[layer].Gradient != nil
 	near := math.Min(a-top, bottom-b)
@@ -83,7 +102,7 @@ func (s *Solver) split(m *mesh, layer int, a, b float64, r rule) {
 			return
 		}
 	}
-	visc := s.swing(layer, a, b) / r.span
+	visc := g.swing(a, b) / r.span
 	reach := r.span * (1 + m.high*near/4)
 	if graded {
 		reach = r.span
@@ -100,15 +119,15 @@ func (s *Solver) split(m *mesh, layer int, a, b float64, r rule) {
 		}
 		n = min(n, 64)
 		for i := 0; i < n; i++ {
-			s.split(m, layer, a+h*float64(i)/float64(n), a+h*float64(i+1)/float64(n), r)
+			s.split(m, g, a+h*float64(i)/float64(n), a+h*float64(i+1)/float64(n), r)
 		}
 		return
 	}
 	// wavelength-limited: one piece at the nearer interface, growing away from it
 	da, db := a-top, bottom-b
 	if math.Abs(da-db) <= h*1e-9 { // the middle of the layer: halve
-		s.split(m, layer, a, a+h/2, r)
-		s.split(m, layer, a+h/2, b, r)
+		s.split(m, g, a, a+h/2, r)
+		s.split(m, g, a+h/2, b, r)
 		return
 	}
 	piece := r.span * (1 + m.high*math.Min(da, db)/4) / m.high * math.Max(0.25, 1-visc*0.5)
@@ -116,37 +135,57 @@ func (s *Solver) split(m *mesh, layer int, a, b float64, r rule) {
 		piece = h / 2
 	}
 	if da < db {
-		s.split(m, layer, a, a+piece, r)
-		s.split(m, layer, a+piece, b, r)
+		s.split(m, g, a, a+piece, r)
+		s.split(m, g, a+piece, b, r)
 	} else {
-		s.split(m, layer, a, b-piece, r)
-		s.split(m, layer, b-piece, b, r)
+		s.split(m, g, a, b-piece, r)
+		s.split(m, g, b-piece, b, r)
 	}
 }
 
-// next returns a zeroed element at the end of m without losing its storage.
+// next returns an element at the end of m without losing its storage.
 func (m *mesh) next() *element {
 	if len(m.elems) < cap(m.elems) {
 		m.elems = m.elems[:len(m.elems)+1]
-		m.elems[len(m.elems)-1] = element{}
 	} else {
 		m.elems = append(m.elems, element{})
 	}
 	return &m.elems[len(m.elems)-1]
 }
 
+// again returns the element [a, a + h] of the mesh before, nil where it had none. Both
+// meshes run from the top down.
+func (m *mesh) again(a, h float64) *element {
+	for m.old < len(m.spare) && m.spare[m.old].z < a {
+		m.old++
+	}
+	if m.old < len(m.spare) {
+		if e := &m.spare[m.old]; e.z == a && e.h == h && !e.opaque {
+			return e
+		}
+	}
+	return nil
+}
+
 func (s *Solver) add(m *mesh, layer int, a, b float64) {
+	h := b - a
+	same := m.again(a, h)
 	e := m.next()
-	e.z, e.h, e.layer = a, b-a, layer
+	if same != nil {
+		*e = *same
+		e.last = false
+		return
+	}
+	*e = element{z: a, h: h, layer: layer}
 	l := &s.c.Layers[layer]
 	for i := range nodeC {
-		e.etaS[i], e.etaN[i] = l.Viscosity(a + e.h*nodeC[i])
+		e.etaS[i], e.etaN[i] = l.Viscosity(a + h*nodeC[i])
 	}
 	e.build()
 	if l.Gradient != nil {
 		e.gradient = new([stages]float64)
 		for i := range nodeC {
-			e.gradient[i] = e.h * nodeB[i] * l.Gradient(a+e.h*nodeC[i])
+			e.gradient[i] = h * nodeB[i] * l.Gradient(a+h*nodeC[i])
 		}
 	}
 }
@@ -154,7 +193,7 @@ func (s *Solver) add(m *mesh, layer int, a, b float64) {
 // addOpaque adds a stretch that no interface feels: each side sees a half-space.
 func (s *Solver) addOpaque(m *mesh, layer int, a, b float64) {
 	e := m.next()
-	e.z, e.h, e.layer, e.opaque = a, b-a, layer, true
+	*e = element{z: a, h: b - a, layer: layer, opaque: true}
 	es, en := s.c.Layers[layer].Viscosity(a)
 	e.zTop = 2 * math.Sqrt(es*en)
 	es, en = s.c.Layers[layer].Viscosity(b)

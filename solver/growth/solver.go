@@ -74,6 +74,11 @@ func NewSolver(c *Column, tol float64) (*Solver, error) {
 			}
 		}
 		s.segments = append(s.segments, segment{layer: i, top: a, bottom: bottom, lower: true})
+		for j := range s.segments {
+			if g := &s.segments[j]; g.layer == i {
+				g.survey(l.Viscosity)
+			}
+		}
 	}
 	s.forces = make([]force, len(c.Layers)+1)
 	for i := range s.forces {
