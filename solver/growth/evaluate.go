@@ -1,11 +1,14 @@
 package growth
 
 import (
+	"cmp"
 	"context"
+	"fmt"
 	"math"
 	"runtime"
 	"slices"
 	"sync"
+	"sync/atomic"
 )
 
 // Options of a spectrum.
@@ -16,50 +19,63 @@ type Options struct {
 }
 
 // Evaluate returns the leading growth rate at each wavelength (m), in the order given.
-// The result does not depend on the number of workers.
+// The result does not depend on the number of workers: a worker takes whole bands of
+// wavenumbers, and a band's mesh depends on nothing but the band.
 func Evaluate(ctx context.Context, c *Column, wavelengths []float64, o Options) ([]Rate, error) {
+	for _, l := range wavelengths {
+		if !positive(l) {
+			return nil, fmt.Errorf("%w: %g m", ErrWavelength, l)
+		}
+	}
+	first, err := newSolver(c, o.Tolerance, takeWorkspace())
+	if err != nil {
+		return nil, err
+	}
 	order := make([]int, len(wavelengths))
 	for i := range order {
 		order[i] = i
 	}
-	slices.SortStableFunc(order, func(i, j int) int { // by band, so that one mesh serves many
-		switch a, b := wavelengths[i], wavelengths[j]; {
-		case a < b:
-			return -1
-		case a > b:
-			return 1
+	slices.SortStableFunc(order, func(i, j int) int { return cmp.Compare(wavelengths[i], wavelengths[j]) })
+	starts := []int{0} // of each band in order
+	for i := 1; i < len(order); i++ {
+		a, _ := bandOf(2 * math.Pi / wavelengths[order[i-1]])
+		if b, _ := bandOf(2 * math.Pi / wavelengths[order[i]]); a != b {
+			starts = append(starts, i)
 		}
-		return 0
-	})
+	}
+	bands := len(starts)
+	starts = append(starts, len(order))
+
+	rates := make([]Rate, len(wavelengths))
+	errs := make([]error, bands)
+	var next atomic.Int64
+	work := func(s *Solver) {
+		defer s.release()
+		for {
+			b := int(next.Add(1)) - 1
+			if b >= bands {
+				return
+			}
+			for _, i := range order[starts[b]:starts[b+1]] {
+				if errs[b] = ctx.Err(); errs[b] != nil {
+					return
+				}
+				if rates[i], errs[b] = s.Rate(wavelengths[i]); errs[b] != nil { // band b owns its slots
+					return
+				}
+			}
+		}
+	}
 	workers := o.Workers
 	if workers <= 0 {
 		workers = runtime.GOMAXPROCS(0)
 	}
-	workers = max(1, min(workers, len(order)/8))
-
-	rates := make([]Rate, len(wavelengths))
-	errs := make([]error, workers)
 	var wg sync.WaitGroup
-	for w := range workers {
-		part := order[len(order)*w/workers : len(order)*(w+1)/workers]
-		work := func() {
-			s, err := NewSolver(c, o.Tolerance)
-			for _, i := range part {
-				if err == nil {
-					err = ctx.Err()
-				}
-				if err == nil {
-					rates[i], err = s.Rate(wavelengths[i]) // worker w owns slot i
-				}
-			}
-			errs[w] = err
-		}
-		if workers == 1 {
-			work()
-			break
-		}
-		wg.Go(work)
+	for range min(workers, bands) - 1 {
+		s := first.twin()
+		wg.Go(func() { work(s) })
 	}
+	work(first)
 	wg.Wait()
 	for _, err := range errs {
 		if err != nil {
@@ -141,15 +157,7 @@ func Compute(ctx context.Context, c *Column, o Options) (*Spectrum, error) {
 	for _, p := range peaks {
 		sp.Peaks = append(sp.Peaks, Peak{p.Wavelength, p.Growth, false})
 	}
-	slices.SortStableFunc(sp.Peaks, func(a, b Peak) int {
-		switch {
-		case a.Growth > b.Growth:
-			return -1
-		case a.Growth < b.Growth:
-			return 1
-		}
-		return 0
-	})
+	slices.SortStableFunc(sp.Peaks, func(a, b Peak) int { return cmp.Compare(b.Growth, a.Growth) })
 	i := fastest(sp.Rates)
 	r := sp.Rates[i]
 	sp.Fastest = Peak{r.Wavelength, r.Growth, i == 0 || i == len(sp.Rates)-1}
@@ -194,15 +202,7 @@ func fastest(r []Rate) int {
 // merge joins two lists by increasing wavelength, without repeats.
 func merge(a, b []Rate) []Rate {
 	all := append(slices.Clone(a), b...)
-	slices.SortStableFunc(all, func(x, y Rate) int {
-		switch {
-		case x.Wavelength < y.Wavelength:
-			return -1
-		case x.Wavelength > y.Wavelength:
-			return 1
-		}
-		return 0
-	})
+	slices.SortStableFunc(all, func(x, y Rate) int { return cmp.Compare(x.Wavelength, y.Wavelength) })
 	return slices.CompactFunc(all, func(x, y Rate) bool { return x.Wavelength == y.Wavelength })
 }
 

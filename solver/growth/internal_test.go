@@ -133,3 +133,79 @@ func TestNoAllocation(t *testing.T) {
 		t.Errorf("%v allocations per wavenumber", n)
 	}
 }
+
+// The unrolled factorisation gives the bits of the loop it stands for, and L D Lᵀ = R.
+func TestEliminate(t *testing.T) {
+	rng := rand.New(rand.NewPCG(5, 6))
+	for range 50 {
+		var f factor
+		var diag [stages]float64
+		var full [stages][stages]float64
+		at := 0
+		for i := range diag {
+			diag[i] = 8 + rng.Float64()
+			f.nw[i], f.nu[i], f.bw[i], f.bu[i] = rng.NormFloat64(), rng.NormFloat64(), rng.NormFloat64(), rng.NormFloat64()
+			for j := 0; j <= i; j++ {
+				f.l[at] = rng.NormFloat64()
+				full[i][j], full[j][i] = f.l[at], f.l[at]
+				at++
+			}
+			full[i][i] += diag[i]
+		}
+		g := f
+		f.eliminate(&diag)
+		eliminateLoop(&g, &diag)
+		if f != g {
+			t.Fatal("the unrolled factorisation and the loop differ")
+		}
+		for i := range full {
+			for j := 0; j <= i; j++ {
+				var s float64
+				for m := 0; m <= j; m++ {
+					li, lj := 1.0, 1.0
+					if m < i {
+						li = f.l[i*(i+1)/2+m]
+					}
+					if m < j {
+						lj = f.l[j*(j+1)/2+m]
+					}
+					s += li * lj / f.l[m*(m+1)/2+m]
+				}
+				if math.Abs(s-full[i][j]) > 1e-13 {
+					t.Fatalf("L D Lᵀ at %d, %d: %g, want %g", i, j, s, full[i][j])
+				}
+			}
+		}
+	}
+}
+
+// eliminateLoop is eliminate as a loop.
+func eliminateLoop(f *factor, diag *[stages]float64) {
+	l := &f.l
+	for j := 0; j < stages; j++ {
+		jj := j * (j + 1) / 2
+		d := l[jj+j] + diag[j]
+		nw, nu, bw, bu := f.nw[j], f.nu[j], f.bw[j], f.bu[j]
+		for m := 0; m < j; m++ {
+			ljm := l[jj+m]
+			inv := l[m*(m+1)/2+m]
+			d -= ljm * (ljm * inv) // ljm is still L_jm D_m
+			ljm *= inv
+			nw -= ljm * f.nw[m]
+			nu -= ljm * f.nu[m]
+			bw -= ljm * f.bw[m]
+			bu -= ljm * f.bu[m]
+			l[jj+m] = ljm
+		}
+		f.nw[j], f.nu[j], f.bw[j], f.bu[j] = nw, nu, bw, bu
+		l[jj+j] = 1 / d
+		for i := j + 1; i < stages; i++ {
+			ii := i * (i + 1) / 2
+			s := l[ii+j]
+			for m := 0; m < j; m++ {
+				s -= l[ii+m] * l[jj+m] // (L_im D_m) L_jm
+			}
+			l[ii+j] = s
+		}
+	}
+}

@@ -68,6 +68,9 @@ func (g *segment) swing(a, b float64) float64 {
 func (s *Solver) divide(m *mesh, low, high float64, r rule) {
 	m.low, m.high = low, high
 	m.spare, m.elems = m.elems, m.spare[:0]
+	if m.elems == nil {
+		m.elems = make([]element, 0, 48)
+	}
 	m.old = 0
 	for i := range s.segments {
 		g := &s.segments[i]
@@ -141,6 +144,12 @@ func (s *Solver) split(m *mesh, g *segment, a, b float64, r rule) {
 		s.split(m, g, a, b-piece, r)
 		s.split(m, g, b-piece, b, r)
 	}
+}
+
+// clear forgets the mesh, so that none of its elements serves another column.
+func (m *mesh) clear() {
+	m.elems, m.spare = m.elems[:0], m.spare[:0]
+	m.low, m.high = 0, 0
 }
 
 // next returns an element at the end of m without losing its storage.

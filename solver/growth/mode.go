@@ -52,8 +52,7 @@ type fieldPoint struct {
 func (s *Solver) newFlow(k float64) *flow {
 	t := *s // own storage: the solver's mesh and matrices stay as they are
 	t.nodal = true
-	t.links, t.joints, t.factors = nil, nil, nil
-	t.a, t.cw, t.cu, t.loads, t.re, t.im = nil, nil, nil, nil, nil, nil
+	t.workspace = new(workspace)
 	f := &flow{s: &t, m: &mesh{}, k: k}
 	t.divide(f.m, k, k, t.rule)
 	t.room(f.m)

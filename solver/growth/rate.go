@@ -33,28 +33,28 @@ func (s *Solver) Rate(wavelength float64) (Rate, error) {
 
 const (
 	// safety multiplies the change between two meshes: the change is taken at the ends
-	// of a band, and 1 in 100 random columns has three times as much inside it.
-	safety = 3
+	// of a band, and 1 in 70 random columns has up to three times as much inside it.
+	safety = 5
 	// sweepRounding is what rounding leaves in the sweeps: the largest seen in random
 	// columns of up to eight layers is 3e-12.
 	sweepRounding = 4e-12
 )
 
-// bandOf returns the band of wavenumbers that k belongs to: fixed bands of a factor
-// √2, so that a rate does not depend on which wavelengths were asked before.
+// bandOf returns the band of wavenumbers that k belongs to: fixed octaves, so that a
+// rate does not depend on which wavelengths were asked before.
 func bandOf(k float64) (low, high float64) {
-	i := math.Floor(2 * math.Log2(k))
-	return math.Exp2(i / 2), math.Exp2((i + 1) / 2)
+	i := math.Floor(math.Log2(k))
+	return math.Exp2(i), math.Exp2(i + 1)
 }
 
-// band meshes the band of k and estimates its error.
+// band meshes the band of k and estimates its error at both ends.
 func (s *Solver) band(k float64) error {
 	low, high := bandOf(k)
 	r := s.rule
 	for try := 0; ; try++ {
 		s.divide(&s.mesh, low, high, r)
 		s.divide(&s.fine, low, high, r.finer())
-		var worst float64
+		s.bandError = 0
 		for _, kk := range [2]float64{low, high} {
 			re, im, fast, err := s.leading(&s.mesh, kk)
 			if err != nil {
@@ -65,20 +65,15 @@ func (s *Solver) band(k float64) error {
 				return err
 			}
 			size := math.Hypot(fre, fim)
-			if size == 0 {
-				continue
+			change := math.Hypot(re-fre, im-fim)
+			if change > 4*0x1p-52*fast { // below, rounding: counted for each k on its own
+				s.bandError = math.Max(s.bandError, change/size)
 			}
-			e := math.Hypot(re-fre, im-fim) / size
-			if floor := 4 * 0x1p-52 * fast / size; e < floor {
-				e = 0 // rounding, counted for each k on its own
-			}
-			worst = math.Max(worst, e)
 		}
-		s.bandError = worst
-		if worst <= s.tol || try == 3 {
+		if s.bandError <= s.tol || try == 3 {
 			return nil
 		}
-		f := math.Pow(s.tol/worst, 1.0/(2*stages)) * 0.9
+		f := math.Pow(s.tol/s.bandError, 1.0/(2*stages)) * 0.9
 		r = rule{r.span * math.Max(f, 0.25), r.depth + 1}
 	}
 }

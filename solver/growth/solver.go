@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"sync"
 )
 
 // DefaultTolerance is the relative tolerance of the leading growth rate.
@@ -30,8 +31,13 @@ type Solver struct {
 	interfaces int     // how many are active
 	nodal      bool    // some layer has a density gradient
 
+	*workspace
+}
+
+// workspace is what a solver writes to.
+type workspace struct {
 	mesh, fine mesh
-	bandError  float64
+	bandError  float64 // of mesh, relative
 
 	factor  factor
 	factors []factor // one an element, where nodal
@@ -45,10 +51,37 @@ type Solver struct {
 	re, im  []float64
 }
 
+var workspaces sync.Pool
+
+func takeWorkspace() *workspace {
+	if w, ok := workspaces.Get().(*workspace); ok {
+		return w
+	}
+	return new(workspace)
+}
+
+// release gives the solver's storage to the next one; the solver is finished.
+func (s *Solver) release() {
+	w := s.workspace
+	s.workspace = nil
+	w.mesh.clear()
+	w.fine.clear()
+	workspaces.Put(w)
+}
+
+// twin returns a solver of the same column with storage of its own.
+func (s *Solver) twin() *Solver {
+	t := *s
+	t.workspace = takeWorkspace()
+	return &t
+}
+
 // NewSolver checks c and prepares to solve it to a relative tolerance tol of the
 // leading rate (DefaultTolerance where tol is 0; sensible from 1e-4 to 1e-12).
 // c must not change while the Solver is used.
-func NewSolver(c *Column, tol float64) (*Solver, error) {
+func NewSolver(c *Column, tol float64) (*Solver, error) { return newSolver(c, tol, new(workspace)) }
+
+func newSolver(c *Column, tol float64, w *workspace) (*Solver, error) {
 	if tol == 0 {
 		tol = DefaultTolerance
 	}
@@ -58,7 +91,7 @@ func NewSolver(c *Column, tol float64) (*Solver, error) {
 	if err := c.check(); err != nil {
 		return nil, err
 	}
-	s := &Solver{c: c, tol: tol, rule: ruleFor(tol)}
+	s := &Solver{c: c, tol: tol, rule: ruleFor(tol), workspace: w}
 	s.depths = make([]float64, len(c.Layers)+1)
 	for i := range c.Layers {
 		l := &c.Layers[i]
@@ -167,11 +200,11 @@ func (s *Solver) grow(n int) {
 // room makes storage for the elements of m.
 func (s *Solver) room(m *mesh) {
 	if n := len(m.elems); len(s.links) < n {
-		s.links = make([]link, n)
-		s.joints = make([]jointAt, n)
-		if s.nodal {
-			s.factors = make([]factor, n)
-		}
+		s.links = make([]link, n+n/2)
+	}
+	if n := len(m.elems); s.nodal && len(s.factors) < n {
+		s.joints = make([]jointAt, n+n/2)
+		s.factors = make([]factor, n+n/2)
 	}
 }
 

@@ -23,8 +23,7 @@ func (s *Solver) System(wavelength float64) (*System, error) {
 	}
 	k := 2 * math.Pi / wavelength
 	t := *s
-	t.links, t.joints, t.factors = nil, nil, nil
-	t.a, t.cw, t.cu, t.loads, t.re, t.im = nil, nil, nil, nil, nil, nil
+	t.workspace = new(workspace)
 	t.active = make([]bool, len(s.active))
 	t.interfaces = 0
 	for i := range t.active {
