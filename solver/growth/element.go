@@ -164,10 +164,11 @@ type triple struct {
 	qww, qwu, quu      float64 // Q
 }
 
-// factor is what condensing leaves behind: R = L diag(1/dinv) Lᵀ, and the right-hand
+// factor is what condensing leaves behind: R = L D Lᵀ, and the right-hand
 // sides N_W, N_U, B_W, B_U after forward substitution. Back-substitution recovers y.
 type factor struct {
-	l      [triangle]float64 // unit lower triangle; the diagonal holds 1/d
+	l      [triangle]float64 // unit lower triangle, its diagonal unused
+	d      [stages]float64   // 1/D
 	nw, nu [stages]float64
 	bw, bu [stages]float64
 }
@@ -189,14 +190,17 @@ func (e *element) condense(k float64, f *factor, out *triple) {
 		f.bw[i] = -x * endWeight[i]
 		f.bu[i] = nodeB[i]
 	}
-	for t := range f.l {
+	for t := 0; t < triangle; t += 4 {
 		f.l[t] = x2*e.r2[t] + x4*e.r4[t]
+		f.l[t+1] = x2*e.r2[t+1] + x4*e.r4[t+1]
+		f.l[t+2] = x2*e.r2[t+2] + x4*e.r4[t+2]
+		f.l[t+3] = x2*e.r2[t+3] + x4*e.r4[t+3]
 	}
 	f.eliminate(&e.r0)
 
 	var sww, swu, suu, pww, pwu, puw, puu, qww, qwu, quu float64
 	for i := 0; i < stages; i++ {
-		d := f.l[i*(i+1)/2+i]
+		d := f.d[i]
 		bw, bu, nw, nu := f.bw[i], f.bu[i], f.nw[i], f.nu[i]
 		dbw, dbu, dnw := d*bw, d*bu, d*nw
 		sww += dbw * bw

@@ -113,7 +113,7 @@ func (f *flow) element(i int, tau response, in *inner, p *[stages]float64) {
 				y[j] += h * p[r] * in.rows[r][j]
 			}
 		}
-		y[j] *= fac.l[j*(j+1)/2+j]
+		y[j] *= fac.d[j]
 	}
 	for j := stages - 1; j >= 0; j-- {
 		for r := j + 1; r < stages; r++ {

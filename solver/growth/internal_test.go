@@ -169,7 +169,7 @@ func TestEliminate(t *testing.T) {
 					if m < j {
 						lj = f.l[j*(j+1)/2+m]
 					}
-					s += li * lj / f.l[m*(m+1)/2+m]
+					s += li * lj / f.d[m]
 				}
 				if math.Abs(s-full[i][j]) > 1e-13 {
 					t.Fatalf("L D Lᵀ at %d, %d: %g, want %g", i, j, s, full[i][j])
@@ -187,18 +187,17 @@ func eliminateLoop(f *factor, diag *[stages]float64) {
 		d := l[jj+j] + diag[j]
 		nw, nu, bw, bu := f.nw[j], f.nu[j], f.bw[j], f.bu[j]
 		for m := 0; m < j; m++ {
-			ljm := l[jj+m]
-			inv := l[m*(m+1)/2+m]
-			d -= ljm * (ljm * inv) // ljm is still L_jm D_m
-			ljm *= inv
-			nw -= ljm * f.nw[m]
-			nu -= ljm * f.nu[m]
-			bw -= ljm * f.bw[m]
-			bu -= ljm * f.bu[m]
-			l[jj+m] = ljm
+			u := l[jj+m] // L_jm D_m
+			t := u * f.d[m]
+			d -= u * t
+			nw -= t * f.nw[m]
+			nu -= t * f.nu[m]
+			bw -= t * f.bw[m]
+			bu -= t * f.bu[m]
+			l[jj+m] = t
 		}
 		f.nw[j], f.nu[j], f.bw[j], f.bu[j] = nw, nu, bw, bu
-		l[jj+j] = 1 / d
+		f.d[j] = 1 / d
 		for i := j + 1; i < stages; i++ {
 			ii := i * (i + 1) / 2
 			s := l[ii+j]

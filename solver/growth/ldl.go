@@ -4,18 +4,17 @@ package growth
 
 // eliminate factors R (its lower triangle in f.l, plus diag on the diagonal) as
 // L D Lᵀ without square roots and carries the four right-hand sides forward. On
-// return f.l holds L below the diagonal and 1/D on it. R is symmetric positive
+// return f.l holds L below the diagonal and f.d holds 1/D. R is symmetric positive
 // definite for positive viscosities, so no pivoting is needed.
 //
 // Row j is finished with t = L_jm from u = L_jm D_m, then L_ij D_j follows for the rows
 // below it. Unrolled by hand of a script, because this is the hot loop.
 func (f *factor) eliminate(diag *[stages]float64) {
-	l, nw, nu, bw, bu := &f.l, &f.nw, &f.nu, &f.bw, &f.bu
-	d0 := 1 / (l[0] + diag[0])
-	l[0] = d0
+	l, d, nw, nu, bw, bu := &f.l, &f.d, &f.nw, &f.nu, &f.bw, &f.bu
+	d[0] = 1 / (l[0] + diag[0])
 	u10 := l[1]
-	t10 := u10 * l[0]
-	d1 := 1 / (l[2] + diag[1] - u10*t10)
+	t10 := u10 * d[0]
+	d[1] = 1 / (l[2] + diag[1] - u10*t10)
 	nw[1] = nw[1] - t10*nw[0]
 	nu[1] = nu[1] - t10*nu[0]
 	bw[1] = bw[1] - t10*bw[0]
@@ -27,12 +26,11 @@ func (f *factor) eliminate(diag *[stages]float64) {
 	l[16] = l[16] - l[15]*t10
 	l[22] = l[22] - l[21]*t10
 	l[29] = l[29] - l[28]*t10
-	l[2] = d1
 	u20 := l[3]
 	u21 := l[4]
-	t20 := u20 * l[0]
-	t21 := u21 * l[2]
-	d2 := 1 / (l[5] + diag[2] - u20*t20 - u21*t21)
+	t20 := u20 * d[0]
+	t21 := u21 * d[1]
+	d[2] = 1 / (l[5] + diag[2] - u20*t20 - u21*t21)
 	nw[2] = nw[2] - t20*nw[0] - t21*nw[1]
 	nu[2] = nu[2] - t20*nu[0] - t21*nu[1]
 	bw[2] = bw[2] - t20*bw[0] - t21*bw[1]
@@ -44,14 +42,13 @@ func (f *factor) eliminate(diag *[stages]float64) {
 	l[17] = l[17] - l[15]*t20 - l[16]*t21
 	l[23] = l[23] - l[21]*t20 - l[22]*t21
 	l[30] = l[30] - l[28]*t20 - l[29]*t21
-	l[5] = d2
 	u30 := l[6]
 	u31 := l[7]
 	u32 := l[8]
-	t30 := u30 * l[0]
-	t31 := u31 * l[2]
-	t32 := u32 * l[5]
-	d3 := 1 / (l[9] + diag[3] - u30*t30 - u31*t31 - u32*t32)
+	t30 := u30 * d[0]
+	t31 := u31 * d[1]
+	t32 := u32 * d[2]
+	d[3] = 1 / (l[9] + diag[3] - u30*t30 - u31*t31 - u32*t32)
 	nw[3] = nw[3] - t30*nw[0] - t31*nw[1] - t32*nw[2]
 	nu[3] = nu[3] - t30*nu[0] - t31*nu[1] - t32*nu[2]
 	bw[3] = bw[3] - t30*bw[0] - t31*bw[1] - t32*bw[2]
@@ -63,16 +60,15 @@ func (f *factor) eliminate(diag *[stages]float64) {
 	l[18] = l[18] - l[15]*t30 - l[16]*t31 - l[17]*t32
 	l[24] = l[24] - l[21]*t30 - l[22]*t31 - l[23]*t32
 	l[31] = l[31] - l[28]*t30 - l[29]*t31 - l[30]*t32
-	l[9] = d3
 	u40 := l[10]
 	u41 := l[11]
 	u42 := l[12]
 	u43 := l[13]
-	t40 := u40 * l[0]
-	t41 := u41 * l[2]
-	t42 := u42 * l[5]
-	t43 := u43 * l[9]
-	d4 := 1 / (l[14] + diag[4] - u40*t40 - u41*t41 - u42*t42 - u43*t43)
+	t40 := u40 * d[0]
+	t41 := u41 * d[1]
+	t42 := u42 * d[2]
+	t43 := u43 * d[3]
+	d[4] = 1 / (l[14] + diag[4] - u40*t40 - u41*t41 - u42*t42 - u43*t43)
 	nw[4] = nw[4] - t40*nw[0] - t41*nw[1] - t42*nw[2] - t43*nw[3]
 	nu[4] = nu[4] - t40*nu[0] - t41*nu[1] - t42*nu[2] - t43*nu[3]
 	bw[4] = bw[4] - t40*bw[0] - t41*bw[1] - t42*bw[2] - t43*bw[3]
@@ -84,18 +80,17 @@ func (f *factor) eliminate(diag *[stages]float64) {
 	l[19] = l[19] - l[15]*t40 - l[16]*t41 - l[17]*t42 - l[18]*t43
 	l[25] = l[25] - l[21]*t40 - l[22]*t41 - l[23]*t42 - l[24]*t43
 	l[32] = l[32] - l[28]*t40 - l[29]*t41 - l[30]*t42 - l[31]*t43
-	l[14] = d4
 	u50 := l[15]
 	u51 := l[16]
 	u52 := l[17]
 	u53 := l[18]
 	u54 := l[19]
-	t50 := u50 * l[0]
-	t51 := u51 * l[2]
-	t52 := u52 * l[5]
-	t53 := u53 * l[9]
-	t54 := u54 * l[14]
-	d5 := 1 / (l[20] + diag[5] - u50*t50 - u51*t51 - u52*t52 - u53*t53 - u54*t54)
+	t50 := u50 * d[0]
+	t51 := u51 * d[1]
+	t52 := u52 * d[2]
+	t53 := u53 * d[3]
+	t54 := u54 * d[4]
+	d[5] = 1 / (l[20] + diag[5] - u50*t50 - u51*t51 - u52*t52 - u53*t53 - u54*t54)
 	nw[5] = nw[5] - t50*nw[0] - t51*nw[1] - t52*nw[2] - t53*nw[3] - t54*nw[4]
 	nu[5] = nu[5] - t50*nu[0] - t51*nu[1] - t52*nu[2] - t53*nu[3] - t54*nu[4]
 	bw[5] = bw[5] - t50*bw[0] - t51*bw[1] - t52*bw[2] - t53*bw[3] - t54*bw[4]
@@ -107,20 +102,19 @@ func (f *factor) eliminate(diag *[stages]float64) {
 	l[19] = t54
 	l[26] = l[26] - l[21]*t50 - l[22]*t51 - l[23]*t52 - l[24]*t53 - l[25]*t54
 	l[33] = l[33] - l[28]*t50 - l[29]*t51 - l[30]*t52 - l[31]*t53 - l[32]*t54
-	l[20] = d5
 	u60 := l[21]
 	u61 := l[22]
 	u62 := l[23]
 	u63 := l[24]
 	u64 := l[25]
 	u65 := l[26]
-	t60 := u60 * l[0]
-	t61 := u61 * l[2]
-	t62 := u62 * l[5]
-	t63 := u63 * l[9]
-	t64 := u64 * l[14]
-	t65 := u65 * l[20]
-	d6 := 1 / (l[27] + diag[6] - u60*t60 - u61*t61 - u62*t62 - u63*t63 - u64*t64 - u65*t65)
+	t60 := u60 * d[0]
+	t61 := u61 * d[1]
+	t62 := u62 * d[2]
+	t63 := u63 * d[3]
+	t64 := u64 * d[4]
+	t65 := u65 * d[5]
+	d[6] = 1 / (l[27] + diag[6] - u60*t60 - u61*t61 - u62*t62 - u63*t63 - u64*t64 - u65*t65)
 	nw[6] = nw[6] - t60*nw[0] - t61*nw[1] - t62*nw[2] - t63*nw[3] - t64*nw[4] - t65*nw[5]
 	nu[6] = nu[6] - t60*nu[0] - t61*nu[1] - t62*nu[2] - t63*nu[3] - t64*nu[4] - t65*nu[5]
 	bw[6] = bw[6] - t60*bw[0] - t61*bw[1] - t62*bw[2] - t63*bw[3] - t64*bw[4] - t65*bw[5]
@@ -132,7 +126,6 @@ func (f *factor) eliminate(diag *[stages]float64) {
 	l[25] = t64
 	l[26] = t65
 	l[34] = l[34] - l[28]*t60 - l[29]*t61 - l[30]*t62 - l[31]*t63 - l[32]*t64 - l[33]*t65
-	l[27] = d6
 	u70 := l[28]
 	u71 := l[29]
 	u72 := l[30]
@@ -140,14 +133,14 @@ func (f *factor) eliminate(diag *[stages]float64) {
 	u74 := l[32]
 	u75 := l[33]
 	u76 := l[34]
-	t70 := u70 * l[0]
-	t71 := u71 * l[2]
-	t72 := u72 * l[5]
-	t73 := u73 * l[9]
-	t74 := u74 * l[14]
-	t75 := u75 * l[20]
-	t76 := u76 * l[27]
-	d7 := 1 / (l[35] + diag[7] - u70*t70 - u71*t71 - u72*t72 - u73*t73 - u74*t74 - u75*t75 - u76*t76)
+	t70 := u70 * d[0]
+	t71 := u71 * d[1]
+	t72 := u72 * d[2]
+	t73 := u73 * d[3]
+	t74 := u74 * d[4]
+	t75 := u75 * d[5]
+	t76 := u76 * d[6]
+	d[7] = 1 / (l[35] + diag[7] - u70*t70 - u71*t71 - u72*t72 - u73*t73 - u74*t74 - u75*t75 - u76*t76)
 	nw[7] = nw[7] - t70*nw[0] - t71*nw[1] - t72*nw[2] - t73*nw[3] - t74*nw[4] - t75*nw[5] - t76*nw[6]
 	nu[7] = nu[7] - t70*nu[0] - t71*nu[1] - t72*nu[2] - t73*nu[3] - t74*nu[4] - t75*nu[5] - t76*nu[6]
 	bw[7] = bw[7] - t70*bw[0] - t71*bw[1] - t72*bw[2] - t73*bw[3] - t74*bw[4] - t75*bw[5] - t76*bw[6]
@@ -159,5 +152,4 @@ func (f *factor) eliminate(diag *[stages]float64) {
 	l[32] = t74
 	l[33] = t75
 	l[34] = t76
-	l[35] = d7
 }

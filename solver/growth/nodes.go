@@ -29,7 +29,7 @@ func (e *element) nodal(k float64, f *factor, in *inner) {
 	for i := range g {
 		var lw, lu, gw, gu float64
 		for m := range g[i] {
-			d := g[i][m] * f.l[m*(m+1)/2+m]
+			d := g[i][m] * f.d[m]
 			lw += d * f.bw[m]
 			lu += d * f.bu[m]
 			gw += d * f.nw[m]
@@ -41,7 +41,7 @@ func (e *element) nodal(k float64, f *factor, in *inner) {
 		for j := 0; j <= i; j++ {
 			var t float64
 			for m := range g[i] {
-				t += g[i][m] * f.l[m*(m+1)/2+m] * g[j][m]
+				t += g[i][m] * f.d[m] * g[j][m]
 			}
 			in.th[i][j], in.th[j][i] = e.h*t, e.h*t
 		}

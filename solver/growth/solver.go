@@ -45,7 +45,7 @@ type workspace struct {
 	links   []link
 	inner   inner
 	z       sym2
-	a       []float64
+	a, t    []float64
 	cw, cu  []response
 	loads   []force
 	re, im  []float64
@@ -190,7 +190,7 @@ func finite(x float64) bool   { return !math.IsNaN(x) && !math.IsInf(x, 0) }
 // grow makes room for n states and the mesh's elements.
 func (s *Solver) grow(n int) {
 	if len(s.cw) < n {
-		s.a = make([]float64, n*n)
+		s.a, s.t = make([]float64, n*n), make([]float64, n*n)
 		s.cw, s.cu = make([]response, n), make([]response, n)
 		s.loads = make([]force, n)
 		s.re, s.im = make([]float64, n), make([]float64, n)
@@ -216,6 +216,12 @@ func (s *Solver) leading(m *mesh, k float64) (re, im, fastest float64, err error
 	n := m.states
 	if n == 0 {
 		return 0, 0, 0, nil // no interface exerts a force: every shape is neutral
+	}
+	if s.c.ShearRate == 0 {
+		if re, fastest, ok := s.leadingReal(n); ok && !math.IsNaN(re) && !math.IsInf(re, 0) {
+			return re, 0, fastest, nil
+		}
+		s.assemble(m, k) // it was overwritten
 	}
 	if err := eigenvalues(s.a[:n*n], n, s.re, s.im); err != nil {
 		return 0, 0, 0, fmt.Errorf("growth: wavelength %g m: %w", 2*math.Pi/k, err)
