@@ -92,3 +92,20 @@ var ReferenceRates = []struct{ Wavelength, Rate float64 }{
 	{12e3, 1.673076217851e-14}, {60e3, 2.370949254543e-14},
 	{250e3, 1.123536529145e-14}, {2000e3, 7.431533998011e-16},
 }
+
+// ReferenceHeated is Reference with diffusing temperature: expansivity 3e-5 1/K,
+// conductivity 3 W/m/K, heat capacity 1000 J/kg/K, the same linear geotherm less an
+// adiabat of 0.4 K/km.
+func ReferenceHeated() *growth.Column {
+	c := Reference()
+	constant := func(v float64) func(float64) float64 { return func(float64) float64 { return v } }
+	d := &growth.Diffusion{HalfSpace: growth.Thermal{PerKelvin: constant(-0.0975), Excess: constant(0), Conductivity: constant(3), Capacity: constant(3.25e6)}}
+	rho := 0.0
+	for i := range c.Layers {
+		rho += c.Jumps[i]
+		d.Layers = append(d.Layers, growth.Thermal{PerKelvin: constant(-3e-5 * rho), Excess: constant(990/80e3 - 4e-4),
+			Conductivity: constant(3), Capacity: constant(1000 * rho)})
+	}
+	c.Diffusion = d
+	return c
+}

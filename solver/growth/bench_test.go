@@ -94,3 +94,20 @@ func BenchmarkRate(b *testing.B) {
 		}
 	}
 }
+
+// BenchmarkSpectrumHeated is 200 wavelengths with diffusing temperature, one core, at
+// 1e-6.
+func BenchmarkSpectrumHeated(b *testing.B) {
+	wavelengths := make([]float64, 200)
+	for i := range wavelengths {
+		wavelengths[i] = 5e3 * math.Pow(400, float64(i)/199)
+	}
+	c := checks.ReferenceHeated()
+	b.ReportAllocs()
+	for b.Loop() {
+		if _, err := growth.Evaluate(context.Background(), c, wavelengths, growth.Options{Workers: 1, Tolerance: 1e-6}); err != nil {
+			b.Fatal(err)
+		}
+	}
+	b.ReportMetric(b.Elapsed().Seconds()/float64(b.N), "s/spectrum")
+}

@@ -112,7 +112,7 @@ type element struct {
 	quu2, quu4  float64
 	quu6, quu8  float64
 	gradient    *[stages]float64 // h b_i ρ_c(z_i): excess mass per area and displacement; nil where none
-	firstNode   int              // index of the first nodal displacement, where gradient is set
+	field       bool             // its Gauss points are ports: a field lives here
 }
 
 // dot8 is a plain dot product; the compiler keeps it in registers.

@@ -34,9 +34,10 @@ type Column struct {
 	// last the base of the last layer (len(Layers)+1 values). The first counts only
 	// under a Free top, the last only over HalfSpace and Inviscid.
 	Jumps          []float64
-	EtaS, EtaN     float64 // half-space viscosities, Pa s
-	ShearRate      float64 // d of the background, 1/s: (e_k − e_z)/2
-	VerticalStrain float64 // e_z of the background, 1/s
+	EtaS, EtaN     float64    // half-space viscosities, Pa s
+	ShearRate      float64    // d of the background, 1/s: (e_k − e_z)/2
+	VerticalStrain float64    // e_z of the background, 1/s
+	Diffusion      *Diffusion // temperature perturbations as states; nil: none
 }
 
 // Rate is the leading growth rate at one wavelength.
@@ -63,18 +64,22 @@ type Spectrum struct {
 }
 
 // Mode is one eigenmode: shape, budget and sensitivities. Amplitudes are scaled so
-// that the largest |interface displacement| is 1 m; W and U are then in 1/s × 1 m.
+// that the largest displacement of an interface or gradient is 1 m; of a complex mode
+// the real part is given, at the phase where that displacement is largest.
 type Mode struct {
 	Wavelength, Growth, Imaginary float64
 	Displacement                  []float64 // of each interface: surface, contacts, base; 0 where it cannot move
 	Depth, W, U, Shear, Normal    []float64 // profile: z (m), vertical and horizontal velocity amplitude (m/s), S and Σ (Pa)
-	DissipationShare              []float64 // of each layer, the half-space last; sums to 1
-	WorkShare                     []float64 // of each interface; with GradientWork sums to 1
-	GradientWork                  []float64 // of each layer's compositional gradient
-	DlnqDlnEta                    []float64 // ∂ln q/∂ln η of each layer, the half-space last
-	DqDrho                        []float64 // ∂q/∂ρ of each layer, the half-space last, 1/s per kg/m³
-	DqDh                          []float64 // ∂q/∂h of each layer, everything below moving down with it, 1/s per m
 	Layer                         []int     // of each profile point
-	Residual                      float64   // relative gap between work and dissipation (d = 0)
 	StrainRate                    []float64 // of each layer, the largest second invariant, 1/s
+	DissipationShare              []float64 // of each layer, the half-space last; sums to 1
+	WorkShare                     []float64 // done by gravity at each interface, of the dissipation
+	StrainShare                   []float64 // done by the background strain at each interface
+	GradientWork                  []float64 // done by gravity on each layer's compositional gradient
+	ThermalWork                   []float64 // done by gravity on each layer's temperature perturbation, the half-space last
+	Residual                      float64   // relative gap between all that work and the dissipation
+	DlnqDlnEta                    []float64 // ∂ln q/∂ln η of each layer, the half-space last; of the real part
+	DqDrho                        []float64 // ∂q/∂ρ of each layer, the half-space last, 1/s per kg/m³
+	DqDh                          []float64 // ∂q/∂h of each layer, its profile stretched and everything below moving down, 1/s per m
+
 }

@@ -4,12 +4,13 @@ import "math"
 
 // mesh is a division of the column that serves every k of a band.
 type mesh struct {
-	elems  []element
-	spare  []element // of the mesh before, whose elements may serve again
-	old    int       // next of spare to look at
-	low    float64   // smallest k it serves
-	high   float64   // largest k it serves
-	states int       // size of A: movable interfaces and Gauss points of graded layers
+	elems   []element
+	spare   []element // of the mesh before, whose elements may serve again
+	old     int       // next of spare to look at
+	low     float64   // smallest k it serves
+	high    float64   // largest k it serves
+	states  int       // size of A: interfaces and fields
+	refined bool      // a check on another: heat elements are halved too
 }
 
 // rule turns a tolerance into the mesh rule's numbers: an element may span
@@ -67,6 +68,7 @@ func (g *segment) swing(a, b float64) float64 {
 // divide fills m with a mesh for the band [low, high].
 func (s *Solver) divide(m *mesh, low, high float64, r rule) {
 	m.low, m.high = low, high
+	s.stretch(low)
 	m.spare, m.elems = m.elems, m.spare[:0]
 	if m.elems == nil {
 		m.elems = make([]element, 0, 48)
@@ -82,7 +84,6 @@ func (s *Solver) divide(m *mesh, low, high float64, r rule) {
 	m.states = s.interfaces
 	for i := range m.elems {
 		if m.elems[i].gradient != nil {
-			m.elems[i].firstNode = m.states
 			m.states += stages
 		}
 	}
@@ -92,7 +93,7 @@ func (s *Solver) divide(m *mesh, low, high float64, r rule) {
 func (s *Solver) split(m *mesh, g *segment, a, b float64, r rule) {
 	h, layer := b-a, g.layer
 	top, bottom := s.depths[layer], s.depths[layer+1]
-	graded := s.c.Layers[layer].Gradient != nil
+	graded := s.fields && s.fieldIn(layer)
 	near := math.Min(a-top, bottom-b)
 	if near < 0 {
 		near = 0
@@ -191,6 +192,7 @@ func (s *Solver) add(m *mesh, layer int, a, b float64) {
 		e.etaS[i], e.etaN[i] = l.Viscosity(a + h*nodeC[i])
 	}
 	e.build()
+	e.field = s.fields && s.fieldIn(layer)
 	if l.Gradient != nil {
 		e.gradient = new([stages]float64)
 		for i := range nodeC {

@@ -1,8 +1,10 @@
 package growth
 
 import (
+	"cmp"
 	"fmt"
 	"math"
+	"slices"
 )
 
 // Mode returns the leading mode at a wavelength in m: shape, budget, sensitivities.
@@ -11,170 +13,198 @@ func (s *Solver) Mode(wavelength float64) (*Mode, error) {
 	if err != nil {
 		return nil, err
 	}
-	k := 2 * math.Pi / wavelength
-	f := s.newFlow(k)
-	vec, err := f.eigenvector(complex(r.Growth, r.Imaginary))
+	return s.newFlow(2 * math.Pi / wavelength).mode(complex(r.Growth, r.Imaginary))
+}
+
+// maxModes is how many modes Modes returns at most.
+const maxModes = 12
+
+// Modes returns every growing mode at a wavelength in m, by decreasing growth rate,
+// twelve at most; where none grows, the one that decays most slowly. Of a complex pair
+// it returns one, with a positive imaginary part.
+func (s *Solver) Modes(wavelength float64) ([]*Mode, error) {
+	if !positive(wavelength) {
+		return nil, fmt.Errorf("%w: %g m", ErrWavelength, wavelength)
+	}
+	f := s.newFlow(2 * math.Pi / wavelength)
+	if f.n == 0 {
+		m, err := s.Mode(wavelength)
+		return []*Mode{m}, err
+	}
+	re, im := make([]float64, f.n), make([]float64, f.n)
+	if err := eigenvalues(slices.Clone(f.matrix), f.n, re, im); err != nil {
+		return nil, fmt.Errorf("growth: wavelength %g m: %w", wavelength, err)
+	}
+	var rates []complex128
+	for i := range re {
+		if im[i] >= 0 {
+			rates = append(rates, complex(re[i], im[i]))
+		}
+	}
+	slices.SortStableFunc(rates, func(a, b complex128) int { return cmp.Compare(real(b), real(a)) })
+	var modes []*Mode
+	for i, q := range rates {
+		if i > 0 && !(real(q) > 0) || i == maxModes {
+			break
+		}
+		m, err := f.mode(q)
+		if err != nil {
+			return nil, err
+		}
+		modes = append(modes, m)
+	}
+	return modes, nil
+}
+
+// mode describes the mode whose rate is nearest to q.
+func (f *flow) mode(q complex128) (*Mode, error) {
+	m := &Mode{Wavelength: 2 * math.Pi / f.k, Growth: real(q), Imaginary: imag(q)}
+	x, y, err := f.eigenvectors(q)
 	if err != nil {
 		return nil, err
 	}
-	m := &Mode{Wavelength: wavelength, Growth: r.Growth, Imaginary: r.Imaginary}
-	x := make([]float64, len(vec))
-	for i, v := range vec {
-		x[i] = real(v)
-	}
-	f.solve(x)
-	f.describe(m, x)
+	b := f.budgetOf(x)
+	f.shape(m, x, b)
+	f.shares(m, b)
+	f.sensitivities(m, q, x, y, b)
 	return m, nil
 }
 
-// flow recovers the velocity inside the elements for given displacements.
-type flow struct {
-	s      *Solver
-	m      *mesh
-	k      float64
-	matrix []float64 // A(k), kept
-	states int
-	v      []response // at element tops, and the base of the last
-	t      []response // tractions at element bases, above any interface there
-	points []fieldPoint
-	diss   []float64 // ∫ η_S s² + 4 η_N W'² over each layer, half-space last
+// budget is a complex mode's forces and flow: real and imaginary parts, the latter nil
+// for a real mode.
+type budget struct {
+	x     [2][]float64
+	force [2][]float64
+	flow  [2]*field
 }
 
-// fieldPoint is the flow at one depth.
-type fieldPoint struct {
-	z, w, u, shear, normal float64 // m, m/s, m/s, Pa, Pa
-	strain                 float64 // largest second invariant over x, 1/s
-	layer                  int
-	weight, loss           float64 // quadrature weight (m) and dissipation density; 0 at ends
+// parts returns the real and imaginary parts of v, the second nil where it is zero.
+func parts(v []complex128) (p [2][]float64) {
+	p[0] = make([]float64, len(v))
+	for i, c := range v {
+		p[0][i] = real(c)
+		if imag(c) != 0 && p[1] == nil {
+			p[1] = make([]float64, len(v))
+		}
+	}
+	for i, c := range v {
+		if p[1] != nil {
+			p[1][i] = imag(c)
+		}
+	}
+	return p
 }
 
-// newFlow makes a flow at k on its own mesh with every element's factors kept.
-func (s *Solver) newFlow(k float64) *flow {
-	t := *s // own storage: the solver's mesh and matrices stay as they are
-	t.nodal = true
-	t.workspace = new(workspace)
-	f := &flow{s: &t, m: &mesh{}, k: k}
-	t.divide(f.m, k, k, t.rule)
-	t.room(f.m)
-	t.assemble(f.m, k)
-	f.states = f.m.states
-	f.matrix = t.a[:f.states*f.states]
-	return f
+// budgetOf solves the flow that states x drive.
+func (f *flow) budgetOf(x []complex128) *budget {
+	b := &budget{x: parts(x)}
+	for i, v := range b.x {
+		if v != nil {
+			b.force[i] = f.forces(v, f.c.load)
+			b.flow[i] = f.solve(b.force[i])
+		}
+	}
+	return b
 }
 
-// eigenvector returns the vector of the eigenvalue nearest to guess by inverse
-// iteration, scaled so that its largest entry is 1.
-func (f *flow) eigenvector(guess complex128) ([]complex128, error) {
-	n := f.states
-	var norm float64
-	for _, a := range f.matrix {
-		norm = math.Max(norm, math.Abs(a))
-	}
-	if norm == 0 { // nothing is driven: every shape is neutral
-		v := make([]complex128, n)
-		for i := range v {
-			v[i] = 1
+// shape fills displacements and profile from the real part.
+func (f *flow) shape(m *Mode, x []complex128, b *budget) {
+	s := f.s
+	layers := f.layers()
+	m.Displacement = make([]float64, layers+1)
+	for i := range m.Displacement {
+		// a contact that exerts no force is carried: (q − e_z) ξ = W
+		q := complex(m.Growth-s.c.VerticalStrain, m.Imaginary)
+		if f.p.contact[i] >= 0 || q == 0 || !s.movable(i) {
+			continue
 		}
-		return v, nil
-	}
-	shift := guess + complex(norm*0x1p-50, 0)
-	if g := math.Hypot(real(guess), imag(guess)); g > 0 {
-		shift = guess * complex(1+1e-11, 0)
-		if g*1e-11 < norm*0x1p-52 {
-			shift = guess + complex(norm*0x1p-52, 0)
+		w := complex(b.flow[0].contact[i].w, 0)
+		if b.flow[1] != nil {
+			w += complex(0, b.flow[1].contact[i].w)
 		}
+		m.Displacement[i] = real(w / q)
 	}
-	lu, perm := factorComplex(f.matrix, n, shift)
-	v := make([]complex128, n)
-	for i := range v {
-		v[i] = complex(1/float64(i+1), 0)
-	}
-	for range 4 {
-		solveComplex(lu, perm, v)
-		normalise(v)
-	}
-	for _, x := range v {
-		if math.IsNaN(real(x)) || math.IsNaN(imag(x)) {
-			return nil, fmt.Errorf("growth: wavelength %g m: inverse iteration failed at rate %g 1/s", 2*math.Pi/f.k, guess)
+	for j, what := range f.c.what {
+		if what >= 0 && what <= layers {
+			m.Displacement[what] = real(x[j])
 		}
 	}
-	return v, nil
-}
-
-// normalise divides by the entry of largest modulus, which becomes 1.
-func normalise(v []complex128) {
-	var big complex128
-	for _, x := range v {
-		if abs2(x) > abs2(big)*(1+1e-12) {
-			big = x
+	m.StrainRate = make([]float64, layers)
+	for _, p := range b.flow[0].points {
+		if p.layer >= layers {
+			continue // the stretch of half-space that carries temperature
 		}
-	}
-	if big != 0 {
-		for i := range v {
-			v[i] /= big
-		}
+		m.Depth = append(m.Depth, p.z)
+		m.W, m.U = append(m.W, p.w), append(m.U, p.u)
+		m.Shear, m.Normal = append(m.Shear, p.shear), append(m.Normal, p.normal)
+		m.Layer = append(m.Layer, p.layer)
+		// ε_xx = kU cos kx, ε_xz = ½ s sin kx: the larger over a wavelength
+		rate, ku := p.rates(f.k)
+		m.StrainRate[p.layer] = math.Max(m.StrainRate[p.layer], math.Max(math.Abs(rate)/2, math.Abs(ku)))
 	}
 }
 
-func abs2(x complex128) float64 { return real(x)*real(x) + imag(x)*imag(x) }
-
-// factorComplex returns the LU factors of A − λ, rows scaled to unit size.
-func factorComplex(a []float64, n int, lambda complex128) ([]complex128, []int) {
-	lu := make([]complex128, n*n)
-	perm := make([]int, n)
-	for i := range perm {
-		perm[i] = i
-		for j := 0; j < n; j++ {
-			lu[i*n+j] = complex(a[i*n+j], 0)
-		}
-		lu[i*n+i] -= lambda
+// layers returns how many layers the column has without the stretch of half-space that
+// only temperature sees.
+func (f *flow) layers() int {
+	if f.s.below {
+		return len(f.s.c.Layers) - 1
 	}
-	for c := 0; c < n; c++ {
-		p := c
-		for i := c + 1; i < n; i++ {
-			if abs2(lu[i*n+c]) > abs2(lu[p*n+c]) {
-				p = i
-			}
+	return len(f.s.c.Layers)
+}
+
+// shares fills who dissipates and who does the work, as parts of the dissipation.
+func (f *flow) shares(m *Mode, b *budget) {
+	layers := f.layers()
+	m.DissipationShare, m.ThermalWork = make([]float64, layers+1), make([]float64, layers+1)
+	m.WorkShare, m.StrainShare = make([]float64, layers+1), make([]float64, layers+1)
+	m.GradientWork = make([]float64, layers)
+	var loss, work float64
+	for part, w := range b.flow {
+		if w == nil {
+			continue
 		}
-		if p != c {
-			for j := 0; j < n; j++ {
-				lu[p*n+j], lu[c*n+j] = lu[c*n+j], lu[p*n+j]
-			}
-			perm[p], perm[c] = perm[c], perm[p]
+		for i, d := range w.loss {
+			m.DissipationShare[min(i, layers)] += d
+			loss += d
 		}
-		if lu[c*n+c] == 0 {
-			lu[c*n+c] = complex(math.SmallestNonzeroFloat64*0x1p60, 0)
-		}
-		for i := c + 1; i < n; i++ {
-			q := lu[i*n+c] / lu[c*n+c]
-			lu[i*n+c] = q
-			if q == 0 {
-				continue
-			}
-			for j := c + 1; j < n; j++ {
-				lu[i*n+j] -= q * lu[c*n+j]
+		for j, list := range f.c.load {
+			for n, l := range list {
+				p := l.v * b.x[part][j] * w.velocity[l.at]
+				work += p
+				switch {
+				case j >= f.c.heat:
+					m.ThermalWork[min(f.layerOf(l.at), layers)] += p
+				case f.c.what[j] < 0:
+					m.GradientWork[-1-f.c.what[j]] += p
+				case n == 0:
+					m.WorkShare[f.c.what[j]] += p
+				case n == 1 && f.s.c.ShearRate != 0:
+					m.StrainShare[f.c.what[j]] += p
+				default: // an inviscid base ties T' to its displacement
+					m.ThermalWork[min(f.layerOf(l.at), layers)] += p
+				}
 			}
 		}
 	}
-	return lu, perm
+	if !(loss > 0) {
+		m.DissipationShare = nil
+		return
+	}
+	m.Residual = math.Abs(work/loss - 1)
+	for _, list := range [][]float64{m.DissipationShare, m.ThermalWork, m.WorkShare, m.StrainShare, m.GradientWork} {
+		for i := range list {
+			list[i] /= loss
+		}
+	}
 }
 
-func solveComplex(lu []complex128, perm []int, v []complex128) {
-	n := len(perm)
-	b := make([]complex128, n)
-	for i, p := range perm {
-		b[i] = v[p]
-	}
-	for i := range b {
-		for j := 0; j < i; j++ {
-			b[i] -= lu[i*n+j] * b[j]
+// layerOf returns the layer of an element's port.
+func (f *flow) layerOf(port int) int {
+	for i, p := range f.p.element {
+		if p >= 0 && port >= p && port < p+stages {
+			return f.m.elems[i].layer
 		}
 	}
-	for i := n - 1; i >= 0; i-- {
-		for j := i + 1; j < n; j++ {
-			b[i] -= lu[i*n+j] * b[j]
-		}
-		b[i] /= lu[i*n+i]
-	}
-	copy(v, b)
+	return 0
 }

@@ -12,9 +12,12 @@ import (
 // stack is a column whose derivatives are tested: graded viscosities and, in the
 // second layer, a graded density, so that every term of the formulas is at work.
 // scale, rho and thick change one layer at a time.
-func stack(base growth.Boundary, scale, rho, thick []float64) *growth.Column {
+func stack(base growth.Boundary, e float64, scale, rho, thick []float64) *growth.Column {
 	h := []float64{20e3, 15e3, 12e3}
 	dens := []float64{2750, 2950, 3450}
+	if base == growth.Rigid || base == growth.FreeSlip { // something that sinks above the wall
+		dens = []float64{2750, 3450, 3100}
+	}
 	eta := []float64{1e23, 3e21, 2e21}
 	efold := []float64{9e3, 20e3, math.Inf(1)} // of viscosity with depth
 	c := &growth.Column{Gravity: 9.81, Top: growth.Free, Base: base, EtaS: 4e20 * scale[3], EtaN: 4e20 * scale[3]}
@@ -24,8 +27,11 @@ func stack(base growth.Boundary, scale, rho, thick []float64) *growth.Column {
 		z0 := z
 		l := growth.Layer{Thickness: hi, Viscosity: func(d float64) (float64, float64) {
 			x := (d - z0) / hi // the profile stretches with the layer
-			e := eta[i] * scale[i] * math.Exp(-x*h[i]/efold[i])
-			return e, e
+			v := eta[i] * scale[i] * math.Exp(-x*h[i]/efold[i])
+			if e == 0 {
+				return v, v
+			}
+			return v, v / 3
 		}}
 		top, bottom := dens[i]+rho[i], dens[i]+rho[i]
 		if i == 1 {
@@ -38,70 +44,84 @@ func stack(base growth.Boundary, scale, rho, thick []float64) *growth.Column {
 		z += hi
 	}
 	c.Jumps = append(c.Jumps, 3270+rho[3]-above)
+	c.ShearRate, c.VerticalStrain = e, -e
 	return c
 }
 
 func zeros() []float64 { return make([]float64, 4) }
 func ones() []float64  { return []float64{1, 1, 1, 1} }
 
-// The exact derivatives agree with central differences of the growth rate.
+// The exact derivatives agree with central differences of the growth rate, without a
+// background and while the column is stretched or shortened, over every base.
 func TestSensitivities(t *testing.T) {
-	for _, base := range []growth.Boundary{growth.HalfSpace, growth.Inviscid} {
-		for _, wavelength := range []float64{25e3, 60e3, 300e3} {
-			rate := func(scale, rho, thick []float64) float64 {
-				s, err := growth.NewSolver(stack(base, scale, rho, thick), 1e-12)
-				if err != nil {
-					t.Fatal(err)
-				}
-				r, err := s.Rate(wavelength)
-				if err != nil {
-					t.Fatal(err)
-				}
-				return r.Growth
-			}
-			s, err := growth.NewSolver(stack(base, ones(), zeros(), zeros()), 1e-12)
-			if err != nil {
-				t.Fatal(err)
-			}
-			m, err := s.Mode(wavelength)
-			if err != nil {
-				t.Fatal(err)
-			}
-			if m.Residual > 1e-9 {
-				t.Errorf("work and dissipation differ by %.2g", m.Residual)
-			}
-			compare := func(name string, exact, difference, size float64) {
-				t.Helper()
-				// central differences with a step of 1e-4 are good to about 1e-7 of the
-				// largest derivative of their kind
-				if math.Abs(exact-difference) > 2e-6*size {
-					t.Errorf("base %d, %g km, %s: exact %.9g, differences %.9g", base, wavelength/1e3, name, exact, difference)
-				}
-			}
-			const d = 1e-4
-			for i := range 4 {
-				if base == growth.Inviscid && i == 3 {
-					continue
-				}
-				up, down := ones(), ones()
-				up[i], down[i] = math.Exp(d), math.Exp(-d)
-				fd := (rate(up, zeros(), zeros()) - rate(down, zeros(), zeros())) / (2 * d * m.Growth)
-				compare(fmt.Sprintf("ln viscosity of layer %d", i), m.DlnqDlnEta[i], fd, 1)
-			}
-			for i := range 4 {
-				up, down := zeros(), zeros()
-				up[i], down[i] = 0.05, -0.05
-				fd := (rate(ones(), up, zeros()) - rate(ones(), down, zeros())) / 0.1
-				compare(fmt.Sprintf("density of layer %d", i), m.DqDrho[i], fd, m.Growth/100)
-			}
-			for i := range 3 {
-				up, down := zeros(), zeros()
-				up[i], down[i] = 2, -2
-				fd := (rate(ones(), zeros(), up) - rate(ones(), zeros(), down)) / 4
-				compare(fmt.Sprintf("thickness of layer %d", i), m.DqDh[i], fd, m.Growth/10e3)
+	complexes := 0
+	for _, e := range []float64{0, 3e-15, -3e-15} {
+		for _, base := range []growth.Boundary{growth.HalfSpace, growth.Inviscid, growth.Rigid, growth.FreeSlip} {
+			for _, wavelength := range []float64{25e3, 60e3, 300e3} {
+				complexes += differences(t, base, e, wavelength)
 			}
 		}
 	}
+	t.Logf("%d of the modes are complex", complexes)
+}
+
+func differences(t *testing.T, base growth.Boundary, e, wavelength float64) (complexes int) {
+	t.Helper()
+	rate := func(scale, rho, thick []float64) float64 {
+		s, err := growth.NewSolver(stack(base, e, scale, rho, thick), 1e-12)
+		if err != nil {
+			t.Fatal(err)
+		}
+		r, err := s.Rate(wavelength)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return r.Growth
+	}
+	s, err := growth.NewSolver(stack(base, e, ones(), zeros(), zeros()), 1e-12)
+	if err != nil {
+		t.Fatal(err)
+	}
+	m, err := s.Mode(wavelength)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if m.Residual > 1e-9 {
+		t.Errorf("base %d, e %g, %g km: work and dissipation differ by %.2g", base, e, wavelength/1e3, m.Residual)
+	}
+	// Central differences with steps of 1e-4 are good to about 1e-7 of the largest
+	// derivative of their kind.
+	compare := func(name string, exact, difference, size float64) {
+		t.Helper()
+		if !(math.Abs(exact-difference) <= 2e-6*size) {
+			t.Errorf("base %d, e %g, %g km (rate %.3g%+.3gi), %s: exact %.9g, differences %.9g", base, e, wavelength/1e3, m.Growth, m.Imaginary, name, exact, difference)
+		}
+	}
+	const d = 1e-4
+	layers := 4
+	if base != growth.HalfSpace {
+		layers = 3
+	}
+	scale := math.Max(math.Abs(m.Growth), math.Abs(e)) // of a rate
+	for i := range layers {
+		up, down := ones(), ones()
+		up[i], down[i] = math.Exp(d), math.Exp(-d)
+		compare(fmt.Sprintf("ln viscosity of layer %d", i), m.DlnqDlnEta[i]*m.Growth, (rate(up, zeros(), zeros())-rate(down, zeros(), zeros()))/(2*d), scale)
+	}
+	for i := range layers {
+		up, down := zeros(), zeros()
+		up[i], down[i] = 0.05, -0.05
+		compare(fmt.Sprintf("density of layer %d", i), m.DqDrho[i], (rate(ones(), up, zeros())-rate(ones(), down, zeros()))/0.1, scale/100)
+	}
+	for i := range 3 {
+		up, down := zeros(), zeros()
+		up[i], down[i] = 2, -2
+		compare(fmt.Sprintf("thickness of layer %d", i), m.DqDh[i], (rate(ones(), zeros(), up)-rate(ones(), zeros(), down))/4, scale/10e3)
+	}
+	if m.Imaginary != 0 {
+		complexes++
+	}
+	return complexes
 }
 
 // Two half-spaces share the resistance as their viscosities do, and scaling every

@@ -19,9 +19,12 @@ func (s *Solver) Rate(wavelength float64) (Rate, error) {
 			return Rate{}, err
 		}
 	}
-	re, im, fastest, err := s.leading(&s.mesh, k)
-	if err != nil {
-		return Rate{}, err
+	re, im, fastest, ok := s.follow(k)
+	if !ok {
+		var err error
+		if re, im, fastest, err = s.leading(&s.mesh, k); err != nil {
+			return Rate{}, err
+		}
 	}
 	size := math.Hypot(re, im)
 	rounding := sweepRounding
@@ -53,16 +56,20 @@ func (s *Solver) band(k float64) error {
 	r := s.rule
 	for try := 0; ; try++ {
 		s.divide(&s.mesh, low, high, r)
+		s.fine.refined = true
 		s.divide(&s.fine, low, high, r.finer())
 		s.bandError = 0
-		for _, kk := range [2]float64{low, high} {
+		for i, kk := range [2]float64{low, high} {
 			re, im, fast, err := s.leading(&s.mesh, kk)
 			if err != nil {
 				return err
 			}
-			fre, fim, _, err := s.leading(&s.fine, kk)
-			if err != nil {
-				return err
+			s.ends[i] = rateAt{kk, complex(re, im), re - s.second, fast}
+			fre, fim, ok := s.settle(&s.fine, kk, complex(re, im))
+			if !ok {
+				if fre, fim, _, err = s.leading(&s.fine, kk); err != nil {
+					return err
+				}
 			}
 			size := math.Hypot(fre, fim)
 			change := math.Hypot(re-fre, im-fim)

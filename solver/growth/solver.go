@@ -29,7 +29,9 @@ type Solver struct {
 	forces     []force // of each interface per unit displacement
 	active     []bool  // interfaces that are states: movable, and exerting a force when moved
 	interfaces int     // how many are active
-	nodal      bool    // some layer has a density gradient
+	fields     bool    // some layer carries a field: a density gradient, temperature
+	nodal      bool    // keep what elements need to recover the flow inside them
+	below      bool    // the last layer is 8/k of half-space, for temperature
 
 	*workspace
 }
@@ -38,6 +40,8 @@ type Solver struct {
 type workspace struct {
 	mesh, fine mesh
 	bandError  float64 // of mesh, relative
+	ends       [2]rateAt
+	second     float64 // real part of the second mode, from leading
 
 	factor  factor
 	factors []factor // one an element, where nodal
@@ -71,9 +75,54 @@ func (s *Solver) release() {
 
 // twin returns a solver of the same column with storage of its own.
 func (s *Solver) twin() *Solver {
-	t := *s
+	t := s.copy()
 	t.workspace = takeWorkspace()
+	return t
+}
+
+// copy returns a solver that may mesh and extend the column for itself.
+func (s *Solver) copy() *Solver {
+	t := *s
+	if s.below {
+		c := *s.c
+		c.Layers = slices.Clone(c.Layers)
+		t.c, t.depths, t.segments = &c, slices.Clone(s.depths), slices.Clone(s.segments)
+	}
+	t.workspace = new(workspace)
 	return &t
+}
+
+// fieldIn says whether a layer carries a field.
+func (s *Solver) fieldIn(layer int) bool {
+	return s.c.Diffusion != nil || s.c.Layers[layer].Gradient != nil
+}
+
+// extended returns the column with a stretch of its half-space as a last layer, so that
+// temperature can be perturbed there; stretch sets its thickness.
+func (c *Column) extended() *Column {
+	e := *c
+	below := func(float64) (float64, float64) { return c.EtaS, c.EtaN }
+	e.Layers = append(slices.Clone(c.Layers), Layer{Thickness: 1, Viscosity: below})
+	e.Jumps = append(slices.Clone(c.Jumps), 0)
+	d := *c.Diffusion
+	none := d.HalfSpace
+	none.Excess = func(float64) float64 { return 0 }
+	d.Layers = append(slices.Clone(d.Layers), none)
+	e.Diffusion = &d
+	return &e
+}
+
+// stretch makes the added layer 8/k thick.
+func (s *Solver) stretch(k float64) {
+	if !s.below {
+		return
+	}
+	last := len(s.c.Layers) - 1
+	h := 8 / k
+	s.c.Layers[last].Thickness = h
+	s.depths[last+1] = s.depths[last] + h
+	g := &s.segments[len(s.segments)-1]
+	g.bottom = s.depths[last+1]
 }
 
 // NewSolver checks c and prepares to solve it to a relative tolerance tol of the
@@ -92,13 +141,17 @@ func newSolver(c *Column, tol float64, w *workspace) (*Solver, error) {
 		return nil, err
 	}
 	s := &Solver{c: c, tol: tol, rule: ruleFor(tol), workspace: w}
+	if c.Diffusion != nil && c.Base == HalfSpace {
+		s.c, s.below = c.extended(), true
+		c = s.c
+	}
 	s.depths = make([]float64, len(c.Layers)+1)
 	for i := range c.Layers {
 		l := &c.Layers[i]
 		top := s.depths[i]
 		bottom := top + l.Thickness
 		s.depths[i+1] = bottom
-		s.nodal = s.nodal || l.Gradient != nil
+		s.fields = s.fields || l.Gradient != nil || c.Diffusion != nil
 		a := top
 		for _, z := range l.Kinks {
 			if z > a && z < bottom {
@@ -113,6 +166,7 @@ func newSolver(c *Column, tol float64, w *workspace) (*Solver, error) {
 			}
 		}
 	}
+	s.nodal = s.fields
 	s.forces = make([]force, len(c.Layers)+1)
 	for i := range s.forces {
 		var above, below float64 // secant viscosities, nothing outside the column
@@ -217,8 +271,8 @@ func (s *Solver) leading(m *mesh, k float64) (re, im, fastest float64, err error
 	if n == 0 {
 		return 0, 0, 0, nil // no interface exerts a force: every shape is neutral
 	}
-	if s.c.ShearRate == 0 {
-		if re, fastest, ok := s.leadingReal(n); ok && !math.IsNaN(re) && !math.IsInf(re, 0) {
+	if s.c.ShearRate == 0 && s.c.Diffusion == nil {
+		if re, fastest, ok := s.leadingReal(n); ok && finite(re) {
 			return re, 0, fastest, nil
 		}
 		s.assemble(m, k) // it was overwritten
@@ -226,14 +280,17 @@ func (s *Solver) leading(m *mesh, k float64) (re, im, fastest float64, err error
 	if err := eigenvalues(s.a[:n*n], n, s.re, s.im); err != nil {
 		return 0, 0, 0, fmt.Errorf("growth: wavelength %g m: %w", 2*math.Pi/k, err)
 	}
-	re = math.Inf(-1)
+	re, s.second = math.Inf(-1), math.Inf(-1)
 	for i := range s.re[:n] {
-		if s.re[i] > re {
-			re, im = s.re[i], math.Abs(s.im[i])
+		switch {
+		case s.re[i] > re:
+			re, im, s.second = s.re[i], math.Abs(s.im[i]), re
+		case s.re[i] < re && s.re[i] > s.second:
+			s.second = s.re[i]
 		}
 		fastest = math.Max(fastest, math.Hypot(s.re[i], s.im[i]))
 	}
-	if math.IsNaN(re) || math.IsInf(re, 0) {
+	if !finite(re) {
 		return 0, 0, 0, fmt.Errorf("growth: wavelength %g m: no finite growth rate", 2*math.Pi/k)
 	}
 	return re, im, fastest, nil

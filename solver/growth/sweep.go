@@ -108,11 +108,15 @@ func (l *link) through(c sym2) sym2 {
 	}
 }
 
-// assemble fills A(k) of dξ/dt = A ξ (row-major, s.n × s.n): growth by the forces
-// that unit displacements exert, f = (−g[ρ], 4 k d [η]), plus the kinematic e_z.
-// States are the movable interfaces from the top, and after a layer with a density
-// gradient the displacements at its elements' Gauss points.
+// assemble fills A(k) of dξ/dt = A ξ, row-major: growth by the forces that unit
+// displacements exert, f = (−g[ρ], 4 k d [η]), plus the kinematic e_z. States are the
+// active interfaces from the top; where fields inside layers are states too, the work
+// goes through ports (ports.go).
 func (s *Solver) assemble(m *mesh, k float64) {
+	if s.fields {
+		s.assembleFields(m, k)
+		return
+	}
 	s.up(m, k)
 	c := s.surface()
 	n := m.states
@@ -127,19 +131,13 @@ func (s *Solver) assemble(m *mesh, k float64) {
 	}
 	for i := range m.elems {
 		e, l := &m.elems[i], &s.links[i]
-		if e.gradient != nil {
-			s.nodes(m, i, c, n, at, k, shear)
-			c = l.through(c)
-			at += stages
-		} else {
-			c = l.through(c)
+		c = l.through(c)
+		for j := 0; j < at; j++ {
+			cw[j] = l.carry(cw[j])
+		}
+		if shear {
 			for j := 0; j < at; j++ {
-				cw[j] = l.carry(cw[j])
-			}
-			if shear {
-				for j := 0; j < at; j++ {
-					cu[j] = l.carry(cu[j])
-				}
+				cu[j] = l.carry(cu[j])
 			}
 		}
 		if e.last && s.active[e.layer+1] {

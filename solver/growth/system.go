@@ -22,8 +22,10 @@ func (s *Solver) System(wavelength float64) (*System, error) {
 		return nil, fmt.Errorf("%w: %g m", ErrWavelength, wavelength)
 	}
 	k := 2 * math.Pi / wavelength
-	t := *s
-	t.workspace = new(workspace)
+	if s.c.Diffusion != nil {
+		return nil, errors.New("growth: the evolution matrix with diffusing temperature is not offered")
+	}
+	t := s.copy()
 	t.active = make([]bool, len(s.active))
 	t.interfaces = 0
 	for i := range t.active {

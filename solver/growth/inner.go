@@ -48,48 +48,6 @@ func (e *element) nodal(k float64, f *factor, in *inner) {
 	}
 }
 
-// nodes enters the Gauss points of element i as states at, at+1, …, and carries
-// every response through the element. c is the compliance at the element's top.
-func (s *Solver) nodes(m *mesh, i int, c sym2, n, at int, k float64, shear bool) {
-	e, l, jt := &m.elems[i], &s.links[i], &s.joints[i]
-	in := &s.inner
-	e.nodal(k, &s.factors[i], in)
-	a := s.a[:n*n]
-
-	in.close(jt)
-	for q := 0; q < stages; q++ {
-		s.loads[at+q] = force{buoyancy: -s.c.Gravity * e.gradient[q]}
-	}
-	for q := 0; q < stages; q++ {
-		gw, gu := in.gw[q], in.gu[q]
-		fq := s.loads[at+q].buoyancy
-		for j := 0; j < at; j++ { // earlier loads above this element
-			w := gw*s.cw[j].w + gu*s.cw[j].u
-			a[(at+q)*n+j] = w * s.loads[j].buoyancy
-			a[j*n+at+q] = w * fq
-			if shear {
-				a[(at+q)*n+j] += (gw*s.cu[j].w + gu*s.cu[j].u) * s.loads[j].viscous * k
-			}
-		}
-		cgw, cgu := c.ww*gw+c.wu*gu, c.wu*gw+c.uu*gu // top velocity per force at q
-		for r := 0; r < stages; r++ {
-			w := in.th[q][r] + cgw*in.gw[r] + cgu*in.gu[r]
-			a[(at+r)*n+at+q] = w * fq
-		}
-		s.cw[at+q] = response{
-			l.x.ww*cgw + l.x.wu*cgu + in.lw[q],
-			l.x.uw*cgw + l.x.uu*cgu + in.lu[q],
-		}
-		s.cu[at+q] = response{}
-	}
-	for j := 0; j < at; j++ {
-		s.cw[j] = l.carry(s.cw[j])
-		if shear {
-			s.cu[j] = l.carry(s.cu[j])
-		}
-	}
-}
-
 // carry takes a velocity from an element's top to its base.
 func (l *link) carry(v response) response {
 	return response{l.x.ww*v.w + l.x.wu*v.u, l.x.uw*v.w + l.x.uu*v.u}

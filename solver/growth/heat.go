@@ -1,0 +1,301 @@
+package growth
+
+import (
+	"math"
+	"sync"
+
+	"gonum.org/v1/gonum/floats"
+	"gonum.org/v1/gonum/integrate/quad"
+)
+
+// Diffusion makes temperature perturbations states of the system,
+//
+//	ρ c_p (∂T'/∂t + γ W) = ∂z(κ_c ∂z T') − κ_c k² T',   δρ = (∂ρ/∂T)_P T',
+//
+// with γ the super-adiabatic gradient, on a grid that moves with the rock. T' is
+// continuous at contacts (the step of its gradient across a displaced contact is left
+// out) and zero at the top. At the base it is zero on a wall of fixed temperature, has
+// no flux on a wall of fixed heat flow, is −ξ dT₀/dz over an inviscid fluid, and
+// continues into a half-space, with γ = 0 there, for 8/k before it is set to zero: set
+// to zero at the base itself it would get the sign of growth wrong.
+//
+// Without diffusion T' = −γζ is a density gradient like a compositional one: add
+// (∂ρ/∂T) γ to Layer.Gradient and leave this nil.
+type Diffusion struct {
+	Layers       []Thermal // one a layer
+	HalfSpace    Thermal   // below, constant; its Excess is not used
+	FixedFlow    bool      // of a wall: heat flow instead of temperature
+	BaseGradient float64   // dT₀/dz just above an inviscid base, K/m
+}
+
+// Thermal is what one layer's heat needs, at depth z in m in the column.
+type Thermal struct {
+	PerKelvin    func(z float64) float64 // (∂ρ/∂T)_P, kg/m³/K
+	Excess       func(z float64) float64 // γ = dT₀/dz − α g T₀/c_p, K/m
+	Conductivity func(z float64) float64 // κ_c, W/m/K
+	Capacity     func(z float64) float64 // ρ c_p, J/m³/K
+}
+
+// degree of the polynomials that carry T' on each of its elements.
+const degree = 8
+
+// heatElement is a stretch of the column on which T' is one polynomial.
+type heatElement struct {
+	z, h  float64
+	layer int
+	dof   [degree + 1]int // top, base, then the bubbles; −1 held at zero, −2 tied to ξ at the base
+}
+
+// shape returns the values and slopes (per m) of the basis at s in [−1, 1] of an
+// element h thick: two linear functions, then integrated Legendre polynomials.
+func shape(s, h float64, v, dv *[degree + 1]float64) {
+	v[0], v[1] = (1-s)/2, (1+s)/2
+	dv[0], dv[1] = -1/h, 1/h
+	p0, p1 := 1.0, s
+	for j := 2; j <= degree; j++ {
+		p2 := (float64(2*j-1)*s*p1 - float64(j-1)*p0) / float64(j)
+		v[j] = (p2 - p0) / math.Sqrt(float64(2*(2*j-1)))
+		dv[j] = math.Sqrt(float64(2*j-1)/2) * p1 * 2 / h
+		p0, p1 = p1, p2
+	}
+}
+
+// heatMesh divides the layers so that an element spans at most heatSpan/k; refined, it
+// halves every element.
+func (s *Solver) heatMesh(k float64, refined bool) ([]heatElement, int) {
+	var es []heatElement
+	for i := range s.c.Layers {
+		top, h := s.depths[i], s.c.Layers[i].Thickness
+		if s.below && i == len(s.c.Layers)-1 { // 8/k of half-space: elements that grow
+			first := math.Min(0.08, 0.15*top/h) // of h; heat diffuses over less than the column
+			for z := 0.0; z < 1; {
+				next := math.Min(1, z+first)
+				if 1-next < 0.5*first {
+					next = 1
+				}
+				es = append(es, heatElement{z: top + h*z, h: h * (next - z), layer: i})
+				z, first = next, 2*first
+			}
+			continue
+		}
+		n := max(1, int(math.Ceil(k*h/heatSpan+s.layerSwing(i)/heatSwing)))
+		for j := range n {
+			es = append(es, heatElement{z: top + h*float64(j)/float64(n), h: h / float64(n), layer: i})
+		}
+	}
+	if refined {
+		var half []heatElement
+		for _, e := range es {
+			half = append(half, heatElement{z: e.z, h: e.h / 2, layer: e.layer}, heatElement{z: e.z + e.h/2, h: e.h / 2, layer: e.layer})
+		}
+		es = half
+	}
+	dof := 0
+	for i := range es {
+		e := &es[i]
+		e.dof[0] = -1
+		if i > 0 {
+			e.dof[0] = es[i-1].dof[1]
+		}
+		for j := 2; j <= degree; j++ {
+			e.dof[j] = dof
+			dof++
+		}
+		if i < len(es)-1 || s.c.Diffusion.FixedFlow {
+			e.dof[1] = dof
+			dof++
+		} else if s.c.Base == Inviscid {
+			e.dof[1] = -2
+		} else {
+			e.dof[1] = -1
+		}
+	}
+	return es, dof
+}
+
+// heatSpan is kh, and heatSwing the change of ln η, of a heat element at the working
+// resolution: T' follows W, and W follows the viscosity.
+const (
+	heatSpan  = 5
+	heatSwing = 8
+)
+
+// layerSwing returns the change of ln η across a layer.
+func (s *Solver) layerSwing(layer int) float64 {
+	var sum float64
+	for i := range s.segments {
+		if g := &s.segments[i]; g.layer == layer {
+			sum += g.swing(g.top, g.bottom)
+		}
+	}
+	return sum
+}
+
+// coupleHeat adds the coefficients of T' to the states.
+func (s *Solver) coupleHeat(m *mesh, k float64, p *ports, c *coupling) {
+	es, dof := s.heatMesh(m.high, m.refined)
+	first := c.n
+	n := first + dof
+	tied := -1 // the state an inviscid base ties T' to
+	if s.c.Base == Inviscid {
+		for i := range c.rate {
+			if len(c.rate[i]) == 1 && c.rate[i][0].at == p.contact[len(s.c.Layers)] {
+				tied = i
+			}
+		}
+	}
+	mass := newBanded(dof)
+	c.rest = make([]float64, n*n) // −K, in the rows of T'
+	tiedMass, tiedStiff := make([]float64, dof), make([]float64, dof)
+	work := make([][]entry, dof) // ∫ ρ c_p γ φ W by port
+	load := make([][]entry, dof)
+	var tiedLoad []entry
+	var v, dv [degree + 1]float64
+	gx, gw := heatQuadrature()
+	for i := range es {
+		e := &es[i]
+		th := &s.c.Diffusion.Layers[e.layer]
+		for q := range gx {
+			z := e.z + e.h*gx[q]
+			shape(2*gx[q]-1, e.h, &v, &dv)
+			kap, cap := th.Conductivity(z), th.Capacity(z)
+			wt := gw[q] * e.h
+			for a := range v {
+				if e.dof[a] < 0 {
+					continue
+				}
+				for b := range v {
+					mm, kk := wt*cap*v[a]*v[b], wt*kap*(dv[a]*dv[b]+k*k*v[a]*v[b])
+					switch {
+					case e.dof[b] >= 0:
+						if e.dof[b] <= e.dof[a] {
+							mass.add(e.dof[a], e.dof[b], mm)
+						}
+						c.rest[(first+e.dof[a])*n+first+e.dof[b]] -= kk
+					case e.dof[b] == -2:
+						tiedMass[e.dof[a]] += mm
+						tiedStiff[e.dof[a]] += kk
+					}
+				}
+			}
+		}
+	}
+	i := 0
+	for at := range m.elems {
+		f := &m.elems[at]
+		for i+1 < len(es) && f.z >= es[i].z+es[i].h*(1-1e-9) {
+			i++
+		}
+		for q := range nodeC {
+			s.heatNode(es, i, f, p.element[at]+q, q, work, load, &tiedLoad)
+		}
+	}
+	if tied >= 0 { // T' at the base = −ξ dT₀/dz
+		for _, l := range tiedLoad {
+			c.load[tied] = append(c.load[tied], entry{l.at, -s.c.Diffusion.BaseGradient * l.v})
+		}
+	}
+	// M dc/dt = −K c − ∫ρ c_p γ φ W − (M dT_N/dt + K T_N), T_N = −ξ dT₀/dz at an inviscid base
+	for i := range dof {
+		rate := work[i]
+		for j := range rate {
+			rate[j].v = -rate[j].v
+		}
+		if tied >= 0 && tiedMass[i] != 0 {
+			g := s.c.Diffusion.BaseGradient
+			rate = append(rate, entry{p.contact[len(s.c.Layers)], g * tiedMass[i]})
+			c.rest[(first+i)*n+tied] += g * (tiedStiff[i] + tiedMass[i]*s.c.VerticalStrain)
+		}
+		c.load, c.rate = append(c.load, load[i]), append(c.rate, rate)
+	}
+	mass.factor()
+	c.mass = mass
+	c.n = n
+}
+
+// heatNode enters node q of flow element f, on heat element i or one after it: what T'
+// there weighs, and what its velocity carries.
+func (s *Solver) heatNode(es []heatElement, i int, f *element, port, q int, work, load [][]entry, tied *[]entry) {
+	z := f.z + f.h*nodeC[q]
+	for i+1 < len(es) && z > es[i].z+es[i].h {
+		i++
+	}
+	e := &es[i]
+	th := &s.c.Diffusion.Layers[e.layer]
+	var v, dv [degree + 1]float64
+	shape(2*(z-e.z)/e.h-1, e.h, &v, &dv)
+	weigh := s.c.Gravity * th.PerKelvin(z) * f.h * nodeB[q]
+	carry := th.Capacity(z) * th.Excess(z) * f.h * nodeB[q]
+	for a := range v {
+		switch d := e.dof[a]; {
+		case d >= 0:
+			if weigh != 0 {
+				load[d] = append(load[d], entry{port, weigh * v[a]})
+			}
+			if carry != 0 {
+				work[d] = append(work[d], entry{port, carry * v[a]})
+			}
+		case d == -2 && weigh != 0:
+			*tied = append(*tied, entry{port, weigh * v[a]})
+		}
+	}
+}
+
+// heatQuadrature is the Gauss rule on [0, 1] that integrates the heat matrices.
+var heatQuadrature = sync.OnceValues(func() (x, w []float64) {
+	x, w = make([]float64, degree+4), make([]float64, degree+4)
+	quad.Legendre{}.FixedLocations(x, w, 0, 1)
+	return x, w
+})
+
+// banded is a symmetric positive definite matrix with degree entries beside its
+// diagonal, lower part: row i, column j at a[i*(degree+1) + j − i + degree].
+type banded struct {
+	n int
+	a []float64
+}
+
+func newBanded(n int) *banded { return &banded{n, make([]float64, n*(degree+1))} }
+
+func (b *banded) add(i, j int, v float64) { b.a[i*(degree+1)+j-i+degree] += v }
+
+// factor replaces the matrix by its Cholesky factor.
+func (b *banded) factor() {
+	const w = degree + 1
+	for i := range b.n {
+		row := b.a[i*w : (i+1)*w]
+		for j := max(0, i-degree); j <= i; j++ {
+			v := row[j-i+degree]
+			other := b.a[j*w : (j+1)*w]
+			for m := max(0, i-degree); m < j; m++ {
+				v -= row[m-i+degree] * other[m-j+degree]
+			}
+			if j < i {
+				row[j-i+degree] = v / other[degree]
+			} else {
+				row[degree] = math.Sqrt(v)
+			}
+		}
+	}
+}
+
+// solve solves for columns of x in place, row-major with cols columns.
+func (b *banded) solve(x []float64, cols int) {
+	const w = degree + 1
+	for i := range b.n {
+		xi := x[i*cols : (i+1)*cols]
+		for m := max(0, i-degree); m < i; m++ {
+			l := b.a[i*w+m-i+degree]
+			floats.AddScaled(xi, -l, x[m*cols:(m+1)*cols])
+		}
+		floats.Scale(1/b.a[i*w+degree], xi)
+	}
+	for i := b.n - 1; i >= 0; i-- {
+		xi := x[i*cols : (i+1)*cols]
+		for m := i + 1; m <= min(i+degree, b.n-1); m++ {
+			l := b.a[m*w+i-m+degree]
+			floats.AddScaled(xi, -l, x[m*cols:(m+1)*cols])
+		}
+		floats.Scale(1/b.a[i*w+degree], xi)
+	}
+}
