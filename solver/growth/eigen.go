@@ -3,6 +3,7 @@ package growth
 import (
 	"errors"
 	"math"
+	"slices"
 )
 
 var errNoConvergence = errors.New("growth: the eigenvalue iteration did not converge")
@@ -261,4 +262,11 @@ func sweepQR(a []float64, n, l, hi int, x, y, w float64) {
 			a[i*n+k] -= t
 		}
 	}
+}
+
+// Eigenvalues returns the real and imaginary parts of the eigenvalues of an n × n
+// row-major matrix, which it leaves as it is.
+func Eigenvalues(a []float64, n int) (re, im []float64, err error) {
+	re, im = make([]float64, n), make([]float64, n)
+	return re, im, eigenvalues(slices.Clone(a[:n*n]), n, re, im)
 }

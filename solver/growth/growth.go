@@ -1,4 +1,3 @@
-// Package growth computes linear growth rates of a layered viscous column.
 package growth
 
 // Boundary is a mechanical boundary condition of the column's top or base.
@@ -82,4 +81,5 @@ type Mode struct {
 	DqDrho                        []float64 // ∂q/∂ρ of each layer, the half-space last, 1/s per kg/m³
 	DqDh                          []float64 // ∂q/∂h of each layer, its profile stretched and everything below moving down, 1/s per m
 
+	shear float64 // d of the background
 }

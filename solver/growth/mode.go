@@ -58,7 +58,7 @@ func (s *Solver) Modes(wavelength float64) ([]*Mode, error) {
 
 // mode describes the mode whose rate is nearest to q.
 func (f *flow) mode(q complex128) (*Mode, error) {
-	m := &Mode{Wavelength: 2 * math.Pi / f.k, Growth: real(q), Imaginary: imag(q)}
+	m := &Mode{Wavelength: 2 * math.Pi / f.k, Growth: real(q), Imaginary: imag(q), shear: f.s.c.ShearRate}
 	x, y, err := f.eigenvectors(q)
 	if err != nil {
 		return nil, err
