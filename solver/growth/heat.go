@@ -145,7 +145,11 @@ func (s *Solver) coupleHeat(m *mesh, k float64, p *ports, c *coupling) {
 		}
 	}
 	mass := newBanded(dof)
-	c.rest = make([]float64, n*n) // −K, in the rows of T'
+	if cap(s.rest) < n*n {
+		s.rest = make([]float64, n*n)
+	}
+	c.rest = s.rest[:n*n] // −K, in the rows of T'
+	clear(c.rest)
 	tiedMass, tiedStiff := make([]float64, dof), make([]float64, dof)
 	work := make([][]entry, dof) // ∫ ρ c_p γ φ W by port
 	load := make([][]entry, dof)

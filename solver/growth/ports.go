@@ -50,10 +50,10 @@ func (s *Solver) layout(m *mesh) *ports {
 func (s *Solver) comply(m *mesh, k float64, p *ports) {
 	s.up(m, k)
 	n := p.n
-	if cap(p.g) < n*n {
-		p.g = make([]float64, n*n)
+	if cap(s.g) < n*n {
+		s.g = make([]float64, n*n)
 	}
-	p.g = p.g[:n*n]
+	p.g = s.g[:n*n]
 	r := make([]response, n) // velocity here per unit force at each port above
 	set := func(i, j int, v float64) { p.g[i*n+j], p.g[j*n+i] = v, v }
 	c := s.surface()

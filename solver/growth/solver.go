@@ -50,6 +50,7 @@ type workspace struct {
 	inner   inner
 	z       sym2
 	a, t    []float64
+	g, rest []float64 // of columns with fields
 	cw, cu  []response
 	loads   []force
 	re, im  []float64
