@@ -3,6 +3,7 @@ package growth_test
 import (
 	"fmt"
 	"math"
+	"math/rand/v2"
 	"testing"
 
 	"keelfall/solver/checks"
@@ -142,4 +143,63 @@ func TestSharesOfHalfSpaces(t *testing.T) {
 			t.Errorf("layer %d: share %.12g, want %g", i, m.DissipationShare[i], want)
 		}
 	}
+}
+
+// The derivatives of complex rates too: random strained columns whose leading mode
+// oscillates.
+func TestComplexSensitivities(t *testing.T) {
+	rng := rand.New(rand.NewPCG(1, 2))
+	tested := 0
+	for range 3000 {
+		c, depth := randomColumn(rng)
+		if c.ShearRate == 0 {
+			continue
+		}
+		c.ShearRate *= 30
+		c.VerticalStrain *= 30
+		lambda := depth * math.Pow(10, rng.Float64()*2-0.5)
+		solver := func(c *growth.Column) *growth.Solver {
+			s, err := growth.NewSolver(c, 1e-12)
+			if err != nil {
+				t.Fatal(err)
+			}
+			return s
+		}
+		r, err := solver(c).Rate(lambda)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if r.Imaginary == 0 || r.Imaginary < 0.1*math.Abs(r.Growth) {
+			continue
+		}
+		m, err := solver(c).Mode(lambda)
+		if err != nil {
+			t.Fatal(err)
+		}
+		size := math.Hypot(r.Growth, r.Imaginary)
+		for i := range c.Layers {
+			at := func(x float64) float64 {
+				d := *c
+				d.Layers = append([]growth.Layer(nil), c.Layers...)
+				d.Layers[i].Viscosity = func(z float64) (float64, float64) {
+					es, en := c.Layers[i].Viscosity(z)
+					return es * math.Exp(x), en * math.Exp(x)
+				}
+				r, err := solver(&d).Rate(lambda)
+				if err != nil {
+					t.Fatal(err)
+				}
+				return r.Growth
+			}
+			const h = 1e-4
+			got, want := m.DlnqDlnEta[i]*r.Growth, (at(h)-at(-h))/(2*h)
+			if math.Abs(got-want) > 2e-5*size { // differences: rounding 1e-12/h, curvature h²
+				t.Errorf("λ %g m, rate %g%+gi, layer %d: exact %.8g, differences %.8g", lambda, r.Growth, r.Imaginary, i, got, want)
+			}
+		}
+		if tested++; tested == 8 {
+			return
+		}
+	}
+	t.Fatalf("only %d oscillating modes found", tested)
 }

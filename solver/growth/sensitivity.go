@@ -33,7 +33,7 @@ func (f *flow) sensitivities(m *Mode, q complex128, x, y []complex128, b *budget
 	for i := range x {
 		norm += y[i] * x[i]
 	}
-	if abs2(norm) == 0 || f.defective(x, y, norm) {
+	if abs2(norm) == 0 || defective(x, y, norm) {
 		return // two modes meet: no simple eigenvalue, no derivative
 	}
 	var v [2]*field
@@ -112,13 +112,12 @@ func (f *flow) sensitivities(m *Mode, q complex128, x, y []complex128, b *budget
 
 // defective says whether left and right vectors are so nearly orthogonal that the
 // eigenvalue is a double one to rounding.
-func (f *flow) defective(x, y []complex128, norm complex128) bool {
-	var a, b float64
+func defective(x, y []complex128, norm complex128) bool {
+	var sum float64
 	for i := range x {
-		a += abs2(x[i])
-		b += abs2(y[i])
+		sum += math.Sqrt(abs2(x[i] * y[i]))
 	}
-	return math.Sqrt(abs2(norm)) < 1e-12*math.Sqrt(a*b)
+	return !(math.Sqrt(abs2(norm)) > 1e-10*sum)
 }
 
 // complexAt returns the velocity of a complex field at an interface.
