@@ -127,3 +127,15 @@ func (c *Column) RootSpan() (first, last int, ok bool) {
 	}
 	return first, last, first >= 0
 }
+
+// RootThickness returns the sum of the root layers' thicknesses in m; 0 where no
+// layer is marked as root.
+func (c *Column) RootThickness() float64 {
+	var h float64
+	for i := range c.Layers {
+		if c.Layers[i].Root {
+			h += c.Layers[i].Thickness
+		}
+	}
+	return h
+}

@@ -121,8 +121,7 @@ func (c *creep) laws(w *walker, path string, extra []rheology.Law) []rheology.La
 	return out
 }
 
-// findLaw looks in the built-in catalogue first, so that a user's file cannot
-// change what a name in a published experiment means.
+// findLaw looks in the built-in catalogue, then in the user's, which has other names.
 func findLaw(name string, extra []rheology.Law) (rheology.Law, error) {
 	law, err := rheology.Find(name)
 	if err == nil || len(extra) == 0 {

@@ -35,8 +35,9 @@ func fill(root *node) []race.Default {
 	}
 	f.scalar("0 1/s", false, "strain", "extension-rate")
 	f.scalar("stretch", false, "strain", "wavevector")
-	f.scalar("1e-15 1/s", slices.ContainsFunc(append(layers, root.get("base")), flows), "strain", "reference-rate")
-	f.scalar("none", false, "buoyancy", "thermal")
+	still := root.get("strain").get("extension-rate").isZero()
+	f.scalar("1e-15 1/s", still && slices.ContainsFunc(append(layers, root.get("base")), flows), "strain", "reference-rate")
+	f.scalar(thermalBuoyancy(root, layers, warm), false, "buoyancy", "thermal")
 	f.scalar("500 m", true, "drip", "amplitude")
 	f.scalar("1.0", true, "drip", "criterion")
 	f.scalar("30 Myr", false, "drip", "window")
@@ -65,6 +66,25 @@ func flows(rock *node) bool {
 		return true
 	}
 	return rock.get("creep") != nil
+}
+
+// isZero says whether n is the number 0, in whatever unit.
+func (n *node) isZero() bool { return n != nil && isOnly(n, "0") }
+
+// thermalBuoyancy is the default of buoyancy.thermal: diffusive where the density of a
+// layer, or of a base that is not a wall, depends on a temperature the column has.
+func thermalBuoyancy(root *node, layers []*node, warm bool) string {
+	expands := func(rock *node) bool {
+		e := rock.get("density").get("expansivity")
+		return e != nil && !e.isZero()
+	}
+	base := root.get("base")
+	b := base.get("boundary")
+	open := b != nil && (b.text == "half-space" || b.text == "inviscid")
+	if warm && (slices.ContainsFunc(layers, expands) || open && expands(base)) {
+		return "diffusive"
+	}
+	return "none"
 }
 
 // hasTemperature says whether the experiment gives the column a temperature.

@@ -21,7 +21,7 @@ func edit(root *node, set string) error {
 	if strings.TrimSpace(value) == "" {
 		return removeAt(root, parts)
 	}
-	text, err := asText([]byte(value))
+	text, err := asText([]byte(value), "a value")
 	if err != nil {
 		return err
 	}

@@ -56,3 +56,33 @@ func (s *spec) listed() []string {
 	}
 	return names
 }
+
+// rules checks what must and may not stand together.
+func (w *walker) rules(n *node, s *spec, path string) {
+	for _, r := range s.required {
+		if n.get(r) == nil {
+			w.addf(n, join(path, r), "is missing; %s", s.key(r).spec.expects())
+		}
+	}
+	both := func(g []string) int {
+		var have []string
+		for _, k := range g {
+			if n.get(k) != nil {
+				have = append(have, k)
+			}
+		}
+		if len(have) > 1 {
+			at := n.get(have[1])
+			w.addf(at, path, "has %s; only one of them may be given", strings.Join(have, " and "))
+		}
+		return len(have)
+	}
+	for _, g := range s.most {
+		both(g)
+	}
+	for _, g := range s.exactly {
+		if both(g) == 0 {
+			w.addf(n, path, "has none of %s; needs one of them", strings.Join(g, ", "))
+		}
+	}
+}

@@ -23,6 +23,7 @@ type Experiment struct {
 	Remarks []Remark // source and notes of every block that has them, in the file's order
 
 	reader Reader
+	laws   []rheology.Law    // all that the reader adds to the built-in ones
 	tree   *node             // as written, edits applied
 	filled *node             // with defaults
 	files  map[string][]byte // other files the experiment names, by the name it uses
@@ -31,9 +32,13 @@ type Experiment struct {
 	taken  []race.Default
 }
 
-// Reader reads experiments. The zero value knows the built-in creep laws; Laws adds
-// the user's own catalogues, whose names never replace a built-in one.
-type Reader struct{ Laws []rheology.Law }
+// Reader reads experiments. The zero value knows the built-in creep laws; Catalogues
+// are the user's own, and Laws are further laws that come from no file. A law whose
+// name another one has, built-in or not, is an error of Open and Read.
+type Reader struct {
+	Laws       []rheology.Law
+	Catalogues []Catalogue
+}
 
 // Open reads the experiment file at path and applies edits, each path=value as
 // after --set. A file that cannot be read is an error that wraps its cause; one that
@@ -65,12 +70,16 @@ func (rd Reader) Read(name string, r io.Reader, edits ...string) (*Experiment, e
 }
 
 func (rd Reader) read(name string, b []byte, edits []string) (*Experiment, error) {
+	laws, err := rd.laws()
+	if err != nil {
+		return nil, err
+	}
 	tree, err := parse(name, b)
 	if err != nil {
 		return nil, unreadable(name, err)
 	}
 	sum := sha256.Sum256(b)
-	e := &Experiment{Name: name, SHA256: hex.EncodeToString(sum[:]), reader: rd, tree: tree, files: map[string][]byte{}}
+	e := &Experiment{Name: name, SHA256: hex.EncodeToString(sum[:]), reader: rd, laws: laws, tree: tree, files: map[string][]byte{}}
 	return e.edited(edits)
 }
 
@@ -141,7 +150,7 @@ func (e *Experiment) file(name, needs string) ([]byte, error) {
 	}
 	b, err := readFile(path, needs)
 	if err == nil {
-		b, err = asText(b)
+		b, err = asText(b, needs)
 	}
 	if err == nil {
 		e.files[name] = b

@@ -3,10 +3,10 @@ package configs
 // experiment is an experiment file as it is decoded.
 type experiment struct {
 	block
-	Title    text         `key:"title" doc:"what the experiment is about, one line"`
+	Title    text         `key:"title" as:"line" doc:"what the experiment is about, one line"`
 	Gravity  quantity     `key:"gravity" dim:"acceleration" range:"(0 m/s2,100 m/s2]" doc:"gravitational acceleration; 9.81 m/s2 if left out"`
 	TimeZero quantity     `key:"time-zero" dim:"age" range:"[0 Ma,5000 Ma]" doc:"age of model time 0; needed where any other time is given as an age"`
-	Arc      *arc         `key:"arc" doc:"the arc's size; limits the wavelengths a drip may have"`
+	Arc      *arc         `key:"arc" doc:"the arc's size; no drip is wider than its width or, with wavevector strike, longer than its length"`
 	Limits   *limits      `key:"viscosity-limits" doc:"bounds of creep viscosities"`
 	Strain   *strain      `key:"strain" doc:"background deformation of the whole column"`
 	Buoyancy *buoyancy    `key:"buoyancy" doc:"how temperature perturbations act on the instability"`
@@ -39,8 +39,8 @@ type arc struct {
 
 type limits struct {
 	block
-	Lowest  quantity `key:"lowest" dim:"viscosity" range:"(0 Pa s,1e30 Pa s]" eg:"1e16 Pa s" doc:"lowest creep viscosity; 1e16 Pa s if left out"`
-	Highest quantity `key:"highest" dim:"viscosity" range:"(0 Pa s,1e30 Pa s]" eg:"1e25 Pa s" doc:"highest creep viscosity; 1e25 Pa s if left out"`
+	Lowest  quantity `key:"lowest" dim:"viscosity" range:"[1 Pa s,1e40 Pa s]" eg:"1e16 Pa s" doc:"lowest creep viscosity; 1e16 Pa s if left out"`
+	Highest quantity `key:"highest" dim:"viscosity" range:"[1 Pa s,1e40 Pa s]" eg:"1e25 Pa s" doc:"highest creep viscosity; 1e25 Pa s if left out"`
 }
 
 func (l *limits) check(w *walker) {
@@ -57,12 +57,12 @@ type strain struct {
 	block
 	ExtensionRate quantity `key:"extension-rate" dim:"strain-rate" range:"[-1e-10 1/s,1e-10 1/s]" doc:"horizontal stretching of the whole column; negative thickens; 0 if left out"`
 	Wavevector    text     `key:"wavevector" one:"stretch|strike" doc:"the direction along which the undulation varies; stretch if left out"`
-	ReferenceRate quantity `key:"reference-rate" dim:"strain-rate" range:"(0 1/s,1e-6 1/s]" doc:"at which creep is evaluated where nothing moves; 1e-15 1/s if left out"`
+	ReferenceRate quantity `key:"reference-rate" dim:"strain-rate" range:"(0 1/s,1e-6 1/s]" doc:"at which creep is evaluated where nothing moves (extension-rate 0); 1e-15 1/s if left out"`
 }
 
 type buoyancy struct {
 	block
-	Thermal text `key:"thermal" one:"none|frozen|diffusive" doc:"perturbations of temperature: left out, carried, or carried and diffusing"`
+	Thermal text `key:"thermal" one:"none|frozen|diffusive" doc:"perturbations of temperature: left out, carried, or carried and diffusing; if left out diffusive where a density depends on temperature and the column has one, else none"`
 }
 
 type geotherm struct {
@@ -99,7 +99,7 @@ type base struct {
 
 type dripping struct {
 	block
-	Amplitude quantity `key:"amplitude" dim:"length" range:"(0 m,100 km]" eg:"500 m" doc:"initial undulation of the root's base; 500 m if left out"`
+	Amplitude quantity `key:"amplitude" dim:"length" range:"(0 m,100 km]" eg:"500 m" doc:"initial undulation of the root's base, less than criterion times the root's thickness; 500 m if left out"`
 	Criterion quantity `key:"criterion" dim:"number" range:"(0,10]" eg:"1.0" doc:"a drip when the tip has descended by this times the root's thickness; 1.0 if left out"`
 	Window    quantity `key:"window" dim:"duration" range:"(0 Myr,5000 Myr]" doc:"time available to both fates; 30 Myr if left out"`
 	Spectrum  text     `key:"spectrum" one:"white" doc:"the undulation against wavelength; white if left out"`

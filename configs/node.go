@@ -113,7 +113,7 @@ func (n *node) show() string {
 
 // shorten keeps a message readable whatever was written.
 func shorten(s string) string {
-	s = strings.Join(strings.Fields(s), " ")
+	s = visible(strings.Join(strings.Fields(s), " "))
 	if r := []rune(s); len(r) > 60 {
 		s = string(r[:57]) + "…"
 	}

@@ -10,9 +10,7 @@ const notInThisVersion = "not in this version of keelfall"
 // list. Where a value stands beside it, that value is accepted and no other. The
 // schema checks them all the same. Work on a solver ends with its line leaving here.
 var notYet = map[string]string{
-	"strain.extension-rate": "0",
-	"buoyancy.thermal":      "none",
-	"drip.softening":        "none",
+	"drip.softening": "none",
 
 	"layers.*.section":               "",
 	"layers.*.density.modes":         "",

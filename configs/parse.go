@@ -31,7 +31,7 @@ func atLine(line int, format string, args ...any) error {
 // parse turns a file's bytes into a tree. name decides the format by its extension;
 // without a known one the content does.
 func parse(name string, b []byte) (*node, error) {
-	b, err := asText(b)
+	b, err := asText(b, formats)
 	if err != nil {
 		return nil, err
 	}
@@ -77,17 +77,18 @@ func parseUnknown(b []byte) (*node, error) {
 	return root, nil
 }
 
-// asText checks that b is UTF-8 text and not empty, and drops a byte-order mark.
-func asText(b []byte) ([]byte, error) {
+// asText checks that b is UTF-8 text and not empty, and drops a byte-order mark. needs
+// says what b should be.
+func asText(b []byte, needs string) ([]byte, error) {
 	if len(b) > maxBytes {
-		return nil, atLine(0, "is larger than %d MB; needs %s", maxBytes>>20, formats)
+		return nil, atLine(0, "is larger than %d MB; needs %s", maxBytes>>20, needs)
 	}
 	if bytes.HasPrefix(b, []byte{0xFF, 0xFE}) || bytes.HasPrefix(b, []byte{0xFE, 0xFF}) {
 		return nil, atLine(1, "is UTF-16 text; save it as UTF-8")
 	}
 	b = bytes.TrimPrefix(b, []byte("\uFEFF"))
 	if len(bytes.TrimSpace(b)) == 0 {
-		return nil, atLine(0, "is empty; needs %s", formats)
+		return nil, atLine(0, "is empty; needs %s", needs)
 	}
 	if breaks := bytes.Count(b, []byte{','}) + bytes.Count(b, []byte{'\n'}); breaks > maxBreaks {
 		return nil, atLine(0, "has %d commas and line ends, more than an experiment can need (%d)", breaks, maxBreaks)
@@ -99,7 +100,7 @@ func asText(b []byte) ([]byte, error) {
 		case r == '\n':
 			line++
 		case r < ' ' && r != '\t' && r != '\r', r == 0x7F:
-			return nil, atLine(line, "is binary data (byte 0x%02X); needs %s", b[i], formats)
+			return nil, atLine(line, "is binary data (byte 0x%02X); needs %s", b[i], needs)
 		case r == utf8.RuneError && size == 1:
 			return nil, atLine(line, "holds the byte 0x%02X, which is not UTF-8 (perhaps Latin-1); save the file as UTF-8", b[i])
 		}

@@ -1,7 +1,6 @@
 package configs
 
 import (
-	"fmt"
 	"math"
 	"slices"
 
@@ -34,6 +33,9 @@ func (e *Experiment) build(w *walker) race.Problem {
 		},
 		Removed:  d.Race.Removed.SI,
 		Defaults: slices.Clone(e.taken),
+	}
+	if n := d.Buoyancy.Thermal.n; n.from != fromDefault && n.text != "none" && !hasTemperature(e.filled) {
+		w.addf(n, "buoyancy.thermal", "%s needs a temperature and the experiment has none; %s", n.show(), howWarm)
 	}
 	if d.Strain.Wavevector.Value == "strike" {
 		p.Strain.Wavevector = race.AlongStrike
@@ -106,7 +108,7 @@ func (e *Experiment) rock(w *walker, r *rock) column.Rock {
 	}
 	switch v := r.Viscosity; {
 	case r.Creep != nil:
-		out.Viscosity.Creep = &rheology.Creep{Laws: r.Creep.laws(w, r.path+".creep", e.reader.Laws), Factor: 1}
+		out.Viscosity.Creep = &rheology.Creep{Laws: r.Creep.laws(w, r.path+".creep", e.laws), Factor: 1}
 	case v != nil && v.Linear != nil:
 		out.Viscosity.Top, out.Viscosity.Bottom = v.Linear.Top.SI, v.Linear.Bottom.SI
 	case v != nil:
@@ -151,12 +153,14 @@ func (d *density) model() column.Density {
 	return column.Uniform(d.Value.SI)
 }
 
+// howWarm says how an experiment gets a temperature.
+const howWarm = "add base.temperature or base.heat-flow, or a geotherm"
+
 // temperatureNeeds reports a rock that needs a temperature the experiment does not
 // give, or water and grain size its creep laws ask for.
 func (e *Experiment) temperatureNeeds(w *walker, r *rock, out *column.Rock, warm bool) {
-	const how = "add base.temperature or base.heat-flow, or a geotherm"
 	if out.Density != nil && out.Density.NeedsTemperature() && !warm {
-		w.addf(r.at.get("density"), r.path+".density", "depends on temperature (expansivity) and the experiment has none; %s", how)
+		w.addf(r.at.get("density"), r.path+".density", "depends on temperature (expansivity) and the experiment has none; %s", howWarm)
 	}
 	creep := out.Viscosity.Creep
 	if creep == nil {
@@ -164,7 +168,7 @@ func (e *Experiment) temperatureNeeds(w *walker, r *rock, out *column.Rock, warm
 	}
 	at := r.at.get("creep")
 	if !warm {
-		w.addf(at, r.path+".creep", "needs a temperature and the experiment has none; %s", how)
+		w.addf(at, r.path+".creep", "needs a temperature and the experiment has none; %s", howWarm)
 	}
 	said := map[string]bool{}
 	say := func(key, format string, args ...any) {
@@ -192,56 +196,6 @@ func (e *Experiment) temperatureNeeds(w *walker, r *rock, out *column.Rock, warm
 		}
 	}
 }
-
-// crossCheck checks what layers and zones say about one another. It works on a tree
-// that may have other mistakes, and then leaves out what it cannot know.
-func (e *Experiment) crossCheck(w *walker) {
-	index := map[string]int{}
-	names := []string{}
-	complete := true // no layer whose name is unknown
-	last := -1
-	for i := range e.data.Layers {
-		l := e.data.Layers[i].Layer
-		if l == nil || !l.Name.given() {
-			complete = false
-			continue
-		}
-		index[l.Name.Value] = i
-		names = append(names, l.Name.Value)
-		if !l.Root.On {
-			continue
-		}
-		if last >= 0 && last != i-1 {
-			w.addf(l.Root.n, l.path+".root", "is not adjacent to the root layer %s; root layers follow one another", e.data.Layers[last].Layer.Name.Value)
-		}
-		last = i
-	}
-	if e.data.Excision == nil || !complete {
-		return
-	}
-	for i := range e.data.Excision.Zones {
-		z := &e.data.Excision.Zones[i]
-		before := -1
-		for j, cut := range z.Cuts {
-			if !cut.given() {
-				break
-			}
-			k, ok := index[cut.Value]
-			path := fmt.Sprintf("%s.cuts[%d]", z.path, j)
-			if !ok {
-				w.addf(cut.n, path, "%s is not a layer; %s", cut.n.show(), didYouMean(cut.Value, firstFew(names)))
-				break
-			}
-			if before >= 0 && k != before+1 {
-				w.addf(cut.n, path, "%s does not lie directly below %s; a zone cuts adjacent layers, named from above", cut.Value, z.Cuts[j-1].Value)
-				break
-			}
-			before = k
-		}
-	}
-}
-
-func firstFew(names []string) []string { return names[:min(len(names), 200)] }
 
 // finite is what every number that leaves the package is.
 func finite(x float64) bool { return !math.IsNaN(x) && !math.IsInf(x, 0) }

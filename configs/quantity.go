@@ -60,7 +60,7 @@ func parseQuantity(n *node, d *dimension, timeZero float64) (float64, error) {
 		return 0, fmt.Errorf("%s is a length of time; %s", n.show(), needs(d))
 	case u.age && d.kind == timeDim:
 		if math.IsNaN(timeZero) {
-			return 0, fmt.Errorf("%s is an age and the experiment has no time-zero; add time-zero, for example 95 Ma, or write Myr since the start", n.show())
+			return 0, &noTimeZeroError{n.show()}
 		}
 		si = timeZero - si
 	}
@@ -68,6 +68,13 @@ func parseQuantity(n *node, d *dimension, timeZero float64) (float64, error) {
 		return 0, fmt.Errorf("%s is beyond the range of numbers in SI; %s", n.show(), needs(d))
 	}
 	return si, nil
+}
+
+// noTimeZeroError is an age in an experiment that does not say the age of time 0.
+type noTimeZeroError struct{ age string }
+
+func (e *noTimeZeroError) Error() string {
+	return e.age + " is an age and the experiment has no time-zero; add time-zero, for example 95 Ma, or write Myr since the start"
 }
 
 func bare(n *node, number, text string) (float64, error) {

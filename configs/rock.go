@@ -120,14 +120,14 @@ type reactionRate struct {
 
 type viscosity struct {
 	_      struct{}         `kind:"union"`
-	Value  quantity         `form:"scalar" dim:"viscosity" range:"(0 Pa s,1e30 Pa s]"`
+	Value  quantity         `form:"scalar" dim:"viscosity" range:"[1 Pa s,1e40 Pa s]"`
 	Linear *viscosityLinear `form:"map"`
 }
 
 type viscosityLinear struct {
 	block
-	Top    quantity `key:"top,required" dim:"viscosity" range:"(0 Pa s,1e30 Pa s]" doc:"at the layer's top"`
-	Bottom quantity `key:"bottom,required" dim:"viscosity" range:"(0 Pa s,1e30 Pa s]" doc:"at the layer's bottom; log-linear in between"`
+	Top    quantity `key:"top,required" dim:"viscosity" range:"[1 Pa s,1e40 Pa s]" doc:"at the layer's top"`
+	Bottom quantity `key:"bottom,required" dim:"viscosity" range:"[1 Pa s,1e40 Pa s]" doc:"at the layer's bottom; log-linear in between"`
 }
 
 type water struct {

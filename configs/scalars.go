@@ -9,6 +9,31 @@ import (
 	"strings"
 )
 
+func (t text) given() bool { return t.n != nil }
+
+// text, count and flag are decoded scalars; n is nil where the key is absent.
+type text struct {
+	Value string
+	n     *node
+}
+
+type count struct {
+	N int
+	n *node
+}
+
+type flag struct {
+	On bool
+	n  *node
+}
+
+// shares maps names to bare numbers, such as mineral modes.
+type shares struct {
+	Names  []string
+	Values []float64
+	n      *node
+}
+
 func (w *walker) quantity(n *node, s *spec) (quantity, error) {
 	d := s.dim
 	if s.dynamic != "" {
@@ -21,6 +46,9 @@ func (w *walker) quantity(n *node, s *spec) (quantity, error) {
 		}
 	}
 	x, err := parseQuantity(n, d, w.timeZero)
+	if none := (*noTimeZeroError)(nil); errors.As(err, &none) && w.root.get("time-zero") != nil {
+		return quantity{}, nil // time-zero is wrong and is reported itself
+	}
 	if err != nil {
 		return quantity{}, example(err, s)
 	}
@@ -74,9 +102,12 @@ func (w *walker) text(n *node, s *spec) (text, error) {
 	if v == "" {
 		return text{}, fmt.Errorf("is an empty text; %s", s.expects())
 	}
+	if err := readable(strings.Trim(n.text, " \r\n"), s.as); err != nil {
+		return text{}, err
+	}
 	switch s.as {
 	case "name":
-		if _, err := strconv.Atoi(v); err == nil || strings.ContainsAny(v, ".=\n") {
+		if _, err := strconv.Atoi(v); err == nil || strings.ContainsAny(v, ".=") {
 			return text{}, fmt.Errorf("%s cannot be a name; a name is no whole number and has no dot and no equals sign, so that keys can name it", n.show())
 		}
 	case "key":
@@ -91,6 +122,10 @@ func (w *walker) shares(n *node, path string) shares {
 	out := shares{n: n}
 	for i, item := range n.items {
 		at := join(path, shorten(n.keys[i]))
+		if err := readable(n.keys[i], "name"); err != nil {
+			w.add(item, at, err.Error())
+			continue
+		}
 		if item.kind != scalarNode {
 			w.addf(item, at, "is %s; needs a bare number, for example 0.3", item.kind)
 			continue

@@ -17,8 +17,8 @@ import (
 
 // Settings are what a user sets once for all experiments: where results go and how
 // they look. Nothing in them changes the physics of an experiment; a creep law of an
-// extra catalogue acts only where an experiment names it, and then stands in the
-// result with its constants.
+// extra catalogue acts only where an experiment names it, never has the name of a
+// built-in one, and stands in the result with its constants and its file's SHA-256.
 type Settings struct {
 	Out        string   // folder results are written into; "" leaves the choice to the command
 	Figures    []string // formats of figures, of png, svg and pdf
@@ -38,12 +38,13 @@ type settingsFile struct {
 var settingsSchema = compile(reflect.TypeFor[settingsFile]())
 
 // settingKeys are the keys of the settings; the flags and, in capitals behind
-// KEELFALL_, the environment variables have the same names.
+// KEELFALL_ and but for catalogues, the environment variables have the same names.
 var settingKeys = []string{"out", "figures", "workers", "catalogues"}
 
 // LoadSettings layers the settings: defaults, then the user's file, then KEELFALL_OUT,
-// KEELFALL_FIGURES, KEELFALL_WORKERS and KEELFALL_CATALOGUES, then those flags of the
-// same names that were given. Lists are separated by commas. path names the file; ""
+// KEELFALL_FIGURES and KEELFALL_WORKERS, then those flags of the same names that were
+// given. Catalogues come from the file or the flag alone: an environment variable
+// decides no creep law. Lists are separated by commas. path names the file; ""
 // means keelfall/settings.yaml in the user's configuration folder, which may be
 // absent. flags may be nil. An unknown key or a wrong value is an error that says
 // where it was found. Catalogue paths of the file are relative to it.
@@ -56,12 +57,15 @@ func LoadSettings(path string, flags *pflag.FlagSet) (Settings, error) {
 	if err := settingsFrom(v, path); err != nil {
 		return Settings{}, err
 	}
-	v.SetEnvPrefix("KEELFALL")
-	v.AutomaticEnv()
 	where := map[string]string{}
 	for _, key := range settingKeys {
-		if name := "KEELFALL_" + strings.ToUpper(key); os.Getenv(name) != "" {
-			where[key] = name
+		if name := "KEELFALL_" + strings.ToUpper(key); key != "catalogues" {
+			if err := v.BindEnv(key, name); err != nil {
+				return Settings{}, fmt.Errorf("configs: %s: %w", name, err)
+			}
+			if os.Getenv(name) != "" {
+				where[key] = name
+			}
 		}
 		if flags == nil {
 			continue

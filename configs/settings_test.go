@@ -62,6 +62,7 @@ func TestSettingsLayers(t *testing.T) {
 	check("file", settingsFlags(t), Settings{Out: "results", Figures: []string{"pdf"}, Workers: 3, Catalogues: mine})
 	t.Setenv("KEELFALL_WORKERS", "5")
 	t.Setenv("KEELFALL_FIGURES", "svg, png")
+	t.Setenv("KEELFALL_CATALOGUES", "theirs.csv") // decides no creep law
 	check("environment", settingsFlags(t), Settings{Out: "results", Figures: []string{"svg", "png"}, Workers: 5, Catalogues: mine})
 	check("flags", settingsFlags(t, "--workers", "7", "--figures", "png,pdf", "--out", "there"), Settings{Out: "there", Figures: []string{"png", "pdf"}, Workers: 7, Catalogues: mine})
 }

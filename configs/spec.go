@@ -13,7 +13,8 @@ import (
 //	       scalar quantity named beside it, with a - behind for its difference
 //	range  interval of a quantity or count, bounds with units: (0 m,1000 km]
 //	one    the words allowed, separated by |; @quantities, @results: scalar quantities
-//	as     name, file or key: what a text stands for
+//	as     name, file, key, law, line or prose: what a text stands for; prose alone
+//	       may have several lines
 //	doc    meaning, for the JSON Schema; eg: an example in place of the dimension's
 //	form   scalar, list or map, in a union: which shape of value the field takes
 //
@@ -66,8 +67,8 @@ type form struct {
 
 // block is embedded by every record: where it stands, and what its user notes about it.
 type block struct {
-	Source text `key:"source" doc:"where the block's numbers come from; carried into the results"`
-	Notes  text `key:"notes" doc:"remarks; carried into the results"`
+	Source text `key:"source" as:"prose" doc:"where the block's numbers come from; carried into the results"`
+	Notes  text `key:"notes" as:"prose" doc:"remarks; carried into the results"`
 
 	at   *node
 	path string
@@ -77,31 +78,6 @@ type block struct {
 func (b *block) stand(n *node, path string) *block {
 	b.at, b.path = n, path
 	return b
-}
-
-func (t text) given() bool { return t.n != nil }
-
-// text, count and flag are decoded scalars; n is nil where the key is absent.
-type text struct {
-	Value string
-	n     *node
-}
-
-type count struct {
-	N int
-	n *node
-}
-
-type flag struct {
-	On bool
-	n  *node
-}
-
-// shares maps names to bare numbers, such as mineral modes.
-type shares struct {
-	Names  []string
-	Values []float64
-	n      *node
 }
 
 var (

@@ -29,8 +29,7 @@ func All(res *race.Result, width vg.Length) ([]Figure, error) {
 	}
 	sp, dr := res.Spectrum, res.Drip
 	if (sp != nil && len(sp.Rates) > 0) || (dr != nil && anyFinite(dr.Curve.Time)) {
-		against := Setting{ArcWidth: res.Problem.ArcWidth, Window: res.Problem.Drip.Window}
-		if err := add(Spectrum(sp, dr, against, width)); err != nil {
+		if err := add(Spectrum(sp, dr, SettingOf(res.Problem), width)); err != nil {
 			return nil, err
 		}
 	}

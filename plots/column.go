@@ -101,8 +101,12 @@ func (f columnFigure) caption() string {
 			break
 		}
 	}
-	if len(f.heavy()) > 0 {
-		s += " Filled: rock denser than the rock below it."
+	if heavy := f.heavy(); len(heavy) > 0 {
+		s += " Filled: rock denser than the rock below it"
+		if first, last, ok := f.st.Column.RootSpan(); ok && first < last && slices.ContainsFunc(heavy, func(i int) bool { return i >= first && i <= last }) {
+			s += "; of the root, than the rock below the root"
+		}
+		s += "."
 	}
 	if f.st.StrainRate > 0 {
 		s += fmt.Sprintf(" Viscosity of creep at a strain rate of %s 1/s.", plain(number(f.st.StrainRate, 3)))
@@ -113,16 +117,32 @@ func (f columnFigure) caption() string {
 	return s + f.layers.remark()
 }
 
+// excess is by how much a layer is denser at its base than the rock below it, in kg/m³:
+// of the root's layers, than the rock below the root. It is negative where the layer is
+// the lighter one, and 0 where there is no rock below.
+func (f columnFigure) excess(i int) float64 {
+	below := i
+	for below+1 < len(f.st.Layers) && f.layers.all[i].root && f.layers.all[below+1].root {
+		below++
+	}
+	base := f.st.Column.Base.Boundary
+	if below == len(f.st.Layers)-1 && base != column.HalfSpace && base != column.Inviscid || below+1 >= len(f.st.Jumps) {
+		return 0
+	}
+	return f.foot(i) - f.foot(below) - f.st.Jumps[below+1]
+}
+
+// foot is a layer's density at its base.
+func (f columnFigure) foot(i int) float64 {
+	points := f.st.Layers[i].Points
+	return points[len(points)-1].Density
+}
+
 // heavy lists the indices of layers denser than what lies below them.
 func (f columnFigure) heavy() []int {
-	base := f.st.Column.Base.Boundary
-	open := base == column.HalfSpace || base == column.Inviscid
 	var out []int
 	for i := range f.st.Layers {
-		if !open && i == len(f.st.Layers)-1 {
-			break // there is no rock below
-		}
-		if i+1 < len(f.st.Jumps) && f.st.Jumps[i+1] < 0 {
+		if f.excess(i) > 0 {
 			out = append(out, i)
 		}
 	}

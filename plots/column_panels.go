@@ -58,7 +58,7 @@ func (f columnFigure) density(p *panel) {
 		if la.root != lb.root {
 			return la.root
 		}
-		return f.st.Jumps[heavy[a]+1] < f.st.Jumps[heavy[b]+1]
+		return f.excess(heavy[a]) > f.excess(heavy[b])
 	})
 	for _, i := range heavy[:min(len(heavy), 3)] {
 		f.contrast(p, i)
@@ -67,8 +67,7 @@ func (f columnFigure) density(p *panel) {
 
 // inversion fills what layer i has of density above that of the rock below it.
 func (f columnFigure) inversion(p *panel, i int) {
-	last := f.st.Layers[i].Points[len(f.st.Layers[i].Points)-1]
-	below := last.Density + f.st.Jumps[i+1]
+	below := f.foot(i) - f.excess(i)
 	var x, z []float64
 	for j, q := range f.prof.density {
 		if f.prof.layer[j] == i {
@@ -85,8 +84,8 @@ func (f columnFigure) contrast(p *panel, i int) {
 	if l.bottom > f.layers.bottom {
 		return
 	}
-	rho := f.st.Layers[i].Points[len(f.st.Layers[i].Points)-1].Density
-	edge := p.atX(rho + f.st.Jumps[i+1])
+	rho := f.foot(i)
+	edge := p.atX(rho - f.excess(i))
 	mid := (p.atY(l.top) + p.atY(l.bottom)) / 2
 	spots := []spot{
 		{vg.Point{X: edge - 2.5, Y: mid}, text.XRight, text.YCenter},
@@ -100,7 +99,7 @@ func (f columnFigure) contrast(p *panel, i int) {
 			spot{vg.Point{X: edge - 2.5, Y: p.atY(l.top) + d}, text.XRight, text.YBottom},
 			spot{vg.Point{X: p.box.Max.X - 2.5, Y: p.atY(l.top) + d}, text.XRight, text.YBottom})
 	}
-	by := "+" + number(-f.st.Jumps[i+1], 3)
+	by := "+" + number(f.excess(i), 3)
 	p.place(black, p.box, spots, by+" kg/m³", by+"\nkg/m³")
 }
 

@@ -2,6 +2,7 @@ package plots
 
 import (
 	"bytes"
+	"encoding/base64"
 	"encoding/binary"
 	"fmt"
 	"hash/crc32"
@@ -9,7 +10,10 @@ import (
 	"io"
 	"math"
 	"os"
+	"slices"
 
+	"codeberg.org/go-fonts/liberation/liberationsansregular"
+	"codeberg.org/go-pdf/fpdf"
 	"gonum.org/v1/plot/vg"
 	"gonum.org/v1/plot/vg/draw"
 	"gonum.org/v1/plot/vg/vgimg"
@@ -33,9 +37,7 @@ func Encode(w io.Writer, f Figure, format string) error {
 	case "png":
 		err = encodePNG(w, f)
 	case "svg":
-		c := vgsvg.NewWith(vgsvg.UseWH(f.Width, f.Height), vgsvg.EmbedFonts(true))
-		f.onWhite(c)
-		_, err = c.WriteTo(w)
+		err = encodeSVG(w, f)
 	case "pdf":
 		c := newPDF(f)
 		f.onWhite(c)
@@ -59,10 +61,45 @@ func Save(path string, f Figure, format string) error {
 }
 
 // onWhite draws the figure on a white page.
-func (f Figure) onWhite(c vg.Canvas) {
+func (f Figure) onWhite(c vg.Canvas) *sheet {
 	s := &sheet{Canvas: draw.NewCanvas(c, f.Width, f.Height)}
 	s.rect(s.Rectangle, white)
-	f.Draw(s.Canvas)
+	return f.sheet(s.Canvas)
+}
+
+// encodeSVG writes an SVG that carries the letters it uses: the typeface that vgsvg
+// embeds whole is replaced by the part of it that the figure needs.
+func encodeSVG(w io.Writer, f Figure) error {
+	c := vgsvg.NewWith(vgsvg.UseWH(f.Width, f.Height), vgsvg.EmbedFonts(true))
+	s := f.onWhite(c)
+	var buf bytes.Buffer
+	if _, err := c.WriteTo(&buf); err != nil {
+		return err
+	}
+	whole := []byte(base64.StdEncoding.EncodeToString(liberationsansregular.TTF))
+	part := []byte(base64.StdEncoding.EncodeToString(subset(s.runes())))
+	_, err := w.Write(bytes.ReplaceAll(buf.Bytes(), whole, part))
+	return err
+}
+
+// runes returns the characters of all texts, each once, in order.
+func (s *sheet) runes() []rune {
+	var out []rune
+	for _, t := range s.texts {
+		for _, line := range (markup{}).Lines(t.text) {
+			for _, r := range runs(line) {
+				out = append(out, []rune(r.text)...)
+			}
+		}
+	}
+	slices.Sort(out)
+	return slices.Compact(out)
+}
+
+// subset returns the typeface cut to the given characters.
+func subset(chars []rune) []byte {
+	// The bytes are copied: the cutter writes into them.
+	return fpdf.UTF8CutFont(slices.Clone(liberationsansregular.TTF), string(chars))
 }
 
 // encodePNG writes a PNG that knows its size on paper.

@@ -2,10 +2,15 @@ package plots
 
 import (
 	"bytes"
+	"encoding/base64"
 	"image/png"
+	"slices"
 	"strings"
 	"testing"
 
+	"codeberg.org/go-fonts/liberation/liberationsansregular"
+	"golang.org/x/image/font"
+	"golang.org/x/image/font/sfnt"
 	"gonum.org/v1/plot/vg"
 )
 
@@ -71,6 +76,62 @@ func TestSVG(t *testing.T) {
 	for _, part := range []string{"@font-face", "font-family:\"Liberation Sans\"", ">Temperature<", ">(kg/m³)<", `width="240.94pt"`} {
 		if !strings.Contains(s, part) {
 			t.Errorf("no %s", part)
+		}
+	}
+	if len(s) > 60e3 {
+		t.Errorf("%d bytes; the font should be cut to the letters used", len(s))
+	}
+}
+
+// TestSVGFont asserts that the font in an SVG has every letter of the figure, as wide
+// as in the whole font, and the tables without which browsers refuse a font.
+func TestSVGFont(t *testing.T) {
+	_, after, _ := strings.Cut(string(encoded(t, "svg")), "base64,")
+	data, _, _ := strings.Cut(after, ")")
+	b, err := base64.StdEncoding.DecodeString(data)
+	if err != nil {
+		t.Fatal(err)
+	}
+	part, err := sfnt.Parse(b)
+	if err != nil {
+		t.Fatal(err)
+	}
+	whole, err := sfnt.Parse(liberationsansregular.TTF)
+	if err != nil {
+		t.Fatal(err)
+	}
+	f, err := Column(madeUp(fiveRocks).State, 0)
+	if err != nil {
+		t.Fatal(err)
+	}
+	var buf sfnt.Buffer
+	chars := drawn(f).runes()
+	for _, r := range chars {
+		i, err := part.GlyphIndex(&buf, r)
+		if err != nil || i == 0 {
+			t.Errorf("no glyph for %q: %v", r, err)
+			continue
+		}
+		j, _ := whole.GlyphIndex(&buf, r)
+		const em = 2048 << 6 // the font's own units
+		got, err := part.GlyphAdvance(&buf, i, em, font.HintingNone)
+		want, _ := whole.GlyphAdvance(&buf, j, em, font.HintingNone)
+		if err != nil || got != want {
+			t.Errorf("%q is %v wide, want %v (%v)", r, got, want, err)
+		}
+		ours, err := part.LoadGlyph(&buf, i, em, nil)
+		shape := slices.Clone(ours)
+		theirs, _ := whole.LoadGlyph(&buf, j, em, nil)
+		if err != nil || !slices.Equal(shape, theirs) {
+			t.Errorf("%q has another shape (%v)", r, err)
+		}
+	}
+	if len(chars) < 30 {
+		t.Errorf("only %d letters", len(chars))
+	}
+	for _, table := range []string{"OS/2", "cmap", "glyf", "head", "hhea", "hmtx", "loca", "maxp", "name", "post"} {
+		if !bytes.Contains(b[:12+16*int(b[5])], []byte(table)) {
+			t.Errorf("no table %s", table)
 		}
 	}
 }

@@ -51,7 +51,7 @@ func Fates(res *race.Result, width vg.Length) (Figure, error) {
 	}
 	f.headline = headline(&res.Verdict, f.window)
 	f.x = linear(0, f.lastTime())
-	f.buoyant = res.Drip != nil && res.Drip.Outcome == "buoyant"
+	f.silence = silence(res.Drip)
 	return Figure{Name: "fates", Caption: f.caption(res.Verdict.Sentence), Width: width, Height: height, draw: f.draw}, nil
 }
 
@@ -61,7 +61,7 @@ type fatesFigure struct {
 	window, age float64 // age of time zero, Ma; NaN where not given
 	tip         float64 // descent that counts as a drip
 	headline    string
-	buoyant     bool
+	silence     string // why there is no drip to draw; empty where there is one
 	excision    *excision.Result
 	time        []float64
 	column, arc []float64 // root thickness
@@ -141,51 +141,6 @@ func (f *fatesFigure) lastTime() float64 {
 	return 1.06 * last
 }
 
-// headline is the verdict in a few words.
-func headline(v *race.Verdict, window float64) string {
-	at := ""
-	if !math.IsInf(v.Time, 0) && !math.IsNaN(v.Time) && v.Time > 0 {
-		at = ", at " + span(v.Time)
-	}
-	switch v.Outcome {
-	case "dripped":
-		return "The root drips first" + at
-	case "excised":
-		return "The root is cut out first" + at
-	case "both":
-		return "Drip and shear zones both take the root" + at
-	case "preserved":
-		return "The root is still there after " + number(window, 3) + " Myr"
-	}
-	return ""
-}
-
-func (f fatesFigure) caption(sentence string) string {
-	var s string
-	switch {
-	case f.drip == nil:
-		s = "The root's thickness against time where shear zones cut it out."
-	case f.excision == nil:
-		s = "Amplitude of the undulation on the root's base against time."
-	default:
-		s = "The root's thickness where shear zones cut it out (a) and the amplitude of the undulation on its base (b) against time."
-	}
-	if f.arc != nil && f.excision != nil {
-		s += " Solid: the column that the zones cross; dashed: mean over the arc."
-	}
-	if f.hasBand() {
-		s += fmt.Sprintf(" Grey band: drip times for an undulation three times as high (%s) and a third as high (%s).",
-			plain(span(f.drip.TimeLow)), plain(span(f.drip.TimeHigh)))
-	}
-	if f.buoyant {
-		s += " The root is buoyant and does not drip."
-	}
-	if sentence != "" {
-		s += " " + sentence
-	}
-	return s
-}
-
 func (f fatesFigure) hasBand() bool {
 	return f.drip != nil && f.drip.TimeLow > 0 && f.drip.TimeHigh > f.drip.TimeLow && !math.IsInf(f.drip.TimeLow, 1)
 }
@@ -199,12 +154,14 @@ func (f fatesFigure) draw(s *sheet) {
 	if f.drip != nil {
 		parts = append(parts, f.amplitudes())
 	}
-	top := s.Max.Y - 4
+	top, head := s.Max.Y-4, func(vg.Length) {}
 	if f.headline != "" {
-		const left, right = 36, 6
+		const left, right = 40, 6 // the axes begin at about left
 		txt := wrap(f.headline, letterSize, s.Max.X-s.Min.X-left-right, 2)
 		_, up, _ := extent(txt, letterSize)
-		s.text(vg.Point{X: s.Min.X + left, Y: top}, txt, textStyle{size: letterSize, y: text.YTop})
+		head = func(start vg.Length) {
+			s.text(vg.Point{X: min(start, s.Min.X+left), Y: s.Max.Y - 4}, txt, textStyle{size: letterSize, y: text.YTop})
+		}
 		top -= up + 6
 	}
 	if !math.IsNaN(f.age) {
@@ -216,9 +173,12 @@ func (f fatesFigure) draw(s *sheet) {
 			if f.window > 0 {
 				p.vline(f.window, stroke(vermillion, medium, dashed))
 			}
+			if f.drips() {
+				p.vline(f.drip.Time/myr, stroke(blue, medium, solid))
+			}
 		}
 	}
-	s.stack(parts, f.x, s.Min.Y+xAxisHeight(1)+2, top, "Time (Myr)", func(p *panel) []tick { return linearTicks(p.x, p.xFits) })
+	head(s.stack(parts, f.x, s.Min.Y+xAxisHeight(1)+2, top, "Time (Myr)", func(p *panel) []tick { return linearTicks(p.x, p.xFits) }))
 }
 
 // ages are round ages at their times.

@@ -33,6 +33,12 @@ func (f fatesFigure) thickness() part {
 			f.excisionLabel(p)
 			f.windowLabel(p)
 			f.lineLabels(p, arcLines)
+			switch {
+			case f.drips():
+				p.place(blue, p.box, atFoot(p, f.drip.Time/myr), "drips")
+			case f.silence != "":
+				p.place(black, p.box, corner(p, true), f.silence, strings.Replace(f.silence, ": ", ":\n", 1), strings.NewReplacer(": ", ":\n", " too long", "\ntoo long").Replace(f.silence))
+			}
 		}}
 }
 
@@ -42,7 +48,7 @@ func (f fatesFigure) lineLabels(p *panel, arcLines int) {
 		return
 	}
 	p.place(blue, p.box, beside(p.lines[arcLines-1], true), "arc mean")
-	p.place(black, p.box, beside(p.lines[arcLines], false), "column crossed by the zones", "column")
+	p.place(black, p.box, beside(p.lines[arcLines], false), "column crossed by the zones", "column crossed\nby the zones", "column")
 }
 
 // beside are places above or below a line, from its middle outwards.
@@ -99,6 +105,18 @@ func excisionTime(e *excision.Result) float64 {
 	return e.Time
 }
 
+// atFoot are places at the foot of a vertical line at x, close to it before far from it.
+func atFoot(p *panel, x float64) []spot {
+	var out []spot
+	for _, up := range []vg.Length{4, 14, 24, 34} {
+		for _, d := range []vg.Length{2, 4, 7} {
+			at := vg.Point{X: p.atX(x), Y: p.box.Min.Y + up}
+			out = append(out, spot{at.Add(vg.Point{X: d}), text.XLeft, text.YBottom}, spot{at.Sub(vg.Point{X: d}), text.XRight, text.YBottom})
+		}
+	}
+	return out
+}
+
 // corner is the place for what lies beyond the time axis.
 func corner(p *panel, bottom bool) []spot {
 	out := []spot{{vg.Point{X: p.box.Max.X - 4, Y: p.box.Min.Y + 5}, text.XRight, text.YBottom},
@@ -151,23 +169,28 @@ func (f fatesFigure) amplitudes() part {
 // dripLabels marks the drip, what counts as one, and the band's ends.
 func (f fatesFigure) dripLabels(p *panel) {
 	t := f.drip.Time / myr
-	happens := f.drip.Outcome == "drips" && !math.IsInf(t, 1) && p.x.has(t)
-	if happens {
-		p.vline(t, stroke(blue, medium, solid))
+	if f.drips() {
 		last := f.amplitude[len(f.amplitude)-1]
 		if t <= f.dripTime[len(f.dripTime)-1]*(1+1e-6) {
 			last = interpolate(f.dripTime, f.amplitude, t)
 		}
 		at := p.pt(t, last)
 		p.dot(at, 2, vermillion)
-		p.place(black, p.box, append([]spot{{at.Add(vg.Point{X: 4, Y: -5}), text.XLeft, text.YTop}}, around(at, 6)...),
+		p.place(blue, p.box, append([]spot{{at.Add(vg.Point{X: 4, Y: -5}), text.XLeft, text.YTop}}, around(at, 6)...),
 			"drips at "+number(t, 3)+" Myr", "drips at\n"+number(t, 3)+" Myr")
 	} else {
-		words := "no drip within the window"
-		if !math.IsInf(t, 1) {
-			words = "would drip at " + number(t, 3) + " Myr"
+		words := []string{"no drip within the window", "no drip within\nthe window"}
+		switch at := "would drip at " + number(t, 3) + " Myr"; {
+		case !p.x.has(t) && !math.IsInf(t, 1):
+			words = []string{at + ", far beyond the time shown", at + ",\nbeyond the time shown", at}
+			if t < 10*p.x.hi {
+				words[0] = at + ", beyond the time shown"
+			}
+		case !math.IsInf(t, 1):
+			words = []string{at, "would drip at\n" + number(t, 3) + " Myr"}
 		}
-		p.place(black, p.box, corner(p, true), words, strings.Replace(words, " within", "\nwithin", 1))
+		middle := vg.Point{X: (p.box.Min.X + p.box.Max.X) / 2, Y: (p.box.Min.Y + p.box.Max.Y) / 2}
+		p.place(black, p.box, append([]spot{{middle, text.XCenter, text.YCenter}}, corner(p, true)...), words...)
 	}
 	if f.tip > 0 && p.y.has(f.tip) {
 		var spots []spot
@@ -181,10 +204,9 @@ func (f fatesFigure) dripLabels(p *panel) {
 		for _, b := range []struct {
 			t    float64
 			word string
-		}{{f.drip.TimeLow / myr, "× 3"}, {f.drip.TimeHigh / myr, "÷ 3"}} {
+		}{{f.drip.TimeLow / myr, "undulation × 3"}, {f.drip.TimeHigh / myr, "undulation ÷ 3"}} {
 			if p.x.has(b.t) {
-				at := vg.Point{X: p.atX(b.t), Y: p.box.Min.Y + 4}
-				p.place(darkGrey, p.box, []spot{{at.Add(vg.Point{X: 2}), text.XLeft, text.YBottom}, {at.Sub(vg.Point{X: 2}), text.XRight, text.YBottom}}, b.word)
+				p.place(darkGrey, p.box, atFoot(p, b.t), b.word, strings.Replace(b.word, " ", "\n", 1))
 			}
 		}
 	}

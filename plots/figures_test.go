@@ -66,6 +66,35 @@ func TestColumnData(t *testing.T) {
 	}
 }
 
+// TestRootOfSeveralLayers asserts that the whole root is tinted, and filled where it is
+// denser than the rock below the root.
+func TestRootOfSeveralLayers(t *testing.T) {
+	rocks := slices.Clone(fiveRocks)
+	rocks[2].rho, rocks[2].root = 3400, true // above garnet pyroxenite of 3450, also root
+	f, err := Column(madeUp(rocks).State, 0)
+	if err != nil {
+		t.Fatal(err)
+	}
+	s := checkFigure(t, f)
+	for _, l := range []string{"+90", "+140"} { // 3360 and 3410 kg/m³ at their bases, 3270 below
+		if !s.says(l + " kg/m³") {
+			t.Errorf("no %q", l)
+		}
+	}
+	if !strings.Contains(f.Caption, "of the root, than the rock below the root") {
+		t.Errorf("caption: %s", f.Caption)
+	}
+	layers, err := newStrata(madeUp(rocks).State.Column)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for i, l := range layers.all {
+		if root := i == 2 || i == 3; (l.fill(i) == rootTint) != root {
+			t.Errorf("%s: filled with %v", l.name, l.fill(i))
+		}
+	}
+}
+
 // TestColumnWithoutTemperature asserts two panels.
 func TestColumnWithoutTemperature(t *testing.T) {
 	_, s := figure(t, "column", func(r *race.Result) { r.State.HasTemperature = false })
@@ -88,7 +117,7 @@ func TestSpectrumData(t *testing.T) {
 		t.Errorf("drip times %v", d.y)
 	}
 	for _, l := range []string{"Growth rate (1/Myr)", "e-folding time (Myr)", "Drip time (Myr)", "Wavelength (km)",
-		"86 km, 7.87 Myr", "86 km, 10.6 Myr", "window, 15 Myr", "undulation × 3", "÷ 3", "no drip"} {
+		"86 km, 7.87 Myr", "86 km, 10.6 Myr", "window, 15 Myr", "undulation × 3", "undulation ÷ 3", "no drip", "wider than\nthe arc"} {
 		if !s.has(l) {
 			t.Errorf("no %q", l)
 		}
@@ -131,7 +160,7 @@ func TestModeData(t *testing.T) {
 	if !near(sum, 100) {
 		t.Errorf("the shares sum to %g %%", sum)
 	}
-	for _, l := range []string{"vertical", "horizontal", "34 %"} {
+	for _, l := range []string{"vertical", "horizontal", "34 %", "Wavelength 86 km, e-folding time 7.87 Myr"} {
 		if !s.has(l) {
 			t.Errorf("no %q", l)
 		}
@@ -149,7 +178,7 @@ func TestFatesData(t *testing.T) {
 		t.Errorf("amplitude %v", a.y)
 	}
 	for _, l := range []string{"Age (Ma)", "Time (Myr)", "Root thickness (km)", "Undulation amplitude (km)", "The root drips first, at 10.6 Myr",
-		"drips at 10.6 Myr", "window ends", "arc mean", "column crossed by the zones", "112"} {
+		"drips at 10.6 Myr", "window ends", "arc mean", "column crossed\nby the zones", "112", "drips", "undulation\n× 3", "undulation ÷ 3"} {
 		if !s.has(l) {
 			t.Errorf("no %q", l)
 		}

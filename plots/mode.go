@@ -37,6 +37,7 @@ func Mode(col *column.Column, m *growth.Mode, width vg.Length) (Figure, error) {
 		finite("depth", m.Depth...), finite("vertical velocity", m.W...), finite("horizontal velocity", m.U...),
 		finite("displacement", m.Displacement...), finite("dissipation share", m.DissipationShare...),
 		finite("wavelength and growth rate", m.Wavelength, m.Growth),
+		downward(m.Depth),
 	} {
 		if e != nil {
 			return Figure{}, e
@@ -44,9 +45,7 @@ func Mode(col *column.Column, m *growth.Mode, width vg.Length) (Figure, error) {
 	}
 	f := modeFigure{layers: layers, mode: m, depth: divided(m.Depth, km), share: divided(m.DissipationShare, 0.01)}
 	f.w, f.u, f.displacement = f.normalised()
-	order := sortedBy(f.depth)
-	f.depth, f.w, f.u = picked(f.depth, order), picked(f.w, order), picked(f.u, order)
-	return Figure{Name: "mode", Caption: f.caption(), Width: width, Height: 95 * vg.Millimeter, draw: f.draw}, nil
+	return Figure{Name: "mode", Caption: f.caption(), Width: width, Height: 100 * vg.Millimeter, draw: f.draw}, nil
 }
 
 type modeFigure struct {
@@ -79,11 +78,19 @@ func (f modeFigure) normalised() (w, u, d []float64) {
 	return divided(f.mode.W, speed), divided(f.mode.U, speed), divided(f.mode.Displacement, shift)
 }
 
-func (f modeFigure) caption() string {
-	s := fmt.Sprintf("The mode at a wavelength of %s km", plain(number(f.mode.Wavelength/km, 3)))
-	if f.mode.Growth > 0 {
-		s += fmt.Sprintf(", e-folding time %s", plain(span(1/f.mode.Growth)))
+// pace says how fast the mode grows or decays.
+func (f modeFigure) pace() string {
+	switch q := f.mode.Growth; {
+	case q > 0:
+		return "e-folding time " + span(1/q)
+	case q < 0:
+		return "decays by 1/e in " + span(-1/q)
 	}
+	return "neither grows nor decays"
+}
+
+func (f modeFigure) caption() string {
+	s := fmt.Sprintf("The mode at a wavelength of %s km, %s", plain(number(f.mode.Wavelength/km, 3)), plain(f.pace()))
 	s += ": velocity (a) and displacement of the interfaces (b), the largest set to 1, downward positive; " +
 		"share of the dissipation in each layer (c), which says what resists."
 	if last := f.share[len(f.share)-1]; !f.layers.all[len(f.layers.all)-1].below && last >= 0.5 {
@@ -95,7 +102,7 @@ func (f modeFigure) caption() string {
 // draw lays out depth axis, names and three panels.
 func (f modeFigure) draw(s *sheet) {
 	const gap = 5
-	box := vg.Rectangle{Min: vg.Point{Y: s.Min.Y + xAxisHeight(2) + 2}, Max: vg.Point{Y: s.Max.Y - 14}}
+	box := vg.Rectangle{Min: vg.Point{Y: s.Min.Y + xAxisHeight(2) + 2}, Max: vg.Point{Y: s.Max.Y - 27}}
 	names := &panel{sheet: s, box: box, x: linear(0, 1), y: f.layers.depth()}
 	depths := linearTicks(names.y, names.yFits)
 	names.box.Min.X = s.Min.X + yAxisWidth(depths) + 2
@@ -103,6 +110,9 @@ func (f modeFigure) draw(s *sheet) {
 	f.layers.strip(names)
 	names.frame()
 	names.vertical("Depth (km)", depths, false)
+
+	head := "Wavelength " + number(f.mode.Wavelength/km, 3) + " km, " + f.pace()
+	s.text(vg.Point{X: names.box.Min.X, Y: s.Max.Y - 4}, head, textStyle{size: letterSize, y: text.YTop})
 
 	x := names.box.Max.X
 	room := s.Max.X - 5 - x - 2*gap

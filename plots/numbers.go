@@ -87,3 +87,13 @@ func divided(values []float64, unit float64) []float64 {
 	}
 	return out
 }
+
+// downward returns an error where depth does not run from the top down.
+func downward(depth []float64) error {
+	for i := 1; i < len(depth); i++ {
+		if depth[i] < depth[i-1] {
+			return fmt.Errorf("plots: depth of a mode: %g m stands after %g m; needs an order from the top down", depth[i], depth[i-1])
+		}
+	}
+	return nil
+}

@@ -39,6 +39,8 @@ var oddCases = []struct {
 	{"as it should be", fiveRocks, func(*race.Result) {}, "column spectrum mode fates"},
 	{"one layer", many(1, 30), func(*race.Result) {}, "column spectrum mode fates"},
 	{"sixty layers", many(60, 120), func(*race.Result) {}, "column spectrum mode fates"},
+	{"root of two layers", []rock{fiveRocks[0], fiveRocks[1], {"mafic granulite", 18, 3400, 21.3, 20.2, true}, fiveRocks[3], fiveRocks[4]},
+		func(*race.Result) {}, "column spectrum mode fates"},
 	{"deep mantle", []rock{fiveRocks[0], fiveRocks[1], fiveRocks[2], fiveRocks[3], {"peridotite", 300, 3270, 21, 20, false}},
 		func(*race.Result) {}, "column spectrum mode fates"},
 	{"long names", []rock{{"a very long name of a batholith that nobody would ever want to print", 3, 2700, 23, 22, false},

@@ -16,15 +16,6 @@ func sortedBy(xs []float64) []int {
 	return order
 }
 
-// picked returns the values in the given order.
-func picked(values []float64, order []int) []float64 {
-	out := make([]float64, len(order))
-	for i, j := range order {
-		out[i] = values[j]
-	}
-	return out
-}
-
 // smooth draws a smooth curve through points by increasing x: a cubic between
 // neighbours with the slopes of the parabola through three. The curve may break its
 // slope where an x stands twice, as at a contact.

@@ -5,18 +5,35 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 
 	"gonum.org/v1/plot/text"
 	"gonum.org/v1/plot/vg"
 
 	"keelfall/solver/drip"
 	"keelfall/solver/growth"
+	"keelfall/solver/race"
 )
 
 // Setting is what growth and drip times are held against.
 type Setting struct {
-	ArcWidth float64 // m; 0 where not given
-	Window   float64 // s; 0 where not given
+	ArcWidth  float64 // m; 0 where not given: longer undulations do not fit across the arc
+	ArcLength float64 // m; 0 where not given: used in place of the width where Strike is set
+	Strike    bool    // the undulation varies along strike
+	Window    float64 // s; 0 where not given
+}
+
+// SettingOf is what an experiment holds growth and drip times against.
+func SettingOf(p *race.Problem) Setting {
+	return Setting{ArcWidth: p.ArcWidth, ArcLength: p.ArcLength, Strike: p.Strain.Wavevector == race.AlongStrike, Window: p.Drip.Window}
+}
+
+// limit is the longest wavelength in force, in m, and what longer ones are in words.
+func (s Setting) limit() (most float64, beyond, is string) {
+	if s.Strike {
+		return s.ArcLength, "longer than the arc", "arc length"
+	}
+	return s.ArcWidth, "wider than the arc", "arc width"
 }
 
 // Spectrum draws growth rate and e-folding time against wavelength and, below, drip
@@ -27,8 +44,10 @@ func Spectrum(sp *growth.Spectrum, dr *drip.Result, against Setting, width vg.Le
 	if err != nil {
 		return Figure{}, err
 	}
-	f := spectrumFigure{arc: against.ArcWidth / km, window: against.Window / myr}
-	if err := finite("arc width and window", f.arc, f.window); err != nil {
+	f := spectrumFigure{window: against.Window / myr}
+	f.arc, f.beyond, f.limitIs = against.limit()
+	f.arc /= km
+	if err := finite("arc and window", f.arc, f.window); err != nil {
 		return Figure{}, err
 	}
 	if sp != nil {
@@ -60,6 +79,7 @@ func Spectrum(sp *growth.Spectrum, dr *drip.Result, against Setting, width vg.Le
 type spectrumFigure struct {
 	x                        scale
 	arc, window              float64
+	beyond, limitIs          string // words for wavelengths above arc, and for arc itself
 	wavelength, rate         []float64
 	peaks                    []growth.Peak
 	dripWavelength, dripTime []float64
@@ -146,13 +166,16 @@ func (f spectrumFigure) caption() string {
 		s = "Growth rate of the fastest mode (a) and drip time (b) against wavelength"
 	}
 	if f.arc > 0 {
-		s += fmt.Sprintf("; grey: wider than the arc (%s km)", plain(number(f.arc, 3)))
+		s += fmt.Sprintf("; grey: %s (%s km)", f.beyond, plain(number(f.arc, 3)))
 	}
 	s += "."
 	if f.drip == nil {
 		return s
 	}
 	if len(f.dripWavelength) == 0 {
+		if _, hi, _ := bounds(f.rate); hi > 0 {
+			return s + " No wavelength drips in the time looked ahead: growth is too slow."
+		}
 		return s + " Nothing drips at any wavelength."
 	}
 	if f.low != nil {
@@ -193,11 +216,11 @@ func (f spectrumFigure) draw(s *sheet) {
 	s.stack(parts, f.x, s.Min.Y+xAxisHeight(1)+2, s.Max.Y-6, "Wavelength (km)", func(p *panel) []tick { return logTicks(p.x, true, p.xFits) })
 }
 
-// arcLabel names the arc's width.
+// arcLabel names the limit that the arc sets.
 func (f spectrumFigure) arcLabel(p *panel) {
 	if f.arc > f.x.lo && f.arc < f.x.hi {
 		at := vg.Point{X: p.atX(f.arc), Y: p.box.Max.Y - 3}
 		p.place(darkGrey, p.box, []spot{{at.Add(vg.Point{X: 3}), text.XLeft, text.YTop}, {at.Sub(vg.Point{X: 3}), text.XRight, text.YTop}},
-			"wider than the arc", "wider than\nthe arc", "arc width")
+			f.beyond, strings.Replace(f.beyond, " the", "\nthe", 1), f.limitIs)
 	}
 }

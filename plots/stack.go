@@ -17,7 +17,8 @@ type part struct {
 
 // stack draws parts between heights bottom and top of the page; margins are as wide as
 // the axes need. across titles the horizontal axis, whose ticks are given for a panel.
-func (s *sheet) stack(parts []part, x scale, bottom, top vg.Length, across string, ticks func(p *panel) []tick) {
+// It returns where the panels begin.
+func (s *sheet) stack(parts []part, x scale, bottom, top vg.Length, across string, ticks func(p *panel) []tick) (start vg.Length) {
 	const gap, edge = 10, 2
 	left, right := vg.Length(0), vg.Length(6)
 	if len(parts) > 1 {
@@ -67,6 +68,7 @@ func (s *sheet) stack(parts []part, x scale, bottom, top vg.Length, across strin
 		}
 		part.labels(p)
 	}
+	return s.Min.X + left
 }
 
 // unlabelled keeps the ticks and drops their labels.

@@ -46,13 +46,13 @@ var fields = []field{
 	{"water_state", false, text(func(l *Law) *string { return &l.WaterState })},
 	{"mechanism", false, text(func(l *Law) *string { return &l.Mechanism })},
 	{"test", true, func(l *Law, s string) (err error) { l.Test, err = ParseTest(s); return }},
-	{"prefactor_MPa_um", true, number(func(l *Law) *float64 { return &l.LaboratoryA }, 1)},
-	{"stress_exponent", true, number(func(l *Law) *float64 { return &l.N }, 1)},
-	{"grain_exponent", false, number(func(l *Law) *float64 { return &l.M }, 1)},
-	{"water_exponent", false, number(func(l *Law) *float64 { return &l.R }, 1)},
+	{"prefactor_MPa_um", true, number(func(l *Law) *float64 { return &l.LaboratoryA }, 1, 1)},
+	{"stress_exponent", true, number(func(l *Law) *float64 { return &l.N }, 1, 1)},
+	{"grain_exponent", false, number(func(l *Law) *float64 { return &l.M }, 1, 1)},
+	{"water_exponent", false, number(func(l *Law) *float64 { return &l.R }, 1, 1)},
 	{"water_measure", false, func(l *Law, s string) (err error) { l.Water, err = parseMeasure(s); return }},
-	{"activation_energy_kJ_mol", true, number(func(l *Law) *float64 { return &l.E }, 1e3)},
-	{"activation_volume_cm3_mol", false, number(func(l *Law) *float64 { return &l.V }, 1e-6)},
+	{"activation_energy_kJ_mol", true, number(func(l *Law) *float64 { return &l.E }, 1e3, 1)},
+	{"activation_volume_cm3_mol", false, number(func(l *Law) *float64 { return &l.V }, 1, 1e6)},
 	{"melt_exponent", false, text(func(l *Law) *string { return &l.Melt })},
 	{"uncertainty", false, text(func(l *Law) *string { return &l.Uncertainty })},
 	{"status_test", false, text(func(l *Law) *string { return &l.Status.Test })},
@@ -72,7 +72,9 @@ func text(at func(*Law) *string) func(*Law, string) error {
 	return func(l *Law, s string) error { *at(l) = s; return nil }
 }
 
-func number(at func(*Law) *float64, unit float64) func(*Law, string) error {
+// number reads a number in a unit of so many to one of SI: a division by a power of
+// ten is exact to the last digit, a product with 1e-6 is not.
+func number(at func(*Law) *float64, times, over float64) func(*Law, string) error {
 	return func(l *Law, s string) error {
 		if s == "" {
 			return nil
@@ -86,7 +88,7 @@ func number(at func(*Law) *float64, unit float64) func(*Law, string) error {
 		if isPower {
 			x = math.Pow(10, x)
 		}
-		*at(l) = x * unit
+		*at(l) = x * times / over
 		return nil
 	}
 }

@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"encoding/csv"
 	"errors"
+	"fmt"
 	"math"
 	"os"
 	"slices"
@@ -121,6 +122,37 @@ func TestCatalogue(t *testing.T) {
 	laws[0].Name = "changed"
 	if rheology.Laws()[0].Name == "changed" {
 		t.Error("Laws hands out its own memory")
+	}
+}
+
+// TestVolumesPrintAsPublished: V in cm³/mol prints as the number in the table.
+func TestVolumesPrintAsPublished(t *testing.T) {
+	b, err := os.ReadFile("laws.csv")
+	if err != nil {
+		t.Fatal(err)
+	}
+	rows, err := csv.NewReader(bytes.NewReader(b)).ReadAll()
+	if err != nil {
+		t.Fatal(err)
+	}
+	name, volume := slices.Index(rows[0], "name"), slices.Index(rows[0], "activation_volume_cm3_mol")
+	checked := 0
+	for _, row := range rows[1:] {
+		if row[volume] == "" {
+			continue
+		}
+		if l := find(t, row[name]); fmt.Sprintf("%g", l.V*1e6) != row[volume] {
+			t.Errorf("%s: V = %g cm³/mol, published %s", l.Name, l.V*1e6, row[volume])
+		}
+		checked++
+	}
+	if checked < 10 {
+		t.Errorf("only %d volumes", checked)
+	}
+	// and a number of the kind that a product with 1e-6 spoils
+	laws, err := rheology.ReadLaws(strings.NewReader(strings.TrimSpace(head) + ",activation_volume_cm3_mol\na,invariant,1,3,100,0,none,27.2\n"))
+	if err != nil || fmt.Sprintf("%g", laws[0].V*1e6) != "27.2" {
+		t.Errorf("%+v, %v", laws, err)
 	}
 }
 

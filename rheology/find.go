@@ -7,7 +7,10 @@ import (
 	"strings"
 )
 
-// fold makes names comparable: lower case, single spaces.
+// NameKey returns the form in which two names of laws are the same name: lower case,
+// single spaces.
+func NameKey(name string) string { return fold(name) }
+
 func fold(s string) string { return strings.ToLower(strings.Join(strings.Fields(s), " ")) }
 
 // UnknownLawError says that no law has the name, and which come nearest.

@@ -7,7 +7,9 @@ import (
 	"os"
 	"path/filepath"
 	"strings"
+	"sync"
 	"testing"
+	"time"
 
 	"github.com/rogpeppe/go-internal/testscript"
 )
@@ -58,6 +60,116 @@ func TestREADME(t *testing.T) {
 	if ran < 8 {
 		t.Fatalf("README shows %d keelfall commands; it should show at least 8", ran)
 	}
+}
+
+// The experiment that README.md shows runs, and is judged.
+func TestREADMEExperiment(t *testing.T) {
+	b, err := os.ReadFile("../../README.md")
+	if err != nil {
+		t.Fatal(err)
+	}
+	_, rest, ok := strings.Cut(string(b), "```yaml\n")
+	text, _, closed := strings.Cut(rest, "```")
+	if !ok || !closed {
+		t.Fatal("README shows no experiment")
+	}
+	t.Setenv("XDG_CONFIG_HOME", t.TempDir())
+	t.Chdir(t.TempDir())
+	if err := os.WriteFile("shown.yaml", []byte(text), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	var out, errs bytes.Buffer
+	if status := Main(context.Background(), []string{"run", "shown.yaml"}, Streams{&out, &errs}); status != exitDone {
+		t.Fatalf("exit status %d: %s", status, errs.String())
+	}
+	if !strings.Contains(out.String(), "ANSWER    The root ") {
+		t.Errorf("no verdict:\n%s", out.String())
+	}
+}
+
+// A place that cannot be written to is known before anything is computed, and an
+// interrupted run leaves no folder behind, not even one above its own.
+func TestPlaceComesFirst(t *testing.T) {
+	t.Setenv("XDG_CONFIG_HOME", t.TempDir())
+	t.Chdir(t.TempDir())
+	long := strings.Repeat("x", 300) // longer than a name may be
+	var out, errs bytes.Buffer
+	start := time.Now()
+	if status := Main(context.Background(), []string{"run", "--out", long}, Streams{&out, &errs}); status != exitFailed {
+		t.Errorf("exit status %d, want %d: %s", status, exitFailed, errs.String())
+	}
+	if out.Len() > 0 || strings.Contains(errs.String(), ".part-") || time.Since(start) > 200*time.Millisecond {
+		t.Errorf("after %v: %s", time.Since(start), errs.String())
+	}
+	ctx, cancel := context.WithCancel(context.Background())
+	cancel()
+	if status := Main(ctx, []string{"run", "--out", "a/b/c"}, Streams{&out, &errs}); status != exitInterrupted {
+		t.Errorf("exit status %d, want %d", status, exitInterrupted)
+	}
+	if left, err := os.ReadDir("."); err != nil || len(left) > 0 {
+		t.Errorf("left behind: %v (%v)", left, err)
+	}
+}
+
+// A settings file that nobody named and that cannot be read is warned about; one that
+// was named is an error.
+func TestUnreadableSettings(t *testing.T) {
+	dir := t.TempDir()
+	t.Setenv("XDG_CONFIG_HOME", dir)
+	t.Chdir(t.TempDir())
+	file := filepath.Join(dir, "keelfall", "settings.yaml")
+	if err := os.MkdirAll(file, 0o755); err != nil { // a folder where a file should be
+		t.Fatal(err)
+	}
+	var text, out, errs bytes.Buffer
+	Main(context.Background(), []string{"example"}, Streams{&text, &errs})
+	if err := os.WriteFile("mine.yaml", text.Bytes(), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	if status := Main(context.Background(), []string{"check", "mine.yaml"}, Streams{&out, &errs}); status != exitDone || !strings.Contains(errs.String(), "warning: settings are left out") {
+		t.Errorf("exit status %d: %s", status, errs.String())
+	}
+	if status := Main(context.Background(), []string{"check", "mine.yaml", "--settings", file}, Streams{&out, &errs}); status != exitInput {
+		t.Errorf("named: exit status %d: %s", status, errs.String())
+	}
+}
+
+// Progress is said once a command has taken a while, not before and not after.
+func TestProgress(t *testing.T) {
+	var w lockedBuffer
+	quick := newProgress(&w, time.Hour)
+	quick.say("something quick")
+	quick.stop()
+	slow := newProgress(&w, time.Millisecond)
+	slow.say("one thing")
+	for range 500 {
+		if time.Sleep(2 * time.Millisecond); w.String() != "" {
+			break
+		}
+	}
+	slow.say("another")
+	slow.stop()
+	slow.say("nothing more")
+	if got, want := w.String(), "computing one thing\ncomputing another\n"; got != want {
+		t.Errorf("%q, want %q", got, want)
+	}
+}
+
+type lockedBuffer struct {
+	mu sync.Mutex
+	b  bytes.Buffer
+}
+
+func (l *lockedBuffer) Write(p []byte) (int, error) {
+	l.mu.Lock()
+	defer l.mu.Unlock()
+	return l.b.Write(p)
+}
+
+func (l *lockedBuffer) String() string {
+	l.mu.Lock()
+	defer l.mu.Unlock()
+	return l.b.String()
 }
 
 // split breaks a command line at spaces, quotes kept together.

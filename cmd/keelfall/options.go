@@ -4,17 +4,16 @@ import (
 	"bytes"
 	"errors"
 	"fmt"
+	"io/fs"
 	"os"
 	"path/filepath"
 	"slices"
 	"strings"
 
 	"github.com/spf13/cobra"
-	"gonum.org/v1/plot/vg"
 
 	"keelfall/cmd/internal/report"
 	"keelfall/configs"
-	"keelfall/plots"
 	"keelfall/rheology"
 	"keelfall/solver/race"
 )
@@ -54,17 +53,11 @@ func (o *options) load() (*configs.Experiment, *race.Problem, error) {
 	if !slices.Contains([]string{"text", "json", "csv"}, o.Format) {
 		return nil, nil, usageError{fmt.Errorf("--format %s is not known; needs text, json or csv", o.Format)}
 	}
-	if w := vg.Length(o.Width) * vg.Millimeter; w < 80*vg.Millimeter || w > 400*vg.Millimeter {
+	if !(o.Width >= 80 && o.Width <= 400) {
 		return nil, nil, usageError{fmt.Errorf("--width %g; needs 80 to 400 mm", o.Width)}
 	}
-	var err error
-	if o.Settings, err = configs.LoadSettings(o.settingsFile, o.cmd.Flags()); err != nil {
+	if err := o.settings(); err != nil {
 		return nil, nil, usageError{err}
-	}
-	if out := o.Settings.Out; out != "" {
-		if err := report.CheckFolder(out); err != nil { // before hours are spent
-			return nil, nil, err
-		}
 	}
 	reader := configs.Reader{}
 	for _, path := range o.Settings.Catalogues {
@@ -74,23 +67,52 @@ func (o *options) load() (*configs.Experiment, *race.Problem, error) {
 		}
 		reader.Laws = append(reader.Laws, laws...)
 	}
-	var e *configs.Experiment
 	if o.File == "" {
 		text, err := configs.Example(defaultExample)
 		if err != nil {
 			return nil, nil, err
 		}
-		e, err = reader.Read(defaultExample+".yaml", strings.NewReader(text), o.Set...)
+		e, err := reader.Read(defaultExample+".yaml", strings.NewReader(text), o.Set...)
 		if err != nil {
 			return nil, nil, inputError(err)
 		}
 		return o.problem(e)
 	}
-	e, err = reader.Open(o.File, o.Set...)
+	e, err := reader.Open(o.File, o.Set...)
 	if err != nil {
 		return nil, nil, inputError(err)
 	}
 	return o.problem(e)
+}
+
+// settings loads the settings. A file in the user's configuration folder that cannot
+// be read is warned about and left out: nobody named it.
+func (o *options) settings() error {
+	var err error
+	o.Settings, err = configs.LoadSettings(o.settingsFile, o.cmd.Flags())
+	if err == nil || o.settingsFile != "" {
+		return err
+	}
+	dir, dirErr := os.UserConfigDir()
+	if dirErr != nil {
+		return err
+	}
+	if _, readErr := os.ReadFile(filepath.Join(dir, "keelfall", "settings.yaml")); readErr == nil || errors.Is(readErr, fs.ErrNotExist) {
+		return err // it is not the file's fault, or the file is there and wrong
+	}
+	empty, tempErr := os.CreateTemp("", "keelfall-*.yaml")
+	if tempErr != nil {
+		return err
+	}
+	defer os.Remove(empty.Name())
+	_, tempErr = empty.WriteString("workers: 0\n") // the default: a file that changes nothing
+	without, again := configs.LoadSettings(empty.Name(), o.cmd.Flags())
+	if errors.Join(tempErr, empty.Close(), again) != nil {
+		return err
+	}
+	o.Settings = without
+	o.warn([]string{fmt.Sprintf("settings are left out: %v", err)})
+	return nil
 }
 
 func (o *options) problem(e *configs.Experiment) (*configs.Experiment, *race.Problem, error) {
@@ -140,79 +162,9 @@ func (o *options) print(text string, value any, table report.Table) error {
 	return err
 }
 
-// warn prints warnings to standard error, unless the text page holds them.
+// warn prints warnings to standard error.
 func (o *options) warn(warnings []string) {
 	for _, w := range warnings {
 		fmt.Fprintln(o.Err, "warning:", w)
 	}
-}
-
-// output is what a folder is filled with.
-type output struct {
-	files   map[string][]byte
-	order   []string
-	figures []plots.Figure
-}
-
-func (w *output) add(name string, b []byte) {
-	if w.files == nil {
-		w.files = map[string][]byte{}
-	}
-	w.files[name] = b
-	w.order = append(w.order, name)
-}
-
-func (w *output) json(name string, v any) error {
-	b, err := report.Encode(v)
-	w.add(name, b)
-	return err
-}
-
-// write writes the folder whole, or not at all, and says what is in it.
-func (o *options) write(place string, w *output) error {
-	f, err := report.NewFolder(place)
-	if err != nil {
-		return err
-	}
-	err = func() error {
-		for _, name := range w.order {
-			if err := f.Write(name, w.files[name]); err != nil {
-				return err
-			}
-		}
-		for _, fig := range w.figures {
-			for _, format := range o.Settings.Figures {
-				var b bytes.Buffer
-				if err := plots.Encode(&b, fig, format); err != nil {
-					return err
-				}
-				if err := f.Write(fig.Name+"."+format, b.Bytes()); err != nil {
-					return err
-				}
-			}
-		}
-		return f.Finish()
-	}()
-	if err != nil {
-		f.Abandon()
-		return fmt.Errorf("%s was not written: %w", place, err)
-	}
-	tables := 0
-	for _, n := range w.order {
-		if filepath.Ext(n) == ".csv" {
-			tables++
-		}
-	}
-	fmt.Fprintf(o.Err, "%s: %d figures (%s), %d tables, %s\n", place, len(w.figures), strings.Join(o.Settings.Figures, ", "), tables, strings.Join(others(w.order), ", "))
-	return nil
-}
-
-func others(names []string) []string {
-	var out []string
-	for _, n := range names {
-		if filepath.Ext(n) != ".csv" {
-			out = append(out, n)
-		}
-	}
-	return out
 }

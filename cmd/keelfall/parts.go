@@ -39,6 +39,16 @@ func newPartCmd(s Streams, use, short string, compute func(context.Context, *opt
 			if err != nil {
 				return err
 			}
+			var folder *report.Folder
+			if place := o.Settings.Out; place != "" {
+				if folder, err = report.NewFolder(place); err != nil { // before hours are spent
+					return err
+				}
+				defer folder.Abandon()
+			}
+			progress := newProgress(o.Err, patience)
+			defer progress.stop()
+			progress.say("the " + cmd.Name())
 			st, err := race.Prepare(p)
 			if err != nil {
 				return err
@@ -47,9 +57,12 @@ func newPartCmd(s Streams, use, short string, compute func(context.Context, *opt
 			if err != nil {
 				return err
 			}
-			if err := o.folder(r); err != nil {
-				return err
+			if folder != nil {
+				if err := o.fill(folder, r); err != nil {
+					return err
+				}
 			}
+			progress.stop()
 			o.warn(r.warnings)
 			return o.print(r.text, r.value, r.table)
 		},
@@ -58,11 +71,8 @@ func newPartCmd(s Streams, use, short string, compute func(context.Context, *opt
 	return cmd, o
 }
 
-// folder writes the part's folder where --out asks for one.
-func (o *options) folder(r *part) error {
-	if o.Settings.Out == "" {
-		return nil
-	}
+// fill writes the part's folder.
+func (o *options) fill(folder *report.Folder, r *part) error {
 	w := &output{}
 	if err := w.json(r.name+".json", r.value); err != nil {
 		return err
@@ -75,7 +85,7 @@ func (o *options) folder(r *part) error {
 		}
 		w.figures = append(w.figures, f)
 	}
-	return o.write(o.Settings.Out, w)
+	return o.write(o.Settings.Out, folder, w)
 }
 
 func newColumnCmd(s Streams) *cobra.Command {
@@ -83,7 +93,7 @@ func newColumnCmd(s Streams) *cobra.Command {
 		func(_ context.Context, _ *options, p *race.Problem, st *state.State) (*part, error) {
 			return &part{name: "column", text: report.ColumnPage(p, st), value: report.Column(st), table: report.ColumnTable(st),
 				figure:   func(w vg.Length) (plots.Figure, error) { return plots.Column(st, w) },
-				warnings: st.Warnings}, nil
+				warnings: race.Warnings(st)}, nil
 		})
 	return cmd
 }
@@ -92,17 +102,20 @@ func newSpectrumCmd(s Streams) *cobra.Command {
 	var at string
 	cmd, _ := newPartCmd(s, "spectrum FILE", "Growth rate against wavelength",
 		func(ctx context.Context, o *options, p *race.Problem, st *state.State) (*part, error) {
+			var wavelengths []float64
+			if at != "" {
+				var err error
+				if wavelengths, err = lengths(at); err != nil {
+					return nil, usageError{err}
+				}
+			}
 			sp, err := race.Spectrum(ctx, p, st)
 			if err != nil {
 				return nil, err
 			}
 			rates := sp.Rates
 			var exact []growth.Rate
-			if at != "" {
-				wavelengths, err := lengths(at)
-				if err != nil {
-					return nil, usageError{err}
-				}
+			if wavelengths != nil {
 				if exact, err = growth.Evaluate(ctx, drip.Model(st), wavelengths, growth.Options{Workers: p.Workers}); err != nil {
 					return nil, err
 				}
@@ -110,13 +123,23 @@ func newSpectrumCmd(s Streams) *cobra.Command {
 			}
 			return &part{name: "spectrum", text: report.SpectrumPage(p, st, sp, exact), value: report.Spectrum(st, sp, exact), table: report.SpectrumTable(rates),
 				figure: func(w vg.Length) (plots.Figure, error) {
-					return plots.Spectrum(sp, nil, plots.Setting{ArcWidth: p.ArcWidth, Window: p.Drip.Window}, w)
+					return plots.Spectrum(sp, nil, against(p), w)
 				},
-				warnings: st.Warnings}, nil
+				warnings: report.SpectrumWarnings(st, sp)}, nil
 		})
 	cmd.Flags().StringVar(&at, "at", "", "evaluate exactly these wavelengths: 50km,100km")
 	return cmd
 }
+
+// against is what a spectrum is drawn against: the limit on wavelength in force and
+// the window.
+func against(p *race.Problem) plots.Setting {
+	limit, _ := p.Limit()
+	return plots.Setting{ArcWidth: limit, Window: p.Drip.Window}
+}
+
+// Wavelengths that are taken, m: below, a hand sample; above, more than the Earth.
+const shortest, longest = 10, 1e8
 
 // lengths reads a list of wavelengths with units.
 func lengths(list string) ([]float64, error) {
@@ -126,8 +149,8 @@ func lengths(list string) ([]float64, error) {
 		if err != nil {
 			return nil, fmt.Errorf("--at: %w", err)
 		}
-		if !(x > 0) {
-			return nil, fmt.Errorf("--at: a wavelength of %s; must be above 0", s)
+		if !(x >= shortest && x <= longest) {
+			return nil, fmt.Errorf("--at: a wavelength of %s; must be from 10 m to 1e5 km", strings.TrimSpace(s))
 		}
 		out = append(out, x)
 	}
@@ -145,11 +168,11 @@ func newDripCmd(s Streams) *cobra.Command {
 			if r.Drip, err = race.Drip(ctx, p, st); err != nil {
 				return nil, err
 			}
-			return &part{name: "drip", text: report.DripPage(p, r), value: report.Drip(p, r.Drip), table: report.DripTable(r),
+			return &part{name: "drip", text: report.DripPage(p, r), value: report.Drip(p, st, r.Drip), table: report.DripTable(r),
 				figure: func(w vg.Length) (plots.Figure, error) {
-					return plots.Spectrum(nil, r.Drip, plots.Setting{ArcWidth: p.ArcWidth, Window: p.Drip.Window}, w)
+					return plots.Spectrum(nil, r.Drip, against(p), w)
 				},
-				warnings: append(st.Warnings, r.Drip.Warnings...)}, nil
+				warnings: report.DripWarnings(st, r.Drip)}, nil
 		})
 	return cmd
 }
@@ -162,8 +185,8 @@ func newExciseCmd(s Streams) *cobra.Command {
 			if r.Excision, err = race.Excise(p, st); err != nil {
 				return nil, err
 			}
-			out := &part{name: "excise", text: report.ExcisionPage(p, r), value: report.Excision(p, r.Excision), table: report.ExcisionTable(r),
-				warnings: append(st.Warnings, r.Excision.Warnings...)}
+			out := &part{name: "excise", text: report.ExcisionPage(p, r), value: report.Excision(p, st, r.Excision), table: report.ExcisionTable(r),
+				warnings: report.ExcisionWarnings(st, r.Excision)}
 			if len(p.Zones) > 0 {
 				out.figure = func(w vg.Length) (plots.Figure, error) { return plots.Fates(r, w) }
 			}

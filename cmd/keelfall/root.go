@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"slices"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -55,6 +56,9 @@ func Main(ctx context.Context, args []string, s Streams) int {
 	return exitFailed
 }
 
+// later are commands that are planned and not there yet.
+var later = []string{"history", "map", "threshold", "ensemble", "compare"}
+
 func newRoot(s Streams) *cobra.Command {
 	root := &cobra.Command{
 		Use:   "keelfall",
@@ -71,6 +75,9 @@ leaves out.`,
 		Args: func(cmd *cobra.Command, args []string) error {
 			if len(args) == 0 {
 				return usageError{errors.New("say what to do: keelfall run, or keelfall --help")}
+			}
+			if slices.Contains(later, args[0]) {
+				return usageError{fmt.Errorf("%s: not in this version of keelfall", args[0])}
 			}
 			msg := fmt.Sprintf("there is no command %q", args[0])
 			if near := cmd.SuggestionsFor(args[0]); len(near) > 0 {

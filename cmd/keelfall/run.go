@@ -38,14 +38,19 @@ func run(ctx context.Context, o *options) error {
 	place := o.Settings.Out
 	if place == "" {
 		place = stem(o.File)
-		if err := report.CheckFolder(place); err != nil {
-			return err
-		}
 	}
-	r, err := race.Run(ctx, p)
+	folder, err := report.NewFolder(place) // before hours are spent
 	if err != nil {
 		return err
 	}
+	defer folder.Abandon()
+	progress := newProgress(o.Err, patience)
+	defer progress.stop()
+	r, err := race.RunSaying(ctx, p, progress.say)
+	if err != nil {
+		return err
+	}
+	progress.say("the figures")
 	figures, err := plots.All(r, vg.Length(o.Width)*vg.Millimeter)
 	if err != nil {
 		return err
@@ -64,9 +69,13 @@ func run(ctx context.Context, o *options) error {
 	for _, t := range report.Tables(r) {
 		w.add(t.Name+".csv", t.Encode())
 	}
-	if err := o.write(place, w); err != nil {
+	if err := ctx.Err(); err != nil {
 		return err
 	}
+	if err := o.write(place, folder, w); err != nil {
+		return err
+	}
+	progress.stop()
 	if o.Format != "text" {
 		o.warn(r.Warnings)
 	}

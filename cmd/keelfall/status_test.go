@@ -38,6 +38,12 @@ func TestStatus(t *testing.T) {
 		{exitInput, []string{"run", "a", "b"}},
 		{exitInput, []string{"run", "--nonsense"}},
 		{exitInput, []string{"nonsense"}},
+		{exitInput, []string{"run", "good.yaml", "--set", "drip.amplitude=10km"}}, // it already is the drip
+		{exitInput, []string{"run", "good.yaml", "--width", "NaN"}},
+		{exitInput, []string{"spectrum", "good.yaml", "--at", "9m"}},
+		{exitInput, []string{"spectrum", "good.yaml", "--at", "50km,100001km"}},
+		{exitDone, []string{"spectrum", "good.yaml", "--at", "10m"}},
+		{exitInput, []string{"ensemble", "good.yaml"}},
 		{exitInput, []string{}},
 		{exitFailed, []string{"run", "good.yaml", "--out", "theirs"}},
 		{exitFailed, []string{"run", "good.yaml", "--out", "file"}},

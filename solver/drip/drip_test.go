@@ -78,12 +78,12 @@ func TestSolve(t *testing.T) {
 
 func TestOutcomes(t *testing.T) {
 	buoyant := solve(t, arc(3200), settings(), drip.Options{})
-	if buoyant.Outcome != "buoyant" || !math.IsInf(buoyant.Time, 1) || !strings.Contains(buoyant.Reason, "-70 kg/m³") {
+	if buoyant.Outcome != "buoyant" || !math.IsInf(buoyant.Time, 1) || !strings.Contains(buoyant.Reason, "70 kg/m³ lighter") {
 		t.Errorf("light root: %s, %g, %q", buoyant.Outcome, buoyant.Time, buoyant.Reason)
 	}
 	neutral := solve(t, arc(3270), settings(), drip.Options{})
-	if neutral.Outcome != "buoyant" {
-		t.Errorf("root of the density below: %s", neutral.Outcome)
+	if neutral.Outcome != "buoyant" || !strings.Contains(neutral.Reason, "as dense as") {
+		t.Errorf("root of the density below: %s, %q", neutral.Outcome, neutral.Reason)
 	}
 	short := settings()
 	short.Window = 0.1 * myr
@@ -137,6 +137,54 @@ func TestRefused(t *testing.T) {
 		spoil(&set)
 		if _, err := drip.Solve(context.Background(), s, set, drip.Options{}); err == nil {
 			t.Errorf("%s: accepted", name)
+		}
+	}
+}
+
+// stiff multiplies every viscosity of a column, and with it every time.
+func stiff(c *column.Column, factor float64) *column.Column {
+	for i := range c.Layers {
+		c.Layers[i].Viscosity.Factor = factor
+	}
+	c.Base.Viscosity.Factor = factor
+	return c
+}
+
+// How far ahead a drip is looked for does not depend on the window, and a dense root
+// is not called buoyant because it is slow. With every viscosity n times higher the
+// same drip takes n times as long (derived: Stokes flow has no other time).
+func TestSlowIsNotBuoyant(t *testing.T) {
+	first := solve(t, arc(3450), settings(), drip.Options{})
+	short := settings()
+	short.Window = 1 * myr
+	slow := solve(t, stiff(arc(3450), 1000), short, drip.Options{})
+	if slow.Outcome != "window" || math.Abs(slow.Time/first.Time/1000-1) > 1e-6 {
+		t.Errorf("1000 times as stiff: %s at %g Myr, want window at %g", slow.Outcome, slow.Time/myr, 1000*first.Time/myr)
+	}
+	frozen := solve(t, stiff(arc(3450), 1e8), short, drip.Options{})
+	if frozen.Outcome != "window" || !math.IsInf(frozen.Time, 1) || !strings.Contains(frozen.Reason, "180 kg/m³ denser") {
+		t.Errorf("1e8 times as stiff: %s at %g Myr, %q", frozen.Outcome, frozen.Time/myr, frozen.Reason)
+	}
+	// short wavelengths do not feel the root's whole thickness: none within 1 km drips in time
+	narrow := solve(t, stiff(arc(3450), 2000), short, drip.Options{Limit: 200, LimitIs: "the arc's width, 0.2 km"})
+	if narrow.Outcome != "window" || !math.IsInf(narrow.Time, 1) || !strings.Contains(narrow.Reason, "0.2 km") {
+		t.Errorf("narrow arc: %s at %g Myr, %q", narrow.Outcome, narrow.Time/myr, narrow.Reason)
+	}
+}
+
+// Rock that is not Newtonian is warned about where the drip's own strain rate is not
+// the one its viscosity is for; Newtonian rock is not.
+func TestStrainRateWarning(t *testing.T) {
+	for exponent, want := range map[float64]int{1: 0, 3: 1} {
+		c := arc(3450)
+		c.Layers[1].Viscosity.Exponent = exponent
+		s, err := state.New(c, 1e-17)
+		if err != nil {
+			t.Fatal(err)
+		}
+		r, err := drip.Solve(context.Background(), s, settings(), drip.Options{})
+		if err != nil || len(r.Warnings) != want {
+			t.Errorf("n = %g: %q, %v", exponent, r.Warnings, err)
 		}
 	}
 }

@@ -3,10 +3,17 @@
 // A zone of dip θ slips at s; layering dips δ towards the zone's dip direction. The
 // column it crosses loses s sin(θ − δ) of stratigraphic and s sin(θ − δ)/cos δ of
 // vertical thickness per time, from the rock directly above the zone; negative is
-// repetition. Heave is s cos θ, throw s sin θ. Averaged over an arc of original width
-// B the loss is that of uniform stretching by the same extension,
-// h × heave/(B + heave): a zone moves rock aside, it does not destroy it (derived;
-// structural geometry, common practice).
+// repetition. The zone lies below the layers it cuts, so the lowest of them goes
+// first; a zone that has used its layers up stops cutting the column, but slips on
+// until its interval ends. Heave is s cos θ, throw s sin θ.
+//
+// A zone moves rock aside, it does not destroy it. Averaged over an arc of original
+// width B a root layer of thickness h loses what uniform stretching by the same
+// extension would take, h × heave/(B + heave), by the heave of the zones that cut it.
+// A zone's heave counts from when it has reached the root to the end of its interval,
+// as it goes on clearing the arc after it has cut this column through; it counts as
+// negative where the zone repeats rock, which thickens by h × |heave|/(B + |heave|).
+// (Derived; structural geometry, common practice.)
 //
 // In this version slip rates are given, the column is otherwise frozen, and zones do
 // not interact except by cutting the same layers.
@@ -16,7 +23,6 @@ import (
 	"errors"
 	"fmt"
 	"math"
-	"sort"
 )
 
 // Zone is one shear zone with a given slip rate.
@@ -24,17 +30,35 @@ type Zone struct {
 	Name        string
 	Dip         float64  // rad, 0 < dip <= π/2
 	LayeringDip float64  // rad, towards the zone's dip direction
-	Cuts        []string // names of the layers it cuts out, in order
-	From, To    float64  // s, active interval
+	Cuts        []string // names of the layers it cuts out, from above downwards; the last, lowest one is cut first
+	From, To    float64  // s, active interval; To equal to the window says that no end was given
 	SlipRate    float64  // m/s, >= 0
 	Width       float64  // m, normal to the zone; 0 where not given
 }
 
-// VerticalLoss is the vertical thickness lost per slip, sin(θ − δ)/cos δ.
-func (z *Zone) VerticalLoss() float64 { return math.Sin(z.Dip-z.LayeringDip) / math.Cos(z.LayeringDip) }
+// level is a sine or cosine below which an angle counts as zero: round-off of a dip
+// of 90° or of layering parallel to the zone.
+const level = 1e-12
 
-// StratigraphicLoss is the thickness lost per slip across the layering, sin(θ − δ).
-func (z *Zone) StratigraphicLoss() float64 { return math.Sin(z.Dip - z.LayeringDip) }
+// VerticalLoss is the vertical thickness lost per slip, sin(θ − δ)/cos δ.
+func (z *Zone) VerticalLoss() float64 { return z.StratigraphicLoss() / math.Cos(z.LayeringDip) }
+
+// StratigraphicLoss is the thickness lost per slip across the layering, sin(θ − δ);
+// 0 where zone and layering are parallel.
+func (z *Zone) StratigraphicLoss() float64 { return clean(math.Sin(z.Dip - z.LayeringDip)) }
+
+// Heave is the horizontal extension per slip, cos θ; 0 for a vertical zone.
+func (z *Zone) Heave() float64 { return clean(math.Cos(z.Dip)) }
+
+// Throw is the vertical offset per slip, sin θ.
+func (z *Zone) Throw() float64 { return math.Sin(z.Dip) }
+
+func clean(x float64) float64 {
+	if math.Abs(x) < level {
+		return 0
+	}
+	return x
+}
 
 // StrainRate is the zone's second invariant s/(2b), 1/s; 0 where its width is unknown.
 func (z *Zone) StrainRate() float64 {
@@ -56,8 +80,8 @@ type Layer struct {
 type History struct {
 	Time          []float64 // s
 	RootThickness []float64 // m, in the column the zones cross
-	ArcMean       []float64 // m, averaged over the arc's original width; nil without a width
-	Slip, Heave   []float64 // m, summed over zones
+	ArcMean       []float64 // m, of the root, averaged over the arc's original width; nil without a width
+	Slip, Heave   []float64 // m, summed over zones, until their intervals end
 	Throw         []float64 // m
 	RootMassShare []float64 // share of the root's initial mass that is gone; negative where repeated
 	ArcMeanShare  []float64 // the same averaged over the arc; nil without a width
@@ -66,7 +90,7 @@ type History struct {
 // Result is the answer to: when has excision taken the asked share of the root?
 type Result struct {
 	Outcome            string  // "excised", "window" or "no zones"
-	Time               float64 // s; +Inf where it does not happen
+	Time               float64 // s; +Inf where it does not happen within the window
 	Share              float64 // the share of the root's mass asked for
 	Slip, Heave, Throw float64 // m, at Time, or at the window's end
 	ExtensionDemanded  float64 // heave over the arc's width at that moment; 0 without a width
@@ -75,7 +99,7 @@ type Result struct {
 	CutThroughHeave    float64 // m
 	ArcMeanTime        float64 // s until the arc mean has lost the share, beyond the window too; +Inf where never or no width
 	LocalBeyond        float64 // s until the column has lost the share, beyond the window too
-	PressureGap        float64 // Pa missing across the zones at Time, or at the window's end
+	PressureGap        float64 // Pa missing across the zones at Time, or at the window's end; negative where repeated
 	History            History
 	Warnings           []string
 }
@@ -92,126 +116,94 @@ type Setting struct {
 // ErrNoRoot says that no layer is marked as root.
 var ErrNoRoot = errors.New("excision: no layer is marked as root")
 
-// Solve follows the zones until the window ends.
+// samples is how many intervals of the window a history has.
+const samples = 200
+
+// Solve follows the zones until the window ends, and on until nothing more can
+// happen: a zone whose interval ends with the window is taken to go on after it, one
+// with another end stops there.
 func Solve(zones []Zone, set Setting) (*Result, error) {
 	if err := check(zones, set); err != nil {
 		return nil, err
 	}
-	r := &Result{Outcome: "no zones", Time: math.Inf(1), Share: set.Share,
-		CutThroughTime: math.Inf(1), ArcMeanTime: math.Inf(1), LocalBeyond: math.Inf(1)}
+	never := math.Inf(1)
+	r := &Result{Outcome: "no zones", Time: never, Share: set.Share,
+		CutThroughTime: never, ArcMeanTime: never, LocalBeyond: never}
 	p := newProgress(zones, set)
-	const samples = 200
-	next := 0
-	record := func() {
-		h := &r.History
-		h.Time = append(h.Time, p.t)
-		h.RootThickness = append(h.RootThickness, p.root())
-		h.Slip, h.Heave = append(h.Slip, p.slip), append(h.Heave, p.heave)
-		h.Throw = append(h.Throw, p.throw)
-		h.RootMassShare = append(h.RootMassShare, p.share())
-		if set.ArcWidth > 0 {
-			s := p.heave / (set.ArcWidth + p.heave)
-			h.ArcMeanShare = append(h.ArcMeanShare, s)
-			h.ArcMean = append(h.ArcMean, p.initialRoot*(1-s))
+	r.record(p)
+	for next := 1; !math.IsInf(p.t, 1); {
+		stop := never
+		if next <= samples {
+			stop = set.Window * float64(next) / samples
 		}
-	}
-	record()
-	for p.t < set.Window {
-		next++
-		stop := math.Min(set.Window, set.Window*float64(next)/samples)
-		for p.t < stop {
-			before := *p
-			before.left = append([]float64(nil), p.left...)
-			p.step(stop)
-			if math.IsInf(r.Time, 1) && p.share() >= set.Share*(1-1e-12) {
-				r.Time = before.t + (p.t-before.t)*fraction(before.share(), p.share(), set.Share)
-				f := 1.0
-				if p.t > before.t {
-					f = (r.Time - before.t) / (p.t - before.t)
-				}
-				r.Slip = before.slip + f*(p.slip-before.slip)
-				r.Heave = before.heave + f*(p.heave-before.heave)
-				r.Throw = before.throw + f*(p.throw-before.throw)
-				r.PressureGap = before.gap + f*(p.gap-before.gap)
+		r.step(p, stop)
+		if next <= samples && p.t >= stop {
+			r.record(p)
+			if next == samples && math.IsInf(r.LocalBeyond, 1) {
+				r.at(p)
 			}
+			next++
 		}
-		record()
 	}
 	if len(zones) == 0 {
 		return r, nil
 	}
-	r.Outcome = "excised"
-	if math.IsInf(r.Time, 1) {
-		r.Outcome = "window"
-		r.Slip, r.Heave, r.Throw, r.PressureGap = p.slip, p.heave, p.throw, p.gap
+	r.Outcome = "window"
+	if r.LocalBeyond <= set.Window {
+		r.Outcome, r.Time = "excised", r.LocalBeyond
 	}
 	if set.ArcWidth > 0 {
 		r.ExtensionDemanded = r.Heave / set.ArcWidth
 		if r.ExtensionDemanded > 1 {
-			r.Warnings = append(r.Warnings, fmt.Sprintf("the zones' heave of %.0f km is %.0f %% extension of an arc %.0f km wide", r.Heave/1e3, 100*r.ExtensionDemanded, set.ArcWidth/1e3))
+			r.Warnings = append(r.Warnings, fmt.Sprintf("the zones' heave of %.0f km is %.0f %% extension of an arc %.3g km wide", r.Heave/1e3, 100*r.ExtensionDemanded, set.ArcWidth/1e3))
 		}
 	}
-	beyond(r, zones, set)
 	return r, nil
 }
 
-// beyond follows the zones past the window, as if they went on at their own
-// intervals, to say when the root would be cut through and the arc mean thinned.
-func beyond(r *Result, zones []Zone, set Setting) {
-	free := make([]Zone, len(zones))
-	for i, z := range zones {
-		free[i] = z
-		if z.To >= set.Window {
-			free[i].To = math.Inf(1)
+// step moves p to its next event, at most to stop, and notes what happens on the way.
+func (r *Result) step(p *progress, stop float64) {
+	v, end := p.rates(stop)
+	if math.IsInf(r.ArcMeanTime, 1) && p.set.ArcWidth > 0 {
+		r.ArcMeanTime = p.meanTime(v, end, r.Share)
+	}
+	if math.IsInf(end, 1) { // nothing is left to cut
+		p.t = end
+		return
+	}
+	before := p.clone()
+	p.move(v, end)
+	if math.IsInf(r.LocalBeyond, 1) && p.share() >= r.Share*(1-1e-12) {
+		at := before.t + (end-before.t)*fraction(before.share(), p.share(), r.Share)
+		r.LocalBeyond = at
+		if at <= p.set.Window {
+			before.move(v, at)
+			r.at(before)
 		}
 	}
-	p := newProgress(free, set)
-	for i := 0; i < 10*(len(zones)+1)*(len(set.Layers)+2); i++ {
-		before := *p
-		p.step(math.Inf(1))
-		if math.IsInf(p.t, 1) {
-			break
-		}
-		if math.IsInf(r.LocalBeyond, 1) && p.share() >= set.Share*(1-1e-12) {
-			r.LocalBeyond = before.t + (p.t-before.t)*fraction(before.lost/before.mass, p.share(), set.Share)
-		}
-		if p.root() <= 1e-9*p.initialRoot {
-			r.CutThroughTime, r.CutThroughSlip, r.CutThroughHeave = p.t, p.slip, p.heave
-			break
-		}
-	}
-	if set.ArcWidth > 0 && set.Share < 1 {
-		want := set.ArcWidth * set.Share / (1 - set.Share) // heave/(B + heave) = share
-		r.ArcMeanTime = heaveTime(free, want)
+	if math.IsInf(r.CutThroughTime, 1) && p.root() <= 1e-9*p.initialRoot {
+		r.CutThroughTime, r.CutThroughSlip, r.CutThroughHeave = p.t, p.slip, p.heave
 	}
 }
 
-// heaveTime returns when the summed heave of the zones reaches want, as if rock to
-// cut never ran out; +Inf where never.
-func heaveTime(zones []Zone, want float64) float64 {
-	var at []float64
-	for _, z := range zones {
-		at = append(at, z.From, z.To)
+// at takes what the zones have done by now as the answer's.
+func (r *Result) at(p *progress) {
+	r.Slip, r.Heave, r.Throw, r.PressureGap = p.slip, p.heave, p.throw, p.gap
+}
+
+// record adds the present to the history.
+func (r *Result) record(p *progress) {
+	h := &r.History
+	h.Time = append(h.Time, p.t)
+	h.RootThickness = append(h.RootThickness, p.root())
+	h.Slip, h.Heave = append(h.Slip, p.slip), append(h.Heave, p.heave)
+	h.Throw = append(h.Throw, p.throw)
+	h.RootMassShare = append(h.RootMassShare, p.share())
+	if p.set.ArcWidth > 0 {
+		thickness, share := p.mean(p.arc)
+		h.ArcMean = append(h.ArcMean, thickness)
+		h.ArcMeanShare = append(h.ArcMeanShare, share)
 	}
-	sort.Float64s(at)
-	var t, heave float64
-	for _, end := range at {
-		var rate float64
-		for _, z := range zones {
-			if z.From <= t && t < z.To {
-				rate += z.SlipRate * math.Cos(z.Dip)
-			}
-		}
-		if rate > 0 && heave+rate*(end-t) >= want {
-			return t + (want-heave)/rate
-		}
-		if math.IsInf(end, 1) {
-			break
-		}
-		heave += rate * (end - t)
-		t = end
-	}
-	return math.Inf(1)
 }
 
 // fraction returns where between a and b the value c lies, 0 to 1.
@@ -220,47 +212,4 @@ func fraction(a, b, c float64) float64 {
 		return 1
 	}
 	return math.Min(1, math.Max(0, (c-a)/(b-a)))
-}
-
-func check(zones []Zone, set Setting) error {
-	root := false
-	index := map[string]int{}
-	for i, l := range set.Layers {
-		root = root || l.Root
-		index[l.Name] = i
-		if !(l.Thickness > 0) || !(l.Density > 0) {
-			return fmt.Errorf("excision: layer %q: thickness %g m, density %g kg/m³; must be positive", l.Name, l.Thickness, l.Density)
-		}
-	}
-	switch {
-	case !root:
-		return ErrNoRoot
-	case !(set.Share > 0 && set.Share <= 1):
-		return fmt.Errorf("excision: share %g; must be above 0 and at most 1", set.Share)
-	case !(set.Window > 0) || math.IsInf(set.Window, 0):
-		return fmt.Errorf("excision: window %g s; must be positive", set.Window)
-	}
-	for _, z := range zones {
-		if !(z.Dip > 0 && z.Dip <= math.Pi/2) {
-			return fmt.Errorf("excision: zone %q dips %g°; must be above 0 and at most 90", z.Name, z.Dip*180/math.Pi)
-		}
-		if !(math.Abs(z.LayeringDip) < math.Pi/2) {
-			return fmt.Errorf("excision: zone %q: layering dips %g°; must be within 90", z.Name, z.LayeringDip*180/math.Pi)
-		}
-		if !(z.SlipRate >= 0) || math.IsInf(z.SlipRate, 0) {
-			return fmt.Errorf("excision: zone %q slips at %g m/s; must be zero or more", z.Name, z.SlipRate)
-		}
-		if !(z.From >= 0 && z.To > z.From) {
-			return fmt.Errorf("excision: zone %q is active from %g to %g s", z.Name, z.From, z.To)
-		}
-		if len(z.Cuts) == 0 {
-			return fmt.Errorf("excision: zone %q cuts no layer", z.Name)
-		}
-		for _, n := range z.Cuts {
-			if _, ok := index[n]; !ok {
-				return fmt.Errorf("excision: zone %q cuts %q, which is not a layer", z.Name, n)
-			}
-		}
-	}
-	return nil
 }

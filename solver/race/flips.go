@@ -6,78 +6,56 @@ import (
 	"math"
 	"slices"
 
-	"keelfall/column"
-	"keelfall/solver/excision"
+	"keelfall/solver/drip"
 )
 
+// mostLayers is the number of layers up to which a run looks for what would change
+// its verdict: every candidate is a drip time of its own.
+const mostLayers = 60
+
+// search is one quantity whose nearest change of the verdict is looked for. x is its
+// distance from the value in use.
+type search struct {
+	flip   Flip                     // what is known before: keys, label, unit, value in use
+	most   float64                  // largest |x|
+	value  func(x float64) float64  // the quantity at x
+	keys   func(x float64) []Change // what to set in the experiment for it
+	change func(q *Problem, x float64)
+}
+
 // flips finds, for the numbers that matter most, the value nearest to the one in use
-// at which the verdict changes, all else equal. Numbers of the drip change the drip
-// time; slip rates change the excision.
-func (r *Result) flips(ctx context.Context) error {
+// at which the verdict changes, all else equal.
+func (r *Result) flips(ctx context.Context, say func(string)) error {
 	p, v := r.Problem, &r.Verdict
+	if n := len(p.Column.Layers); n > mostLayers {
+		r.Warnings = append(r.Warnings, fmt.Sprintf("what would change the verdict was not looked for: %d layers, and it is done up to %d", n, mostLayers))
+		return ctx.Err()
+	}
 	near := r.Drip.Wavelength
 	if near == 0 {
 		near = r.Spectrum.Fastest.Wavelength
 	}
-	// changed says whether the verdict differs after a change of the problem
-	changed := func(change func(*Problem)) bool {
-		q := *p
-		q.Column.Layers = slices.Clone(p.Column.Layers)
-		change(&q)
-		t, err := dripTime(ctx, &q, near)
-		if err != nil {
-			return false // not a column that can be run: no flip there
+	for _, s := range r.searches() {
+		say("what would change the verdict: " + s.flip.Label)
+		outcome := func(x float64) string {
+			q := *p
+			q.Column.Layers = slices.Clone(p.Column.Layers)
+			q.Zones = slices.Clone(p.Zones)
+			s.change(&q, x)
+			return q.outcome(ctx, near, v.Outcome)
 		}
-		return judge(t, r.Excision, v.Share, p.Drip.Window).outcome != v.Outcome
-	}
-	first, last, _ := p.Column.RootSpan()
-	root := p.Column.Layers[last].Name
-	scale := func(f *Flip, unit string, from, most float64, change func(*Problem, float64)) {
-		f.Unit, f.From = unit, from
-		if u, ok := nearest(func(x float64) bool {
-			return changed(func(q *Problem) { change(q, math.Exp(x)) })
-		}, most); ok {
-			f.To, f.Found, f.Distance = from*math.Exp(u), true, math.Abs(u)
-		}
-		f.Default = p.isDefault(f.Key)
-		v.Flips = append(v.Flips, *f)
-	}
-	scale(&Flip{Key: "layers." + root + ".viscosity-factor", Label: "root viscosity"}, "x", p.Column.Layers[last].Viscosity.FactorOr1(), math.Log(1000), func(q *Problem, x float64) {
-		for i := first; i <= last; i++ {
-			q.Column.Layers[i].Viscosity.Factor = q.Column.Layers[i].Viscosity.FactorOr1() * x
-		}
-	})
-	if f := v.Flips[0]; f.Found {
-		v.MarginLog10Viscosity = math.Log10(f.To / f.From)
-	}
-	tip := p.Drip.Criterion * p.rootThickness()
-	scale(&Flip{Key: "drip.amplitude", Label: "initial undulation"}, "m", p.Drip.Amplitude, math.Log(0.99*tip/p.Drip.Amplitude), func(q *Problem, x float64) {
-		q.Drip.Amplitude *= x
-	})
-	if contrast := -r.State.Jumps[last+1]; contrast > 0 {
-		scale(&Flip{Key: "layers." + root + ".density", Label: "density contrast"}, "kg/m3", contrast, math.Log(10), func(q *Problem, x float64) {
-			for i := first; i <= last; i++ {
-				q.Column.Layers[i].Density = heavier{q.Column.Layers[i].Density, contrast * (x - 1)}
+		f := s.flip
+		f.To, f.Keys = f.From, s.keys(0)
+		if x, to := nearest(outcome, v.Outcome, s.most); to != "" {
+			f.To, f.Found, f.Distance, f.Outcome, f.Keys = s.value(x), true, math.Abs(x), to, s.keys(x)
+			if f.HasContrast {
+				f.ContrastTo = f.ContrastFrom + perDensity*x
 			}
-		})
-	}
-	if p.Column.Base.HasTemperature && r.State.HasTemperature && len(p.Column.Geotherm) == 0 {
-		const unit = 100.0 // K
-		f := Flip{Key: "base.temperature", Label: "basal temperature", Unit: "K", From: p.Column.Base.Temperature}
-		if u, ok := nearest(func(x float64) bool {
-			return changed(func(q *Problem) { q.Column.Base.Temperature += unit * x })
-		}, 5); ok {
-			f.To, f.Found, f.Distance = f.From+unit*u, true, math.Abs(u)
+			if f.Label == rootViscosity {
+				v.MarginLog10Viscosity, v.MarginViscosityOutcome = x/math.Ln10, to
+			}
 		}
 		v.Flips = append(v.Flips, f)
-	}
-	if r.Rate.Used {
-		scale(&Flip{Key: "strain.reference-rate", Label: "reference strain rate"}, "1/s", p.Strain.ReferenceRate, math.Log(1000), func(q *Problem, x float64) {
-			q.Strain.ReferenceRate *= x
-		})
-	}
-	if len(p.Zones) > 0 {
-		v.Flips = append(v.Flips, r.slipFlip())
 	}
 	slices.SortStableFunc(v.Flips, func(a, b Flip) int {
 		switch {
@@ -91,82 +69,22 @@ func (r *Result) flips(ctx context.Context) error {
 	return ctx.Err()
 }
 
-// slipFlip finds the factor on every zone's slip rate that changes the verdict.
-func (r *Result) slipFlip() Flip {
-	p, v := r.Problem, &r.Verdict
-	f := Flip{Key: "excision.zones.slip-rate", Label: "slip rate of the zones", From: 1, Unit: "x"}
-	if len(p.Zones) == 1 {
-		f = Flip{Key: fmt.Sprintf("excision.zones.%s.slip-rate", p.Zones[0].Name), Label: "slip rate", From: p.Zones[0].SlipRate, Unit: "m/s"}
+// outcome returns the verdict's outcome of p; now, where p is not a column that can
+// be run: no change there.
+func (p *Problem) outcome(ctx context.Context, near float64, now string) string {
+	s, err := Prepare(p)
+	if err != nil {
+		return now
 	}
-	set := p.excisionSetting(r.State)
-	u, ok := nearest(func(x float64) bool {
-		zones := slices.Clone(p.Zones)
-		for i := range zones {
-			zones[i].SlipRate *= math.Exp(x)
-		}
-		res, err := excision.Solve(zones, set)
-		return err == nil && judge(r.Drip.Time, res, v.Share, p.Drip.Window).outcome != v.Outcome
-	}, math.Log(1000))
-	if ok {
-		f.To, f.Found, f.Distance = f.From*math.Exp(u), true, math.Abs(u)
+	o := p.dripOptions()
+	o.Near = near
+	t, err := drip.Time(ctx, s, p.Drip, o)
+	if err != nil {
+		return now
 	}
-	return f
-}
-
-// nearest returns the x of smallest |x| up to most at which changed holds: growing
-// steps outwards on both sides in turn, then bisection to 1e-4.
-func nearest(changed func(float64) bool, most float64) (float64, bool) {
-	if !(most > 0) {
-		return 0, false
+	x, err := Excise(p, s)
+	if err != nil {
+		return now
 	}
-	lo := 0.0
-	for step := 0.1; lo < most; step *= 1.6 {
-		hi := math.Min(lo+step, most)
-		found, ok := 0.0, false
-		for _, sign := range []float64{1, -1} {
-			if !changed(sign * hi) {
-				continue
-			}
-			a, b := lo, hi
-			for b-a > 1e-4 {
-				if mid := (a + b) / 2; changed(sign * mid) {
-					b = mid
-				} else {
-					a = mid
-				}
-			}
-			if !ok || b < math.Abs(found) {
-				found, ok = sign*b, true
-			}
-		}
-		if ok {
-			return found, true
-		}
-		lo = hi
-	}
-	return 0, false
+	return judge(t, x, p.Share(), p.Drip.Window).outcome
 }
-
-// rootThickness returns the sum of the root layers' thicknesses, m.
-func (p *Problem) rootThickness() float64 {
-	var h float64
-	for i := range p.Column.Layers {
-		if p.Column.Layers[i].Root {
-			h += p.Column.Layers[i].Thickness
-		}
-	}
-	return h
-}
-
-func (p *Problem) isDefault(key string) bool {
-	return slices.ContainsFunc(p.Defaults, func(d Default) bool { return d.Key == key })
-}
-
-// heavier is a rock whose density is raised by a constant.
-type heavier struct {
-	column.Density
-	more float64 // kg/m³
-}
-
-// At returns the raised density.
-func (h heavier) At(T, P, x float64) float64 { return h.Density.At(T, P, x) + h.more }

@@ -4,6 +4,8 @@ import (
 	"context"
 	"errors"
 	"math"
+	"slices"
+	"strings"
 	"testing"
 
 	"keelfall/column"
@@ -73,61 +75,18 @@ func TestVerdict(t *testing.T) {
 	}
 }
 
-// A flip that was found is one: a run a little beyond it has another verdict, a run a
-// little before it has not.
-func TestFlipsAreConfirmed(t *testing.T) {
-	for name, p := range map[string]*race.Problem{"dripped": problem(0.05), "excised": problem(8)} {
-		r := run(t, p)
-		if r.Verdict.Outcome != name {
-			t.Fatalf("%s, want %s", r.Verdict.Outcome, name)
-		}
-		confirmed := 0
-		for _, f := range r.Verdict.Flips {
-			if !f.Found {
-				continue
-			}
-			for _, beyond := range []bool{true, false} {
-				to := f.From * math.Pow(f.To/f.From, 0.97)
-				if beyond {
-					to = f.From * math.Pow(f.To/f.From, 1.03)
-				}
-				q := problem(p.Zones[0].SlipRate * year * 1e3)
-				switch f.Key {
-				case "layers.root.viscosity-factor":
-					q.Column.Layers[1].Viscosity.Factor = to
-				case "drip.amplitude":
-					q.Drip.Amplitude = to
-				case "layers.root.density":
-					q.Column.Layers[1].Density = column.Uniform(3270 + to)
-				case "excision.zones.zone.slip-rate":
-					q.Zones[0].SlipRate = to
-				default:
-					t.Fatalf("no way to confirm %s", f.Key)
-				}
-				if got := run(t, q).Verdict.Outcome; (got != name) != beyond {
-					t.Errorf("%s: %s at %g: %s (flip at %g from %g)", name, f.Key, to, got, f.To, f.From)
-				}
-			}
-			confirmed++
-		}
-		if confirmed < 2 {
-			t.Errorf("%s: only %d flips found", name, confirmed)
-		}
-		if d, ok := r.Verdict.Decider(); !ok || d.Distance > r.Verdict.Flips[1].Distance && r.Verdict.Flips[1].Found {
-			t.Errorf("%s: the decider %+v is not the nearest", name, d)
-		}
-	}
-}
-
 // What is wrong with the experiment is marked as that.
 func TestInputErrors(t *testing.T) {
 	wall := problem(1)
 	wall.Column.Base.Boundary = column.Rigid
 	noRoot := problem(1)
 	noRoot.Column.Layers[1].Root = false
+	high := problem(1)
+	high.Drip.Amplitude = 12e3
 	thick := problem(1)
 	thick.Column.Layers[0].Thickness = -1
-	for name, p := range map[string]*race.Problem{"root on a wall": wall, "zones without a root": noRoot, "negative thickness": thick} {
+	for name, p := range map[string]*race.Problem{"root on a wall": wall, "zones without a root": noRoot, "negative thickness": thick,
+		"an undulation that already is the drip": high} {
 		if _, err := race.Run(context.Background(), p); !errors.Is(err, race.ErrInput) {
 			t.Errorf("%s: %v", name, err)
 		}
@@ -139,5 +98,75 @@ func TestRateBand(t *testing.T) {
 	r := run(t, problem(0.05))
 	if r.Rate.Used || r.Rate.AtThrice != r.Drip.Time {
 		t.Errorf("given viscosities: %+v", r.Rate)
+	}
+}
+
+// The arc mean of a drip is its share of what zones have left there (a drip takes its
+// share of what is there), and both halves of the margin say what they lead to.
+func TestArcMeanAndMargins(t *testing.T) {
+	p := problem(0.1)
+	r := run(t, p)
+	v := r.Verdict
+	if v.Outcome != "dripped" || v.MarginTo != "excision" {
+		t.Fatalf("%s, margin to %q", v.Outcome, v.MarginTo)
+	}
+	heave := 0.1e-3 / year * v.Time * math.Cos(math.Pi/6)
+	arc := heave / (150e3 + heave)
+	if got := v.ArcMean.Excision; math.Abs(got/arc-1) > 1e-3 { // linear between 200 samples
+		t.Errorf("arc mean of excision %g, want %g", got, arc)
+	}
+	if got, want := v.ArcMean.Drip, 0.3*(1-v.ArcMean.Excision); math.Abs(got/want-1) > 1e-12 {
+		t.Errorf("arc mean of the drip %g, want %g", got, want)
+	}
+	if got := v.WindowMargin; math.Abs(got/(30*myr-v.Time)-1) > 1e-12 {
+		t.Errorf("the window's end is %g Myr away", got/myr)
+	}
+	if v.MarginViscosityOutcome == "" || v.MarginViscosityOutcome == v.Outcome {
+		t.Errorf("another viscosity leads to %q", v.MarginViscosityOutcome)
+	}
+}
+
+// The limit on wavelength is the arc's size along the wavevector.
+func TestLimit(t *testing.T) {
+	p := problem(1)
+	if l, w := p.Limit(); l != 150e3 || w != "the arc's width, 150 km" {
+		t.Errorf("along the stretch: %g m, %q", l, w)
+	}
+	p.Strain.Wavevector = race.AlongStrike
+	if l, w := p.Limit(); l != 400e3 || w != "the arc's length, 400 km" {
+		t.Errorf("along strike: %g m, %q", l, w)
+	}
+	p.ArcLength = 40
+	if _, w := p.Limit(); w != "the arc's length, 0.04 km" {
+		t.Errorf("a very short arc: %q", w)
+	}
+}
+
+// Stress exponents above 1 are warned about wherever they stand, the half-space too.
+func TestIsotropicWarning(t *testing.T) {
+	for name, set := range map[string]func(*race.Problem){
+		"none": func(*race.Problem) {},
+		"root": func(p *race.Problem) { p.Column.Layers[1].Viscosity.Exponent = 3 },
+		"base": func(p *race.Problem) { p.Column.Base.Viscosity.Exponent = 3 },
+	} {
+		p := problem(1)
+		set(p)
+		r := run(t, p)
+		warned := slices.ContainsFunc(r.Warnings, func(w string) bool { return strings.Contains(w, "isotropic") })
+		limited := slices.ContainsFunc(r.Limits, func(w string) bool { return strings.Contains(w, "softening") })
+		if want := name != "none"; warned != want || limited != want {
+			t.Errorf("%s: %q, %q", name, r.Warnings, r.Limits)
+		}
+	}
+}
+
+// One zone is called by its name.
+func TestZoneNames(t *testing.T) {
+	for name, want := range map[string]string{"Elvik zone": "The Elvik zone cuts", "basal": "The shear zone basal cuts"} {
+		p := problem(8)
+		p.Zones[0].Name = name
+		if s := run(t, p).Verdict.Sentence; !strings.HasPrefix(s, want) {
+			t.Errorf("%q, want %q", s, want)
+		}
 	}
 }

@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 
 	"keelfall/column"
 	"keelfall/solver/drip"
@@ -32,14 +33,15 @@ func Spectrum(ctx context.Context, p *Problem, s *state.State) (*growth.Spectrum
 
 // Drip returns when the root of a prepared column drips.
 func Drip(ctx context.Context, p *Problem, s *state.State) (*drip.Result, error) {
-	if err := p.rootCanMove(); err != nil {
+	if err := p.canDrip(); err != nil {
 		return nil, err
 	}
 	return drip.Solve(ctx, s, p.Drip, p.dripOptions())
 }
 
-// rootCanMove refuses a root on a wall: nothing could drip from it.
-func (p *Problem) rootCanMove() error {
+// canDrip refuses what no drip can be asked of: no root, a root on a wall, an
+// undulation that already is the drip.
+func (p *Problem) canDrip() error {
 	_, last, ok := p.Column.RootSpan()
 	if !ok {
 		return fmt.Errorf("%w: %w", ErrInput, drip.ErrNoRoot)
@@ -47,17 +49,28 @@ func (p *Problem) rootCanMove() error {
 	if last == len(p.Column.Layers)-1 && p.Column.Base.Boundary != column.HalfSpace && p.Column.Base.Boundary != column.Inviscid {
 		return fmt.Errorf("%w: the root lies on a wall that cannot move; give it a half-space or inviscid base, or a layer below", ErrInput)
 	}
+	if tip := p.Drip.Criterion * p.Column.RootThickness(); p.Drip.Amplitude >= tip {
+		return fmt.Errorf("%w: an undulation of %.4g m already is the drip: %g × the root's thickness is %.4g m", ErrInput, p.Drip.Amplitude, p.Drip.Criterion, tip)
+	}
 	return nil
+}
+
+// Limit returns the longest wavelength in m that the arc has room for and what that
+// is, in words: the arc's length along strike, its width along the stretch; 0 where
+// the experiment does not give it.
+func (p *Problem) Limit() (float64, string) {
+	switch {
+	case p.Strain.Wavevector == AlongStrike && p.ArcLength > 0:
+		return p.ArcLength, fmt.Sprintf("the arc's length, %.3g km", p.ArcLength/1e3)
+	case p.Strain.Wavevector == AlongStretch && p.ArcWidth > 0:
+		return p.ArcWidth, fmt.Sprintf("the arc's width, %.3g km", p.ArcWidth/1e3)
+	}
+	return 0, ""
 }
 
 func (p *Problem) dripOptions() drip.Options {
 	o := drip.Options{From: p.SpectrumFrom, To: p.SpectrumTo, Workers: p.Workers}
-	if p.Strain.Wavevector == AlongStrike && p.ArcLength > 0 {
-		o.Limit, o.LimitIs = p.ArcLength, fmt.Sprintf("the arc's length, %.0f km", p.ArcLength/1e3)
-	}
-	if p.Strain.Wavevector == AlongStretch && p.ArcWidth > 0 {
-		o.Limit, o.LimitIs = p.ArcWidth, fmt.Sprintf("the arc's width, %.0f km", p.ArcWidth/1e3)
-	}
+	o.Limit, o.LimitIs = p.Limit()
 	return o
 }
 
@@ -96,24 +109,37 @@ func (p *Problem) Share() float64 { return p.Drip.Removes }
 
 // Run does the whole job: state, spectrum, both fates, verdict.
 func Run(ctx context.Context, p *Problem) (*Result, error) {
+	return RunSaying(ctx, p, func(string) {})
+}
+
+// RunSaying is Run; it calls say with what is computed next, in words.
+func RunSaying(ctx context.Context, p *Problem, say func(string)) (*Result, error) {
+	_, _, root := p.Column.RootSpan()
+	if root {
+		if err := p.canDrip(); err != nil {
+			return nil, err
+		}
+	} else if len(p.Zones) > 0 {
+		return nil, fmt.Errorf("%w: shear zones but no layer marked root: true", ErrInput)
+	}
+	say("the column")
 	s, err := Prepare(p)
 	if err != nil {
 		return nil, err
 	}
-	r := &Result{Problem: p, State: s}
+	r := &Result{Problem: p, State: s, Warnings: Warnings(s)}
+	say("growth against wavelength")
 	if r.Spectrum, err = Spectrum(ctx, p, s); err != nil {
 		return nil, err
 	}
-	r.Warnings = append(r.Warnings, s.Warnings...)
-	r.Limits = p.limits()
-	if _, _, ok := p.Column.RootSpan(); !ok {
-		if len(p.Zones) > 0 {
-			return nil, fmt.Errorf("%w: shear zones but no layer marked root: true", ErrInput)
-		}
+	if !root {
+		r.Limits = p.limits(Peeling{})
 		r.Verdict.Time, r.Verdict.Margin, r.Verdict.MarginLog10Viscosity = math.Inf(1), math.Inf(1), math.Inf(1)
+		r.Verdict.WindowMargin = math.Inf(1)
 		r.Warnings = append(r.Warnings, "no layer is marked root: true, so growth is computed and no fate is judged")
 		return r, nil
 	}
+	say("the drip")
 	if r.Drip, err = Drip(ctx, p, s); err != nil {
 		return nil, err
 	}
@@ -121,47 +147,37 @@ func Run(ctx context.Context, p *Problem) (*Result, error) {
 		return nil, err
 	}
 	r.peeling()
+	r.Limits = p.limits(r.Peeling)
+	say("the drip at other strain rates")
 	if err := r.strainRates(ctx); err != nil {
 		return nil, err
 	}
 	r.Warnings = append(r.Warnings, r.Drip.Warnings...)
 	r.Warnings = append(r.Warnings, r.Excision.Warnings...)
 	r.judge()
-	if err := r.flips(ctx); err != nil {
+	if err := r.flips(ctx, say); err != nil {
 		return nil, err
 	}
 	return r, nil
 }
 
-// RateDependent says whether any viscosity of the column depends on strain rate.
-func RateDependent(s *state.State) bool {
-	const newtonian = 1 + 1e-6
-	for _, l := range s.Layers {
-		for _, p := range l.Points {
-			if p.Exponent > newtonian {
-				return true
-			}
-		}
+// Warnings returns what a prepared column is warned about, whatever is asked of it.
+func Warnings(s *state.State) []string {
+	w := slices.Clone(s.Warnings)
+	if drip.RateDependent(s) {
+		w = append(w, fmt.Sprintf("stress exponents above 1, nothing that strains the column and no softening by the drip: viscosities are isotropic, those of the reference rate of %.3g 1/s", s.StrainRate))
 	}
-	return s.Base.Exponent > newtonian
+	return w
 }
 
-// strainRates holds the drip's own strain rate against the reference rate, and
-// computes the drip time at three times and a third of that.
+// strainRates computes the drip time at three times and a third of the reference
+// strain rate.
 func (r *Result) strainRates(ctx context.Context) error {
 	p := r.Problem
-	r.Rate = RateBand{Used: RateDependent(r.State), AtThrice: math.Inf(1), AtOneThird: math.Inf(1)}
+	r.Rate = RateBand{Used: drip.RateDependent(r.State), AtThrice: math.Inf(1), AtOneThird: math.Inf(1)}
 	if !r.Rate.Used {
 		r.Rate.AtThrice, r.Rate.AtOneThird = r.Drip.Time, r.Drip.Time
 		return nil
-	}
-	if !math.IsInf(r.Drip.Time, 1) {
-		start, end, ref := r.Drip.StrainRate, r.Drip.StrainRateEnd, p.Strain.ReferenceRate
-		if end > 3*ref || end < ref/3 || start > 3*ref || start < ref/3 {
-			r.Warnings = append(r.Warnings, fmt.Sprintf(
-				"the drip's own strain rate in the root goes from %.1e to %.1e 1/s, the viscosities are for %.1e 1/s: more than a factor of 3 apart, and the rock is not Newtonian",
-				start, end, ref))
-		}
 	}
 	for _, f := range []float64{3, 1.0 / 3} {
 		q := *p
@@ -189,42 +205,4 @@ func dripTime(ctx context.Context, p *Problem, near float64) (float64, error) {
 	o := p.dripOptions()
 	o.Near = near
 	return drip.Time(ctx, s, p.Drip, o)
-}
-
-// peeling looks for the weakest rock above the root.
-func (r *Result) peeling() {
-	first, _, _ := r.Problem.Column.RootSpan()
-	weakest := math.Inf(1)
-	for i := range first {
-		for _, p := range r.State.Layers[i].Points {
-			if p.Viscosity < weakest {
-				weakest = p.Viscosity
-				r.Peeling = Peeling{r.Problem.Column.Layers[i].Name, p.Viscosity, p.Viscosity <= BirdViscosity}
-			}
-		}
-	}
-}
-
-// limits says what this computation leaves out.
-func (p *Problem) limits() []string {
-	l := []string{
-		"linear theory carried to a full drip: about 10 % slow for Newtonian rock beside two-dimensional solutions (ratio 0.89 to 0.93, derived)",
-		"the column is frozen: no cooling, heating, reaction, melting or stretching while the root drips or is cut",
-		"one drip only: what one drip removes stands in for the share that counts as removal",
-	}
-	for i := range p.Column.Layers {
-		v := &p.Column.Layers[i].Viscosity
-		if v.Creep != nil || v.Exponent > 1 {
-			l = append(l, "power-law softening of the root by its own drip is left out: viscosities are isotropic, at the reference strain rate")
-			break
-		}
-	}
-	for i := range p.Column.Layers {
-		if p.Column.Layers[i].Density.NeedsTemperature() {
-			l = append(l, "thermal buoyancy of the undulation is left out: rock keeps the density of its composition at the contact")
-			break
-		}
-	}
-	return append(l,
-		"peeling from an edge (delamination), subduction drag and the third dimension are outside one dimension")
 }

@@ -3,7 +3,9 @@ package race
 import (
 	"fmt"
 	"math"
+	"strings"
 
+	"keelfall/solver/drip"
 	"keelfall/solver/excision"
 )
 
@@ -11,7 +13,8 @@ import (
 type ruling struct {
 	outcome string
 	time    float64 // s, when the clock stops
-	margin  float64 // s to the next thing that would stop it
+	margin  float64 // s to the other fate
+	next    string  // which that is: "drip" or "excision"
 	shares  Shares
 }
 
@@ -21,16 +24,20 @@ type ruling struct {
 func judge(drip float64, x *excision.Result, share, window float64) ruling {
 	switch {
 	case x.Time <= window && x.Time <= drip:
-		return ruling{"excised", x.Time, drip - x.Time, Shares{0, share}}
+		return ruling{"excised", x.Time, drip - x.Time, "drip", Shares{0, share}}
 	case drip <= window:
 		gone := math.Max(0, at(x.History.Time, x.History.RootMassShare, drip))
-		v := ruling{"dripped", drip, x.LocalBeyond - drip, Shares{share * (1 - gone), gone}} // of the mass left at that moment
+		v := ruling{"dripped", drip, x.LocalBeyond - drip, "excision", Shares{share * (1 - gone), gone}} // of the mass left at that moment
 		if math.Min(v.shares.Drip, gone) >= math.Max(v.shares.Drip, gone)/2 {
 			v.outcome = "both"
 		}
 		return v
 	}
-	return ruling{"preserved", window, math.Min(drip, x.LocalBeyond) - window,
+	next := "drip"
+	if x.LocalBeyond < drip {
+		next = "excision"
+	}
+	return ruling{"preserved", window, math.Min(drip, x.LocalBeyond) - window, next,
 		Shares{0, math.Max(0, at(x.History.Time, x.History.RootMassShare, window))}}
 }
 
@@ -40,10 +47,13 @@ func (r *Result) judge() {
 	v.Share = r.Problem.Share()
 	v.MarginLog10Viscosity = math.Inf(1)
 	j := judge(r.Drip.Time, x, v.Share, r.Problem.Drip.Window)
-	v.Outcome, v.Time, v.Margin, v.Shares = j.outcome, j.time, j.margin, j.shares
-	v.ArcMean = Shares{Drip: v.Shares.Drip}
+	v.Outcome, v.Time, v.Margin, v.MarginTo, v.Shares = j.outcome, j.time, j.margin, j.next, j.shares
+	v.WindowMargin = r.Problem.Drip.Window - v.Time
 	if len(x.History.ArcMeanShare) > 0 {
 		v.ArcMean.Excision = at(x.History.Time, x.History.ArcMeanShare, v.Time)
+	}
+	if v.Shares.Drip > 0 { // a drip takes its share of what is there
+		v.ArcMean.Drip = v.Share * (1 - math.Max(0, v.ArcMean.Excision))
 	}
 	v.Sentence = r.sentence()
 	r.reasons()
@@ -72,11 +82,13 @@ func (r *Result) reasons() {
 	_, last, _ := r.Problem.Column.RootSpan()
 	contrast := -r.State.Jumps[last+1]
 	switch {
-	case contrast <= 0:
-		add("too buoyant: the root is %.0f kg/m³ lighter than what lies below it", -contrast)
-	case d.Outcome == "drips":
-		add("dense enough: the root is %.0f kg/m³ denser than what lies below it", contrast)
+	case d.Outcome == "buoyant":
+		add("too buoyant: the root is %s", drip.Weigh(contrast))
 	case math.IsInf(d.Time, 1):
+		add("%s", d.Reason)
+	case d.Outcome == "drips" && contrast > 0:
+		add("dense enough: the root is %s", drip.Weigh(contrast))
+	case d.Outcome == "drips":
 		add("%s", d.Reason)
 	default:
 		add("not enough time: the root would drip, but only after the window has closed")
@@ -98,7 +110,12 @@ func (r *Result) reasons() {
 	case "no zones":
 		add("no shear zone cuts the root")
 	case "window":
-		add("the shear zones do not take %.0f %% of the root within the window", 100*v.Share)
+		zones, plural := r.Problem.zoneWords()
+		do := "does"
+		if plural {
+			do = "do"
+		}
+		add("%s %s not take %.0f %% of the root within the window", zones, do, 100*v.Share)
 	}
 }
 
@@ -116,27 +133,48 @@ func (r *Result) sentence() string {
 		return fmt.Sprintf("%.3g Myr", t)
 	}
 	share := fmt.Sprintf("%.0f %% of it", 100*v.Share)
+	name, plural := r.Problem.zoneWords()
 	zones := "no shear zone cuts it"
 	if x.Outcome != "no zones" {
-		zones = "the shear zones would never take " + share
+		zones = name + " would never take " + share
 		if !math.IsInf(x.LocalBeyond, 1) {
-			zones = "the shear zones would need " + when(x.LocalBeyond) + " for " + share
+			zones = name + " would need " + when(x.LocalBeyond) + " for " + share
 		}
 	}
 	drips := "it would never drip"
-	if !math.IsInf(d.Time, 1) {
+	switch {
+	case d.Time >= 1000*myr && d.Outcome != "buoyant":
+		drips = "it would take more than 1000 Myr to drip"
+	case !math.IsInf(d.Time, 1):
 		drips = "it would drip at " + when(d.Time)
-		if d.Time >= 1000*myr {
-			drips = "it would take more than 1000 Myr to drip"
-		}
 	}
 	switch v.Outcome {
 	case "dripped":
 		return "The root drips first, at " + when(v.Time) + "; " + zones + "."
 	case "both":
-		return "The root drips at " + when(v.Time) + fmt.Sprintf(", when the shear zones have already taken %.0f %% of it: both remove it.", 100*v.Shares.Excision)
+		has := "has"
+		if plural {
+			has = "have"
+		}
+		return "The root drips at " + when(v.Time) + fmt.Sprintf(", when %s %s already taken %.0f %% of it: both remove it.", name, has, 100*v.Shares.Excision)
 	case "excised":
-		return "Shear zones cut the root out first, " + share + " by " + when(v.Time) + "; " + drips + "."
+		cuts := " cuts"
+		if plural {
+			cuts = " cut"
+		}
+		return strings.ToUpper(name[:1]) + name[1:] + cuts + " the root out first, " + share + " by " + when(v.Time) + "; " + drips + "."
 	}
 	return "The root is still there when the window ends at " + when(r.Problem.Drip.Window) + ": " + drips + ", and " + zones + "."
+}
+
+// zoneWords names the shear zones in a sentence: one by its name.
+func (p *Problem) zoneWords() (name string, plural bool) {
+	if len(p.Zones) != 1 {
+		return "the shear zones", true
+	}
+	name = p.Zones[0].Name
+	if strings.Contains(strings.ToLower(name), "zone") && !strings.EqualFold(name, "zone") {
+		return "the " + name, false
+	}
+	return "the shear zone " + name, false
 }

@@ -67,7 +67,9 @@ func SpectrumTable(rates []growth.Rate) Table {
 	return t
 }
 
-// ControlsTable is who resists, and the exact derivatives of the fastest mode.
+// ControlsTable is who resists, and the exact derivatives of the fastest mode: those
+// with respect to density and thickness hold at fixed viscosity, temperature,
+// pressure and density jumps.
 func ControlsTable(s *state.State, m *growth.Mode) Table {
 	t := Table{Name: "controls", Header: []string{"layer", "dissipation_share", "dlnq_dlneta", "dq_drho_1_Myr_per_kg_m3", "dq_dthickness_1_Myr_per_km"}}
 	if m == nil {
@@ -136,15 +138,24 @@ func ExcisionTable(r *race.Result) Table {
 	return t
 }
 
-// ReversalTable is what would change the verdict, in SI.
+// ReversalTable is what would change the verdict, in units of a spreadsheet.
 func ReversalTable(r *race.Result) Table {
-	t := Table{Name: "reversal", Header: []string{"quantity", "key", "unit", "now", "flips_at", "distance", "is_default"}}
+	t := Table{Name: "reversal", Header: []string{"quantity", "key", "unit", "now", "flips_at", "verdict_becomes", "searched", "distance", "is_default",
+		"contrast_now_kg_m3", "contrast_flips_at_kg_m3"}}
 	for _, f := range r.Verdict.Flips {
-		to, d := math.NaN(), math.NaN()
-		if f.Found {
-			to, d = f.To, f.Distance
+		now, unit := trade(f.From, f.Unit)
+		to, d, c0, c1 := math.NaN(), math.NaN(), math.NaN(), math.NaN()
+		if f.HasContrast {
+			c0 = f.ContrastFrom
 		}
-		t.Rows = append(t.Rows, []string{f.Label, f.Key, f.Unit, cell(f.From), cell(to), cell(d), strconv.FormatBool(f.Default)})
+		if f.Found {
+			to, _ = trade(f.To, f.Unit)
+			d = f.Distance
+			if f.HasContrast {
+				c1 = f.ContrastTo
+			}
+		}
+		t.Rows = append(t.Rows, []string{f.Label, f.Key, unit, cell(now), cell(to), f.Outcome, f.Searched, cell(d), strconv.FormatBool(f.Default), cell(c0), cell(c1)})
 	}
 	return t
 }
@@ -157,6 +168,8 @@ func VerdictTable(r *race.Result) Table {
 	row("verdict", v.Outcome, "")
 	row("verdict time", cell(v.Time/Myr), "Myr")
 	row("margin", cell(v.Margin/Myr), "Myr")
+	row("margin to", v.MarginTo, "")
+	row("margin to the window's end", cell(v.WindowMargin/Myr), "Myr")
 	row("margin in log10 root viscosity", cell(v.MarginLog10Viscosity), "")
 	row("fastest wavelength", cell(r.Spectrum.Fastest.Wavelength/km), "km")
 	row("fastest growth rate", cell(r.Spectrum.Fastest.Growth*Myr), "1/Myr")

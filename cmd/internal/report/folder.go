@@ -15,6 +15,7 @@ const markFile = ".keelfall"
 // and moves them there whole.
 type Folder struct {
 	place, temp string
+	made        []string // folders above it that were made for it, the outermost first
 }
 
 // CheckFolder says whether results may be written to place: it is free, or a folder
@@ -38,33 +39,57 @@ func CheckFolder(place string) error {
 	return fmt.Errorf("%s is a folder that keelfall did not write; it is left as it is: choose another with --out", place)
 }
 
-// NewFolder starts a folder for place.
+// NewFolder starts a folder for place, so that a place that cannot be written to is
+// known before anything is computed. It must be finished or abandoned.
 func NewFolder(place string) (*Folder, error) {
 	if err := CheckFolder(place); err != nil {
 		return nil, err
 	}
-	place = filepath.Clean(place)
-	if err := os.MkdirAll(filepath.Dir(place), 0o777); err != nil {
-		return nil, err
+	f := &Folder{place: filepath.Clean(place)}
+	above := filepath.Dir(f.place)
+	for dir := above; ; dir = filepath.Dir(dir) {
+		if _, err := os.Stat(dir); !errors.Is(err, fs.ErrNotExist) || dir == filepath.Dir(dir) {
+			break
+		}
+		f.made = append([]string{dir}, f.made...)
 	}
-	temp, err := os.MkdirTemp(filepath.Dir(place), "."+filepath.Base(place)+".part-")
+	err := os.MkdirAll(above, 0o777)
+	if err == nil {
+		f.temp, err = os.MkdirTemp(above, "."+filepath.Base(f.place)+".part-")
+	}
+	if err == nil {
+		err = os.Chmod(f.temp, 0o755)
+	}
+	if err == nil {
+		err = f.Write(markFile, []byte("Written by keelfall; replaced when the same result is written again.\n"))
+	}
 	if err != nil {
-		return nil, err
-	}
-	f := &Folder{place, temp}
-	if err := os.Chmod(temp, 0o755); err != nil {
 		f.Abandon()
-		return nil, err
+		return nil, f.plain(err)
 	}
-	return f, f.Write(markFile, []byte("Written by keelfall; replaced when the same result is written again.\n"))
+	return f, nil
 }
 
-// Path returns where a file of the folder lies until it is finished.
-func (f *Folder) Path(name string) string { return filepath.Join(f.temp, name) }
+// plain says an error of the file system with the place the user knows instead of the
+// temporary name.
+func (f *Folder) plain(err error) error {
+	var path *fs.PathError
+	var link *os.LinkError
+	switch {
+	case errors.As(err, &path):
+		err = path.Err
+	case errors.As(err, &link):
+		err = link.Err
+	}
+	return fmt.Errorf("%s cannot be written: %w", f.place, err)
+}
 
 // Write adds a file.
 func (f *Folder) Write(name string, b []byte) error {
-	return os.WriteFile(f.Path(name), b, 0o644)
+	if err := os.WriteFile(filepath.Join(f.temp, name), b, 0o644); err != nil {
+		return f.plain(err)
+	}
+	return nil
 }
 
 // Finish moves the folder to its place; an older result there is removed.
@@ -75,14 +100,26 @@ func (f *Folder) Finish() error {
 	old := f.temp + "-old"
 	err := os.Rename(f.place, old)
 	if err != nil && !errors.Is(err, fs.ErrNotExist) {
-		return err
+		return f.plain(err)
 	}
 	if err := os.Rename(f.temp, f.place); err != nil {
 		os.Rename(old, f.place) // put the older result back
-		return err
+		return f.plain(err)
 	}
-	return os.RemoveAll(old)
+	f.temp, f.made = "", nil
+	if err := os.RemoveAll(old); err != nil {
+		return f.plain(err)
+	}
+	return nil
 }
 
-// Abandon removes what was written so far.
-func (f *Folder) Abandon() { os.RemoveAll(f.temp) }
+// Abandon removes what was written so far; after Finish it does nothing.
+func (f *Folder) Abandon() {
+	if f.temp != "" {
+		os.RemoveAll(f.temp)
+	}
+	for i := len(f.made) - 1; i >= 0; i-- {
+		os.Remove(f.made[i]) // only where it is empty
+	}
+	f.temp, f.made = "", nil
+}

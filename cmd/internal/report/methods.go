@@ -44,14 +44,18 @@ func Methods(r *race.Result, p ProvenanceJSON) string {
 	w("Linear stability of incompressible layered Stokes flow, w = W(z) cos kx, u = U(z) sin kx:\n")
 	w("    W' = −kU,  U' = kW + S/η,  Σ' = −kS − g δρ,  S' = kΣ + 4ηk²U\n")
 	w("with [Σ] = ξ[ρ]g at a contact displaced by ξ cos kx, and dξ/dt = W, hence dξ/dt = A(k) ξ. A layer whose composition grades carries its own displacement.")
-	w("Solved by Gauss–Legendre collocation of order 16, each element condensed, the layers joined by impedances [keelfall-collocation]. Growth rates are eigenvalues of A. A layer's dissipation share is the exact logarithmic derivative of the rate with respect to its viscosity.\n")
+	w("Solved by Gauss–Legendre collocation of order 16, each element condensed, the layers joined by impedances [keelfall-collocation]. Growth rates are eigenvalues of A. A layer's dissipation share is the exact logarithmic derivative of the rate with respect to its viscosity; derivatives with respect to density and thickness hold at fixed viscosity, temperature, pressure and density jumps. The geometry of the checks is that of [chandrasekhar1961], [ramberg1968] and [houseman1997].\n")
 	if r.Drip != nil {
 		w("## Drip\n")
 		w("An undulation of %g m on the base of the lowest root layer, all other contacts flat, the same at all wavelengths; the exact solution of dξ/dt = A ξ for the column as it is at the start. It has dripped when the base has descended by %g × the root's thickness; the drip then takes %g of the root's mass.\n", pb.Drip.Amplitude, pb.Drip.Criterion, pb.Drip.Removes)
+		omission := ""
+		if len(pb.Zones) > 0 {
+			omission = " [omission]"
+		}
 		w("## Excision\n")
-		w("A zone of dip θ slipping at s through layering that dips δ towards it takes s sin(θ − δ)/cos δ of vertical thickness per time from the rock directly above it. Heave is s cos θ, throw s sin θ; averaged over an arc of width B the loss is h × heave/(B + heave) [omission].\n")
+		w("A zone of dip θ slipping at s through layering that dips δ towards it takes s sin(θ − δ)/cos δ of vertical thickness per time from the rock directly above it, the lowest of its layers first, and slips on until its interval ends. Heave is s cos θ, throw s sin θ; averaged over an arc of width B a root layer of thickness h loses h × heave/(B + heave) by the zones that cut it, from when they have reached the root%s.\n", omission)
 		w("## Verdict\n")
-		w("One clock for both fates: it stops when %g of the root's initial mass is gone. The mechanism with the larger part is named; both, where the smaller is at least half the larger; preserved, where the window of %s ends first. It is for the column the zones cross; the mean over the arc stands beside it.\n", r.Verdict.Share, myr(pb.Drip.Window))
+		w("One clock for both fates: it stops when %g of the root's initial mass is gone. The mechanism with the larger part is named; both, where the smaller is at least half the larger; preserved, where the window of %s ends first. It is for the column the zones cross; the mean over the arc stands beside it. What would change it is looked for one number at a time; distances are |Δ ln p|, for a density |Δρ|/100 kg/m³, a temperature |ΔT|/100 K, a slip rate from 0 in mm/yr.\n", r.Verdict.Share, myr(pb.Drip.Window))
 	}
 	w("## Defaults taken\n")
 	if len(pb.Defaults) == 0 {

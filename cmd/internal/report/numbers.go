@@ -58,6 +58,23 @@ func Encode(v any) ([]byte, error) {
 	return b.Bytes(), err
 }
 
+// trade converts a value from SI to what a spreadsheet or a page shows, and names it.
+func trade(x float64, unit string) (float64, string) {
+	switch unit {
+	case "x":
+		return x, "factor"
+	case "m":
+		return x / km, "km"
+	case "K":
+		return x - zero, "degC"
+	case "m/s":
+		return x * 1e3 * Year, "mm/yr"
+	case "W/m2":
+		return x * 1e3, "mW/m2"
+	}
+	return x, unit
+}
+
 // sig formats x with n significant digits without an exponent for ordinary sizes, a
 // dash where there is no value.
 func sig(x float64, n int) string {

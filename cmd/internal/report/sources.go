@@ -1,7 +1,6 @@
 package report
 
 import (
-	"fmt"
 	"regexp"
 	"strings"
 
@@ -119,31 +118,17 @@ func slug(s string) string {
 
 var yearIn = regexp.MustCompile(`\b(1[89]\d\d|20\d\d)\b`)
 
-// Bibliography returns sources.bib: one entry a source, the text as it is known here.
-func Bibliography(sources []SourceJSON) string {
-	var b strings.Builder
-	b.WriteString("% Sources of this result. Titles are not given where they were not looked up.\n")
-	for _, s := range sources {
-		if s.Status == "derived" || s.Status == "common practice" {
-			continue
+// fromMemory names the laws in use with numbers that were recalled, not read.
+func fromMemory(p *race.Problem) []string {
+	var out []string
+	for _, l := range lawsOf(p) {
+		if st := lawStatus(&l); strings.HasPrefix(st, "from memory") {
+			if l.Confidence != "" {
+				out = append(out, l.Name+" ("+l.Confidence+" confidence)")
+			} else {
+				out = append(out, l.Name)
+			}
 		}
-		text := s.Text
-		author, year := "", yearIn.FindString(text)
-		name := text
-		if strings.HasPrefix(s.ID, "creep-") {
-			_, name, _ = strings.Cut(text, ": ")
-		}
-		if i := strings.Index(name, year); year != "" && i > 0 {
-			author = strings.ReplaceAll(strings.Trim(name[:i], " ,;:"), " & ", " and ")
-		}
-		fmt.Fprintf(&b, "\n@misc{%s,\n", s.ID)
-		if author != "" && !strings.Contains(author, "=") {
-			fmt.Fprintf(&b, "  author = {%s},\n", author)
-		}
-		if year != "" {
-			fmt.Fprintf(&b, "  year = {%s},\n", year)
-		}
-		fmt.Fprintf(&b, "  howpublished = {%s},\n  note = {numbers: %s}\n}\n", name, s.Status)
 	}
-	return b.String()
+	return out
 }

@@ -3,6 +3,7 @@ package report
 import (
 	"fmt"
 	"strings"
+	"unicode"
 	"unicode/utf8"
 )
 
@@ -51,7 +52,7 @@ func (p *page) item(text string) {
 func wrap(text string, width int) []string {
 	var lines []string
 	var line string
-	for _, w := range strings.Fields(text) {
+	for _, w := range tokens(text) {
 		switch {
 		case line == "":
 			line = w
@@ -65,6 +66,49 @@ func wrap(text string, width int) []string {
 		lines = append(lines, line)
 	}
 	return lines
+}
+
+// units are what stays on one line with the number before it.
+var units = map[string]bool{"%": true, "km": true, "m": true, "mm": true, "Myr": true, "Ma": true, "mm/yr": true, "kg/m3": true,
+	"kg/m³": true, "degC": true, "K": true, "deg": true, "1/s": true, "1/Myr": true, "GPa": true, "MPa": true, "Pa": true, "mW/m2": true}
+
+// tokens splits text at spaces, but not between a number and its unit.
+func tokens(text string) []string {
+	var out []string
+	for _, w := range strings.Fields(text) {
+		if n := len(out); n > 0 && (units[strings.TrimRight(w, ".,;:)*")] || strings.HasPrefix(w, "%")) && numeric(out[n-1]) {
+			out[n-1] += " " + w
+			continue
+		}
+		if n := len(out); n > 0 && strings.TrimRight(w, ".,;:)*") == "s" && strings.HasSuffix(out[n-1], " Pa") {
+			out[n-1] += " " + w
+			continue
+		}
+		out = append(out, w)
+	}
+	return out
+}
+
+// numeric says whether a word ends as a number does: "30", "(12", "10^20.7", "1e-15".
+func numeric(w string) bool {
+	return w != "" && w[len(w)-1] >= '0' && w[len(w)-1] <= '9'
+}
+
+// Count writes a number of things: "1 layer", "3 layers".
+func Count(n int, thing string) string {
+	if n == 1 {
+		return "1 " + thing
+	}
+	return fmt.Sprintf("%d %ss", n, thing)
+}
+
+// upper makes the first letter a capital.
+func upper(s string) string {
+	r := []rune(s)
+	if len(r) > 0 {
+		r[0] = unicode.ToUpper(r[0])
+	}
+	return string(r)
 }
 
 // pad fills s with spaces to n characters.

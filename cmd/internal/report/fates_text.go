@@ -1,0 +1,103 @@
+package report
+
+import (
+	"fmt"
+	"math"
+	"strings"
+
+	"keelfall/solver/race"
+)
+
+func dripText(p *page, r *race.Result) {
+	p.section("DRIP")
+	d, pb := r.Drip, r.Problem
+	if math.IsInf(d.Time, 1) {
+		p.say("%s.", upper(d.Reason))
+		return
+	}
+	limit := ""
+	if d.Outcome == "window" {
+		limit = fmt.Sprintf(", when the window of %s has closed", myr(pb.Drip.Window))
+	}
+	at := "at " + when(pb, d.Time)
+	if d.Time > 1000*Myr {
+		at = "after " + myr(d.Time)
+	}
+	p.say("Drips %s%s. Spacing %s km; any between %s and %s km would follow within 10 %% of that time.", at, limit,
+		short(d.Wavelength/km), sig(d.SpacingFrom/km, 2), sig(d.SpacingTo/km, 2))
+	if n := math.Floor(pb.ArcLength / d.Wavelength); n >= 1 {
+		fit := Count(int(n), "drip") + " of it fit"
+		if n == 1 {
+			fit += "s"
+		}
+		fit += " along the arc's " + short(pb.ArcLength/km) + " km"
+		if pb.Strain.Wavevector != race.AlongStrike {
+			fit = "If that spacing holds along strike, " + strings.Replace(fit, " of it", "", 1)
+		}
+		p.say("%s.", fit)
+	}
+	if d.Excluded != "" {
+		p.say("%s.", upper(d.Excluded))
+	}
+	p.say("From an undulation of %s m%s: three times that gives %s, a third %s.", short(pb.Drip.Amplitude), star(pb, "drip.amplitude"), myr(d.TimeLow), myr(d.TimeHigh))
+	if r.Rate.Used {
+		p.say("Viscosities at %.1e 1/s%s: at three times that %s, at a third %s.", pb.Strain.ReferenceRate, star(pb, "strain.reference-rate"), myr(r.Rate.AtThrice), myr(r.Rate.AtOneThird))
+	}
+	p.say("\"Dripped\" = tip %s km%s below the old base; the drip takes %.0f %%%s of the root's mass.", short(pb.Drip.Criterion*pb.Column.RootThickness()/km), star(pb, "drip.criterion"), 100*pb.Drip.Removes, star(pb, "drip.removes"))
+	p.say("Strain rate in the root %.1e 1/s at the start, %.1e at the drip.", d.StrainRate, d.StrainRateEnd)
+	if w := shares(r.State, d.Mode); w != "" {
+		p.say("Resistance at this wavelength: %s.", w)
+	}
+}
+
+func excisionText(p *page, r *race.Result) {
+	p.section("EXCISION")
+	x, pb := r.Excision, r.Problem
+	if x.Outcome == "no zones" {
+		p.say("No shear zone cuts the root.")
+		return
+	}
+	for _, z := range pb.Zones {
+		s := fmt.Sprintf("%s, dip %.0f deg, slip %s mm/yr, %s to %s", z.Name, z.Dip*180/math.Pi, short(z.SlipRate*1e3*Year), short(z.From/Myr), myr(z.To))
+		if e := z.StrainRate(); e > 0 {
+			s += fmt.Sprintf(", strain rate %.0e 1/s", e)
+		}
+		p.say("%s.", s)
+	}
+	moment := "When the window ends"
+	if x.Outcome == "excised" {
+		moment = fmt.Sprintf("At %s, with %.0f %%%s of the root gone", when(pb, x.Time), 100*x.Share, star(pb, "drip.removes"))
+	}
+	gap := "missing"
+	if x.PressureGap < 0 {
+		gap = "repeated"
+	}
+	across := "the zones"
+	if len(pb.Zones) == 1 {
+		across = "the zone"
+	}
+	p.say("%s: slip %s km, heave %s km, throw %s km, %.2f GPa %s across %s.", moment, short(x.Slip/km), short(x.Heave/km), short(x.Throw/km), math.Abs(x.PressureGap)/1e9, gap, across)
+	switch {
+	case x.Outcome != "window":
+	case math.IsInf(x.LocalBeyond, 1):
+		p.say("At these rates %.0f %%%s of the root would never be gone.", 100*x.Share, star(pb, "drip.removes"))
+	default:
+		p.say("At these rates %.0f %%%s of the root would be gone at %s.", 100*x.Share, star(pb, "drip.removes"), when(pb, x.LocalBeyond))
+	}
+	if pb.ArcWidth > 0 {
+		mean := "Averaged over the arc that share is never reached"
+		if !math.IsInf(x.ArcMeanTime, 1) {
+			mean = "Averaged over the arc that share is reached at " + when(pb, x.ArcMeanTime)
+		}
+		p.say("That is %.0f %% extension of the arc. %s.", 100*x.ExtensionDemanded, mean)
+	} else {
+		p.say("No arc width is given, so the mean over the arc cannot be said.")
+	}
+	if !math.IsInf(x.CutThroughTime, 1) {
+		s := fmt.Sprintf("Cut through: slip %s km, heave %s km", short(x.CutThroughSlip/km), short(x.CutThroughHeave/km))
+		if pb.ArcWidth > 0 {
+			s += fmt.Sprintf(" = %.0f %% extension", 100*x.CutThroughHeave/pb.ArcWidth)
+		}
+		p.say("%s, at %s. The rock moves, none is lost.", s, when(pb, x.CutThroughTime))
+	}
+}

@@ -1,0 +1,278 @@
+package report
+
+import (
+	"fmt"
+	"math"
+	"slices"
+
+	"keelfall/solver/growth"
+	"keelfall/solver/race"
+	"keelfall/solver/state"
+)
+
+// RootBase returns the interface below the lowest root layer, −1 without a root.
+func RootBase(s *state.State) int {
+	if _, last, ok := s.Column.RootSpan(); ok {
+		return last + 1
+	}
+	return -1
+}
+
+// ModesJSON is what `keelfall mode` prints.
+type ModesJSON struct {
+	Wavelength number     `json:"wavelength_m"`
+	Modes      []modeJSON `json:"modes"`
+	Warnings   []string   `json:"warnings"`
+}
+
+type modeJSON struct {
+	Label      string            `json:"label"`
+	Growth     number            `json:"growth_rate_per_s"`
+	Imaginary  number            `json:"imaginary_per_s"`
+	EFold      number            `json:"efold_time_s"`
+	Residual   number            `json:"budget_residual"`
+	Layers     []modeLayerJSON   `json:"layers"`
+	Interfaces []modeContactJSON `json:"interfaces"`
+	Profile    profileJSON       `json:"profile"`
+}
+
+type modeLayerJSON struct {
+	layerShareJSON
+	Gradient number `json:"gradient_work_share"`
+	Thermal  number `json:"thermal_work_share"`
+}
+
+type modeContactJSON struct {
+	contactWorkJSON
+	Strain number `json:"strain_work_share"`
+}
+
+type profileJSON struct {
+	Depth  []number `json:"depth_m"`
+	W      []number `json:"vertical_velocity_per_s"`
+	U      []number `json:"horizontal_velocity_per_s"`
+	Shear  []number `json:"shear_stress_Pa_per_m"`
+	Normal []number `json:"normal_stress_Pa_per_m"`
+}
+
+// at returns x[i], no value where it is not there.
+func valueAt(x []float64, i int) number {
+	if i < len(x) {
+		return number(x[i])
+	}
+	return none
+}
+
+// Modes returns the modes of s at one wavelength.
+func Modes(s *state.State, wavelength float64, modes []*growth.Mode, warnings []string) ModesJSON {
+	j := ModesJSON{number(wavelength), []modeJSON{}, list(warnings)}
+	depths := depthsOf(s)
+	for _, m := range modes {
+		q := modeJSON{Label: m.Label(RootBase(s), depths), Growth: number(m.Growth), Imaginary: number(m.Imaginary),
+			EFold: number(efold(m.Growth)), Residual: number(m.Residual),
+			Profile: profileJSON{numbers(m.Depth), numbers(m.W), numbers(m.U), numbers(m.Shear), numbers(m.Normal)}}
+		for i := 0; i <= len(s.Column.Layers); i++ {
+			name := "base"
+			if i < len(s.Column.Layers) {
+				name = s.Column.Layers[i].Name
+			}
+			q.Layers = append(q.Layers, modeLayerJSON{
+				layerShareJSON{name, valueAt(m.DissipationShare, i), valueAt(m.DlnqDlnEta, i), valueAt(m.DqDrho, i), valueAt(m.DqDh, i)},
+				valueAt(m.GradientWork, i), valueAt(m.ThermalWork, i)})
+		}
+		for i := range s.Jumps {
+			q.Interfaces = append(q.Interfaces, modeContactJSON{
+				contactWorkJSON{number(depths[i]), valueAt(m.WorkShare, i), valueAt(m.Displacement, i), number(s.Jumps[i])},
+				valueAt(m.StrainShare, i)})
+		}
+		j.Modes = append(j.Modes, q)
+	}
+	return j
+}
+
+func depthsOf(s *state.State) []float64 {
+	d := []float64{0}
+	for i := range s.Column.Layers {
+		d = append(d, d[i]+s.Column.Layers[i].Thickness)
+	}
+	return d
+}
+
+// rate says a growth rate, with its oscillation where it has one.
+func rateWords(m *growth.Mode) string {
+	w := fmt.Sprintf("%s 1/Myr", sig(m.Growth*Myr, 4))
+	if m.Growth > 0 {
+		w += ", e-folding time " + myr(1/m.Growth)
+	}
+	if m.Imaginary != 0 {
+		w += fmt.Sprintf(", oscillating with a period of %s", myr(2*math.Pi/m.Imaginary))
+	}
+	return w
+}
+
+// ModesPage is the text of `keelfall mode`: every growing mode, one in full.
+func ModesPage(p *race.Problem, s *state.State, wavelength float64, modes []*growth.Mode, which int) string {
+	pg := titled(p)
+	depths := depthsOf(s)
+	pg.section("MODES")
+	pg.say("At a wavelength of %s km, fastest first:", sig(wavelength/km, 5))
+	for i, m := range modes {
+		pg.line("%2d  %s: %s", i+1, m.Label(RootBase(s), depths), rateWords(m))
+	}
+	if len(modes) == 1 && modes[0].Growth <= 0 {
+		pg.say("Nothing grows at this wavelength; that is the slowest decay.")
+	}
+	m := modes[which]
+	pg.section(fmt.Sprintf("MODE %d", which+1))
+	pg.line("%10s  %-24s  %12s  %12s  %12s", "depth km", "contact", "moves m/m", "gravity %", "strain %")
+	for i := range s.Jumps {
+		name := "surface"
+		switch {
+		case i == len(s.Column.Layers):
+			name = "base"
+		case i > 0:
+			name = s.Column.Layers[i-1].Name + " on " + s.Column.Layers[i].Name
+		}
+		pg.line("%10s  %-24s  %12.3f  %12s  %12s", sig(depths[i]/km, 4), cut(name, 24), m.Displacement[i], percentAt(m.WorkShare, i), percentAt(m.StrainShare, i))
+	}
+	if w := shares(s, m); w != "" {
+		pg.say("Resistance: %s.", w)
+	}
+	for _, part := range []struct {
+		what string
+		work []float64
+	}{{"gradients of composition", m.GradientWork}, {"temperature perturbations", m.ThermalWork}} {
+		var sum float64
+		for _, v := range part.work {
+			sum += v
+		}
+		if math.Abs(sum) > 5e-4 {
+			pg.say("Work done on %s: %.1f %% of the dissipation.", part.what, 100*sum)
+		}
+	}
+	controls(pg, s, m)
+	return pg.b.String()
+}
+
+func percentAt(x []float64, i int) string {
+	if i < len(x) {
+		return fmt.Sprintf("%.1f", 100*x[i])
+	}
+	return "-"
+}
+
+// Control is one exact derivative of the growth rate, made comparable: the relative
+// change of the rate for a stated change of one layer.
+type Control struct {
+	Layer  string  `json:"layer"`
+	What   string  `json:"what"`   // viscosity, density or thickness
+	Change string  `json:"change"` // what it is changed by
+	Effect float64 `json:"dlnq"`   // resulting relative change of the rate
+}
+
+// Controls ranks what controls a mode: viscosity × e^0.1, density + 10 kg/m³, thickness
+// + 10 %, each alone, all else held.
+func Controls(s *state.State, m *growth.Mode) []Control {
+	out := []Control{}
+	if m == nil || m.Growth == 0 {
+		return out
+	}
+	for i := 0; i <= len(s.Column.Layers); i++ {
+		name, h := "half-space", 0.0
+		if i < len(s.Column.Layers) {
+			name, h = s.Column.Layers[i].Name, s.Column.Layers[i].Thickness
+		}
+		if i < len(m.DlnqDlnEta) {
+			out = append(out, Control{name, "viscosity", "+ 10 %", 0.1 * m.DlnqDlnEta[i]})
+		}
+		if i < len(m.DqDrho) {
+			out = append(out, Control{name, "density", "+ 10 kg/m3", 10 * m.DqDrho[i] / math.Abs(m.Growth)})
+		}
+		if i < len(m.DqDh) {
+			out = append(out, Control{name, "thickness", "+ 10 %", 0.1 * h * m.DqDh[i] / math.Abs(m.Growth)})
+		}
+	}
+	slices.SortStableFunc(out, func(a, b Control) int {
+		switch x, y := math.Abs(a.Effect), math.Abs(b.Effect); {
+		case x > y:
+			return -1
+		case x < y:
+			return 1
+		}
+		return 0
+	})
+	return out
+}
+
+// controls writes the ranked list, effects above half a percent.
+func controls(pg *page, s *state.State, m *growth.Mode) {
+	all := Controls(s, m)
+	if len(all) == 0 {
+		return
+	}
+	pg.section("CONTROLS")
+	pg.say("Change of the growth rate for a change of one layer, all else held (exact derivatives; viscosities, temperatures and density jumps as they are):")
+	for i, c := range all {
+		if i == 10 || math.Abs(c.Effect) < 5e-3 {
+			break
+		}
+		pg.line("%-28s %-10s %-11s %+7.1f %%", cut(c.Layer, 28), c.What, c.Change, 100*c.Effect)
+	}
+}
+
+// BranchJSON is one mode followed across wavelengths.
+type BranchJSON struct {
+	Label      []string `json:"label"`
+	Wavelength []number `json:"wavelength_m"`
+	Growth     []number `json:"growth_rate_per_s"`
+	Imaginary  []number `json:"imaginary_per_s"`
+}
+
+// Branches returns every branch of a spectrum.
+func Branches(s *state.State, all []growth.Branch) []BranchJSON {
+	out := []BranchJSON{}
+	depths := depthsOf(s)
+	for _, b := range all {
+		var j BranchJSON
+		for _, m := range b.Modes {
+			j.Label = append(j.Label, m.Label(RootBase(s), depths))
+			j.Wavelength = append(j.Wavelength, number(m.Wavelength))
+			j.Growth = append(j.Growth, number(m.Growth))
+			j.Imaginary = append(j.Imaginary, number(m.Imaginary))
+		}
+		out = append(out, j)
+	}
+	return out
+}
+
+// BranchesTable is every branch as one table.
+func BranchesTable(s *state.State, all []growth.Branch) Table {
+	t := Table{Name: "branches", Header: []string{"branch", "label", "wavelength_km", "growth_rate_1_Myr", "imaginary_1_Myr"}}
+	depths := depthsOf(s)
+	for i, b := range all {
+		for _, m := range b.Modes {
+			t.Rows = append(t.Rows, []string{fmt.Sprint(i + 1), m.Label(RootBase(s), depths), cell(m.Wavelength / km), cell(m.Growth * Myr), cell(m.Imaginary * Myr)})
+		}
+	}
+	return t
+}
+
+// BranchesText lists the branches: where each grows and where it is fastest.
+func BranchesText(s *state.State, all []growth.Branch) string {
+	pg := &page{}
+	depths := depthsOf(s)
+	pg.section("BRANCHES")
+	pg.line("%-3s %-30s %16s  %14s  %14s", "", "what moves, where it is fastest", "from-to km", "fastest km", "e-folding Myr")
+	for i, b := range all {
+		best := b.Modes[0]
+		for _, m := range b.Modes {
+			if m.Growth > best.Growth {
+				best = m
+			}
+		}
+		first, last := b.Modes[0], b.Modes[len(b.Modes)-1]
+		pg.line("%-3d %-30s %16s  %14s  %14s", i+1, best.Label(RootBase(s), depths),
+			sig(first.Wavelength/km, 3)+"-"+sig(last.Wavelength/km, 3), sig(best.Wavelength/km, 3), sig(efold(best.Growth)/Myr, 3))
+	}
+	return pg.b.String()
+}

@@ -1,0 +1,87 @@
+package configs
+
+import "fmt"
+
+// crossCheck checks what layers and zones say about one another. It works on a tree
+// that may have other mistakes, and then leaves out what it cannot know.
+func (e *Experiment) crossCheck(w *walker) {
+	index := map[string]int{}
+	names := []string{}
+	complete := true // no layer whose name is unknown
+	last := -1
+	for i := range e.data.Layers {
+		l := e.data.Layers[i].Layer
+		if l == nil || !l.Name.given() {
+			complete = false
+			continue
+		}
+		index[l.Name.Value] = i
+		names = append(names, l.Name.Value)
+		if !l.Root.On {
+			continue
+		}
+		if last >= 0 && last != i-1 {
+			w.addf(l.Root.n, l.path+".root", "is not adjacent to the root layer %s; root layers follow one another", e.data.Layers[last].Layer.Name.Value)
+		}
+		last = i
+	}
+	if complete {
+		e.undulation(w)
+	}
+	if e.data.Excision == nil || !complete {
+		return
+	}
+	for i := range e.data.Excision.Zones {
+		z := &e.data.Excision.Zones[i]
+		before := -1
+		for j, cut := range z.Cuts {
+			if !cut.given() {
+				break
+			}
+			k, ok := index[cut.Value]
+			path := fmt.Sprintf("%s.cuts[%d]", z.path, j)
+			if !ok {
+				w.addf(cut.n, path, "%s is not a layer; %s", cut.n.show(), didYouMean(cut.Value, firstFew(names)))
+				break
+			}
+			if before >= 0 && k != before+1 {
+				w.addf(cut.n, path, "%s does not lie directly below %s; a zone cuts adjacent layers, named from above", cut.Value, z.Cuts[j-1].Value)
+				break
+			}
+			before = k
+		}
+	}
+}
+
+func firstFew(names []string) []string { return names[:min(len(names), 200)] }
+
+// undulation refuses an amplitude that is a drip at the start. A written amplitude is
+// named itself; where it is the default, the mistake stands at the thickness of the
+// lowest root layer.
+func (e *Experiment) undulation(w *walker) {
+	d := e.data.Drip
+	if d == nil || !d.Amplitude.given() || !d.Criterion.given() {
+		return
+	}
+	var thickness float64
+	var lowest quantity
+	for i := range e.data.Layers {
+		l := e.data.Layers[i].Layer
+		if !l.Root.On {
+			continue
+		}
+		if !l.Thickness.given() {
+			return
+		}
+		thickness, lowest = thickness+l.Thickness.SI, l.Thickness
+	}
+	if thickness == 0 || d.Amplitude.SI < d.Criterion.SI*thickness {
+		return
+	}
+	at, is := d.Amplitude.n, d.Amplitude.n.show()
+	if at.from == fromDefault {
+		at, is = lowest.n, is+" (the default)"
+	}
+	w.addf(at, "drip.amplitude", "%s is a drip already at the start; needs less than criterion × root thickness, %s × %.6g km = %.6g km",
+		is, d.Criterion.n.show(), thickness/1e3, d.Criterion.SI*thickness/1e3)
+}

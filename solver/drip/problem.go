@@ -1,0 +1,169 @@
+package drip
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+	"runtime"
+	"sync"
+
+	"keelfall/solver/growth"
+	"keelfall/solver/state"
+)
+
+// problem is one root whose drip times are asked.
+type problem struct {
+	solver      *growth.Solver
+	set         Settings
+	first, last int     // root layers
+	base        int     // interface below the lowest root layer
+	thickness   float64 // of the root, m
+	ratio       float64 // criterion × thickness / amplitude
+	workers     int
+	points      []*Frozen // by increasing wavelength
+}
+
+func (p *problem) frozen(s *growth.Solver, wavelength float64) (*Frozen, error) {
+	sys, err := s.System(wavelength)
+	if err != nil {
+		return nil, err
+	}
+	return NewFrozen(sys, p.base)
+}
+
+// curve follows wavelengths between from and to on all cores; worker w owns its
+// slots, so the result does not depend on how many there are.
+func (p *problem) curve(ctx context.Context, from, to float64, perOctave int) error {
+	n := int(math.Ceil(float64(perOctave)*math.Log2(to/from))) + 1
+	n = max(n, 2)
+	p.points = make([]*Frozen, n)
+	workers := p.workers
+	if workers <= 0 {
+		workers = runtime.GOMAXPROCS(0)
+	}
+	errs := make([]error, workers)
+	var wg sync.WaitGroup
+	for w := range workers {
+		wg.Go(func() {
+			for i := w; i < n && errs[w] == nil; i += workers {
+				if errs[w] = ctx.Err(); errs[w] != nil {
+					return
+				}
+				p.points[i], errs[w] = p.frozen(p.solver, from*math.Pow(to/from, float64(i)/float64(n-1)))
+			}
+		})
+	}
+	wg.Wait()
+	return errors.Join(errs...)
+}
+
+// time returns when wavelength f drips from an amplitude a.
+func (p *problem) time(f *Frozen, a float64) float64 {
+	return f.Time(p.ratio*p.set.Amplitude/a, Horizon)
+}
+
+func (p *problem) curveOf() Curve {
+	var c Curve
+	for _, f := range p.points {
+		c.Wavelength = append(c.Wavelength, f.Wavelength)
+		c.Time = append(c.Time, p.time(f, p.set.Amplitude))
+		c.Low = append(c.Low, p.time(f, 3*p.set.Amplitude))
+		c.High = append(c.High, p.time(f, p.set.Amplitude/3))
+	}
+	return c
+}
+
+// newProblem checks the settings and lays out the root of s.
+func newProblem(s *state.State, set Settings, workers int) (*problem, error) {
+	first, last, ok := s.Column.RootSpan()
+	if !ok {
+		return nil, ErrNoRoot
+	}
+	thickness := s.Column.RootThickness()
+	switch {
+	case !(set.Amplitude > 0) || math.IsInf(set.Amplitude, 0):
+		return nil, fmt.Errorf("drip: amplitude %g m; must be positive", set.Amplitude)
+	case !(set.Criterion > 0):
+		return nil, fmt.Errorf("drip: criterion %g; must be positive", set.Criterion)
+	case !(set.Window > 0):
+		return nil, fmt.Errorf("drip: window %g s; must be positive", set.Window)
+	case set.Amplitude >= set.Criterion*thickness:
+		return nil, fmt.Errorf("drip: an amplitude of %.4g m already is the drip: %g × the root's %.4g m", set.Amplitude, set.Criterion, thickness)
+	}
+	p := &problem{set: set, ratio: set.Criterion * thickness / set.Amplitude, first: first, last: last,
+		base: last + 1, thickness: thickness, workers: workers}
+	var err error
+	p.solver, err = growth.NewSolver(Model(s), 0)
+	return p, err
+}
+
+// spacing returns the range of wavelengths around the first drip's whose own drips
+// come within 10 % of its time, interpolated in ln λ.
+func (p *problem) spacing(t, wavelength, limit float64) (from, to float64) {
+	target := 1.1 * t
+	from, to = wavelength, wavelength
+	lastW, lastT := wavelength, t
+	for i := len(p.points) - 1; i >= 0; i-- {
+		f := p.points[i]
+		if f.Wavelength >= wavelength {
+			continue
+		}
+		ti := p.time(f, p.set.Amplitude)
+		if ti > target {
+			from = between(lastW, lastT, f.Wavelength, ti, target)
+			break
+		}
+		from, lastW, lastT = f.Wavelength, f.Wavelength, ti
+	}
+	lastW, lastT = wavelength, t
+	for _, f := range p.points {
+		if f.Wavelength <= wavelength {
+			continue
+		}
+		if f.Wavelength > limit {
+			to = math.Max(to, math.Min(limit, f.Wavelength))
+			break
+		}
+		ti := p.time(f, p.set.Amplitude)
+		if ti > target {
+			to = between(lastW, lastT, f.Wavelength, ti, target)
+			break
+		}
+		to, lastW, lastT = f.Wavelength, f.Wavelength, ti
+	}
+	return from, to
+}
+
+func between(w0, t0, w1, t1, t float64) float64 {
+	if math.IsInf(t1, 1) || t1 == t0 {
+		return w0
+	}
+	return w0 * math.Pow(w1/w0, (t-t0)/(t1-t0))
+}
+
+// finish adds the history, the leading mode and the strain rates of the first drip.
+func (p *problem) finish(r *Result) error {
+	f, err := p.frozen(p.solver, r.Wavelength)
+	if err != nil {
+		return err
+	}
+	r.Rate = f.Fastest()
+	const n = 200
+	for i := 0; i <= n; i++ {
+		t := r.Time * float64(i) / n
+		r.History.Time = append(r.History.Time, t)
+		r.History.Base = append(r.History.Base, p.set.Amplitude*math.Abs(f.Base(t)))
+	}
+	if r.Mode, err = p.solver.Mode(r.Wavelength); err != nil {
+		return err
+	}
+	if d := math.Abs(r.Mode.Displacement[p.base]); d > 0 {
+		for i := p.first; i <= p.last; i++ {
+			perMetre := r.Mode.StrainRate[i] / d
+			r.StrainRate = math.Max(r.StrainRate, perMetre*p.set.Amplitude)
+			r.StrainRateEnd = math.Max(r.StrainRateEnd, perMetre*p.set.Criterion*p.thickness)
+		}
+	}
+	return nil
+}

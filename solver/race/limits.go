@@ -1,0 +1,65 @@
+package race
+
+import (
+	"fmt"
+	"math"
+
+	"keelfall/column"
+)
+
+// peeling looks for the weakest rock above the root.
+func (r *Result) peeling() {
+	first, _, _ := r.Problem.Column.RootSpan()
+	weakest := math.Inf(1)
+	for i := range first {
+		for _, p := range r.State.Layers[i].Points {
+			if p.Viscosity < weakest {
+				weakest = p.Viscosity
+				r.Peeling = Peeling{r.Problem.Column.Layers[i].Name, p.Viscosity, p.Viscosity <= BirdViscosity}
+			}
+		}
+	}
+}
+
+// words says what the screen for peeling found.
+func (v Peeling) words() string {
+	if v.Viscosity == 0 {
+		return "peeling from an edge (delamination) is outside one dimension, and is not excluded"
+	}
+	weakest := fmt.Sprintf("the weakest rock above the root, %s at 10^%.1f Pa s", v.Layer, math.Log10(v.Viscosity))
+	if v.Possible {
+		return "peeling from an edge (delamination) is possible by Bird's criterion: " + weakest +
+			", is not stiffer than 1e18 Pa s (Bird 1979); it is outside one dimension"
+	}
+	return "peeling from an edge (delamination) is not expected by Bird's criterion (" + weakest +
+		", is stiffer than 1e18 Pa s; Bird 1979), and is not excluded: it is outside one dimension"
+}
+
+// limits says what this computation leaves out.
+func (p *Problem) limits(peel Peeling) []string {
+	l := []string{
+		"linear theory carried to a full drip: about 10 % slow for Newtonian rock beside two-dimensional solutions (ratio 0.89 to 0.93, derived)",
+		"the column is frozen: no cooling, heating, reaction, melting or stretching while the root drips or is cut",
+		"one drip only: what one drip removes stands in for the share that counts as removal",
+	}
+	var soft, warm bool
+	for i := range p.Column.Layers {
+		v := &p.Column.Layers[i].Viscosity
+		soft = soft || v.Creep != nil || v.Exponent > 1
+		warm = warm || p.Column.Layers[i].Density.NeedsTemperature()
+	}
+	switch b := &p.Column.Base; b.Boundary {
+	case column.HalfSpace:
+		soft = soft || b.Viscosity.Creep != nil || b.Viscosity.Exponent > 1
+		warm = warm || b.Density.NeedsTemperature()
+	case column.Inviscid:
+		warm = warm || b.Density.NeedsTemperature()
+	}
+	if soft {
+		l = append(l, "power-law softening by the drip itself is left out: viscosities are isotropic, at the reference strain rate; rock drips sooner or later than that as its own strain rate is above or below it")
+	}
+	if warm {
+		l = append(l, "thermal buoyancy of the undulation is left out: rock keeps the density of its composition at the contact")
+	}
+	return append(l, peel.words(), "subduction drag and the third dimension are left out")
+}
