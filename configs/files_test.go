@@ -8,7 +8,10 @@ import (
 	"strings"
 	"testing"
 
+	"gonum.org/v1/gonum/floats/scalar"
+
 	"keelfall/column"
+	"keelfall/rheology"
 )
 
 func TestGeothermFile(t *testing.T) {
@@ -74,5 +77,34 @@ func TestResolved(t *testing.T) {
 	}
 	if len(e.Remarks) != 2 || e.Remarks[0].Path != "excision.zones[0] (Elvik zone)" {
 		t.Errorf("%+v", e.Remarks)
+	}
+}
+
+// TestInlineLaw: a catalogue law written out as in its table is the catalogue's law.
+func TestInlineLaw(t *testing.T) {
+	for name, inline := range map[string]string{
+		"dry olivine dislocation Hirth 2003": "prefactor: %s MPa^-3.5 s^-1, stress-exponent: 3.5",
+		"dry olivine diffusion Hirth 2003":   "prefactor: %s MPa^-1 um^3 s^-1, stress-exponent: 1, grain-exponent: 3",
+		"wet olivine dislocation Hirth 2003": "prefactor: %s MPa^-4.7 s^-1, stress-exponent: 3.5, water-exponent: 1.2, water: fugacity",
+	} {
+		want, err := rheology.Find(name)
+		if err != nil {
+			t.Fatal(err)
+		}
+		published, _ := json.Marshal(want.LaboratoryA)
+		text := swap("creep: dry eclogite Zhang 2007", "grain-size: 1 mm, water: {fugacity: 1 MPa}, creep: {"+strings.Replace(inline, "%s", string(published), 1)+", activation-energy: 530 kJ/mol, test: axial}")
+		got := mustProblem(t, mustRead(t, "s.yaml", text)).Column.Layers[1].Viscosity.Creep.Laws[0]
+		// 1e-12: powers of 10^6 and of the micrometre, rounded in another order
+		if !scalar.EqualWithinRel(got.A, want.A, 1e-12) || !scalar.EqualWithinRel(got.LaboratoryA, want.LaboratoryA, 1e-12) || got.Water != want.Water || got.E != 530e3 {
+			t.Errorf("%s: A %v, want %v; published %v, want %v", name, got.A, want.A, got.LaboratoryA, want.LaboratoryA)
+		}
+	}
+	// ε_II = F A τ_II^n: derived from the definitions of the invariants.
+	for test, factor := range map[string]float64{"axial": 4.5, "plane-strain": 8, "shear": 0.5} {
+		text := swap("creep: dry eclogite Zhang 2007", "creep: {prefactor: 2 Pa^-3/s, stress-exponent: 3, activation-energy: 0 J/mol, test: "+test+"}")
+		got := mustProblem(t, mustRead(t, "s.yaml", text)).Column.Layers[1].Viscosity.Creep.Laws[0]
+		if !scalar.EqualWithinRel(got.A, 2*factor, 1e-15) {
+			t.Errorf("%s: A %v, want %v", test, got.A, 2*factor)
+		}
 	}
 }

@@ -147,7 +147,7 @@ func Solve(ctx context.Context, s *state.State, set Settings, o Options) (*Resul
 		r.Reason = "it would drip, but only after the window has closed"
 	}
 	if o.Limit > 0 && r.Unrestricted.Time < 0.99*r.Time {
-		r.Excluded = fmt.Sprintf("wavelengths beyond %s were computed and not used; the first of them to drip is %.3g km", o.LimitIs, r.Unrestricted.Wavelength/1e3)
+		r.Excluded = fmt.Sprintf("wavelengths beyond %s, were computed and not used; the first of them to drip is %.3g km", o.LimitIs, r.Unrestricted.Wavelength/1e3)
 	}
 	r.SpacingFrom, r.SpacingTo = p.spacing(r.Time, r.Wavelength, limit)
 	if err := p.finish(r); err != nil {
@@ -169,7 +169,7 @@ func never(contrast float64, free Fastest, o Options) (outcome, reason string) {
 		}
 		return "buoyant", "never drips: the root is " + word + Weigh(contrast)
 	case !math.IsInf(free.Time, 1):
-		return "window", fmt.Sprintf("no wavelength within %s drips, though one of %.3g km would", o.LimitIs, free.Wavelength/1e3)
+		return "window", fmt.Sprintf("no wavelength within %s, drips, though one of %.3g km would", o.LimitIs, free.Wavelength/1e3)
 	}
 	return "window", "does not drip in 1e5 Myr, though the root is " + Weigh(contrast)
 }

@@ -117,6 +117,11 @@ func TestFlipsFromZero(t *testing.T) {
 	if got, want := density.Distance, (density.To-density.From)/100; math.Abs(got/want-1) > 1e-9 {
 		t.Errorf("distance %g, want %g", got, want)
 	}
+	idle := light() // a zone in the crust has no say
+	idle.Zones = append(idle.Zones, excision.Zone{Name: "crustal", Dip: 1, Cuts: []string{"crust"}, To: 30 * myr, SlipRate: 1e-3 / year})
+	if f := flip(t, run(t, idle), "slip rate"); f.Key != "excision.zones.zone.slip-rate" || !f.Found {
+		t.Errorf("with a zone that does not cut the root: %+v", f)
+	}
 	slip := flip(t, r, "slip rate")
 	// 30 % of 12 km by a 30° zone within 30 Myr: 0.24 mm/yr (by hand)
 	if !slip.Found || slip.From != 0 || slip.Outcome != "excised" || math.Abs(slip.To/(0.24e-3/year)-1) > 0.005 {
@@ -143,7 +148,7 @@ func TestFlipsOfSeveralLayers(t *testing.T) {
 	for label, keys := range map[string][]string{
 		"root viscosity":         {"layers.root.viscosity-factor", "layers.lower root.viscosity-factor"},
 		"density contrast":       {"layers.root.density", "layers.lower root.density"},
-		"slip rate of all zones": {"excision.zones.zone.slip-rate", "excision.zones.second.slip-rate"},
+		"slip rate of the zones": {"excision.zones.zone.slip-rate", "excision.zones.second.slip-rate"},
 	} {
 		f := flip(t, r, label)
 		if len(f.Keys) != len(keys) {

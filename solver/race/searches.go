@@ -38,8 +38,8 @@ func (r *Result) searches() []search {
 			q.Strain.ReferenceRate *= math.Exp(x)
 		}))
 	}
-	if len(p.Zones) > 0 {
-		list = append(list, r.slipSearch())
+	if s := r.slipSearch(); len(s.keys(0)) > 0 {
+		list = append(list, s)
 	}
 	return list
 }
@@ -148,38 +148,42 @@ func temperatureSearch(p *Problem) search {
 	}
 }
 
-// slipSearch multiplies every zone's slip rate by one factor; where none slips, it
-// adds to all of them.
+// slipSearch multiplies the slip rate of every zone that cuts the root by one factor;
+// where none of them slips, it adds to all of them.
 func (r *Result) slipSearch() search {
 	p := r.Problem
-	names := make([]string, len(p.Zones))
+	var cutting []int
+	var names []string
 	still := true
 	for i, z := range p.Zones {
-		names[i] = z.Name
-		still = still && z.SlipRate == 0
+		if slices.ContainsFunc(p.Column.Layers, func(l column.Layer) bool { return l.Root && slices.Contains(z.Cuts, l.Name) }) {
+			cutting, names = append(cutting, i), append(names, z.Name)
+			still = still && z.SlipRate == 0
+		}
 	}
 	key := func(name string) string { return "excision.zones." + name + ".slip-rate" }
 	rate := func(now, x float64) float64 { return now * math.Exp(x) }
-	f := Flip{Key: key(strings.Join(names, "+")), Label: "slip rate of all zones", Unit: "x", From: 1, Searched: fmt.Sprintf("× %.0f", mostFactor)}
+	f := Flip{Key: key(strings.Join(names, "+")), Label: "slip rate of the zones", Unit: "x", From: 1, Searched: fmt.Sprintf("× %.0f", mostFactor)}
 	most := math.Log(mostFactor)
 	if still {
 		rate = func(_, x float64) float64 { return perSlip * math.Max(0, x) }
-		f.Unit, f.From, f.Searched, most = "m/s", 0, fmt.Sprintf("0 to %.0f mm/yr", mostSlip), mostSlip
+		f.Unit, f.From, f.Searched, most = "m/s", 0, fmt.Sprintf("%.0f mm/yr", mostSlip), mostSlip
 	}
-	if len(p.Zones) == 1 {
-		f.Label, f.Unit, f.From = "slip rate", "m/s", p.Zones[0].SlipRate
+	if len(cutting) == 1 {
+		f.Label, f.Unit, f.From = "slip rate", "m/s", p.Zones[cutting[0]].SlipRate
 	}
 	from := f.From
 	return search{flip: f, most: most,
 		value: func(x float64) float64 { return rate(from, x) },
 		change: func(q *Problem, x float64) {
-			for i := range q.Zones {
+			for _, i := range cutting {
 				q.Zones[i].SlipRate = rate(q.Zones[i].SlipRate, x)
 			}
 		},
 		keys: func(x float64) []Change {
 			var c []Change
-			for _, z := range p.Zones {
+			for _, i := range cutting {
+				z := &p.Zones[i]
 				c = append(c, Change{key(z.Name), "m/s", z.SlipRate, rate(z.SlipRate, x)})
 			}
 			return c

@@ -175,7 +175,11 @@ func VerdictTable(r *race.Result) Table {
 	row("fastest growth rate", cell(r.Spectrum.Fastest.Growth*Myr), "1/Myr")
 	if r.Drip != nil {
 		row("drip time", cell(r.Drip.Time/Myr), "Myr")
-		row("drip wavelength", cell(r.Drip.Wavelength/km), "km")
+		wavelength := r.Drip.Wavelength / km
+		if math.IsInf(r.Drip.Time, 1) {
+			wavelength = math.NaN()
+		}
+		row("drip wavelength", cell(wavelength), "km")
 		row("excision time", cell(r.Excision.LocalBeyond/Myr), "Myr")
 		row("share taken by the drip", cell(v.Shares.Drip), "")
 		row("share taken by excision", cell(v.Shares.Excision), "")

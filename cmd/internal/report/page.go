@@ -137,7 +137,7 @@ func value(f race.Flip, x float64) string {
 	case "K":
 		return fmt.Sprintf("%.0f degC", x-zero)
 	case "kg/m3":
-		return sig(x, 4) + " kg/m3"
+		return fmt.Sprintf("%.4g kg/m3", x)
 	case "1/s":
 		return fmt.Sprintf("%.2g 1/s", x)
 	}

@@ -6,6 +6,7 @@ import (
 	"encoding/json"
 	"math"
 	"regexp"
+	"strconv"
 	"strings"
 	"testing"
 	"unicode/utf8"
@@ -126,6 +127,34 @@ func TestReversalUnits(t *testing.T) {
 	}
 	if seen != len(want) {
 		t.Errorf("%d rows of %d seen", seen, len(want))
+	}
+}
+
+// The keys of a change, set in the experiment as a user would, give its outcome.
+func TestReversalKeys(t *testing.T) {
+	for _, name := range []string{"tarnvik", "osmund"} {
+		r, _ := result(t, name)
+		found := 0
+		for _, f := range r.Verdict.Flips {
+			if !f.Found {
+				continue
+			}
+			found++
+			var set []string
+			for _, c := range f.Keys {
+				unit := " " + c.Unit
+				if c.Unit == "x" {
+					unit = ""
+				}
+				set = append(set, c.Key+"="+strconv.FormatFloat(c.To, 'g', -1, 64)+unit)
+			}
+			if got, _ := result(t, name, set...); got.Verdict.Outcome != f.Outcome {
+				t.Errorf("%s --set %q: %s, want %s", name, set, got.Verdict.Outcome, f.Outcome)
+			}
+		}
+		if found == 0 {
+			t.Errorf("%s: no change to confirm", name)
+		}
 	}
 }
 
