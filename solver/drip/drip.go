@@ -153,7 +153,7 @@ func Solve(ctx context.Context, s *state.State, set Settings, o Options) (*Resul
 	if err := p.finish(r); err != nil {
 		return nil, err
 	}
-	if w := rateCaution(s, r); w != "" {
+	if w := rateCaution(s, r); w != "" && set.Softening != "self" {
 		r.Warnings = append(r.Warnings, w)
 	}
 	return r, nil

@@ -170,10 +170,14 @@ func Compute(ctx context.Context, c *Column, o Options) (*Spectrum, error) {
 // Range returns the wavelengths in m that a spectrum covers where none are asked:
 // from the thinnest layer to twenty times the column.
 func (s *Solver) Range() (from, to float64) {
-	depth := s.depths[len(s.depths)-1]
+	layers := s.c.Layers
+	if s.below { // not the stretch of half-space that only temperature sees
+		layers = layers[:len(layers)-1]
+	}
+	depth := s.depths[len(layers)]
 	thinnest := depth
-	for i := range s.c.Layers {
-		thinnest = math.Min(thinnest, s.c.Layers[i].Thickness)
+	for i := range layers {
+		thinnest = math.Min(thinnest, layers[i].Thickness)
 	}
 	return math.Max(thinnest, depth/100), 20 * depth
 }

@@ -60,35 +60,21 @@ func shape(s, h float64, v, dv *[degree + 1]float64) {
 	}
 }
 
-// heatMesh divides the layers so that an element spans at most heatSpan/k; refined, it
-// halves every element.
-func (s *Solver) heatMesh(k float64, refined bool) ([]heatElement, int) {
+// heatMesh groups the flow's elements into elements for heat, so that no flow element
+// sees a kink of T': a group spans at most heatSpan of kh and heatSwing of ln η, or is
+// one element. Refined, groups are half as long.
+func (s *Solver) heatMesh(m *mesh, p *ports) ([]heatElement, int) {
 	var es []heatElement
-	for i := range s.c.Layers {
-		top, h := s.depths[i], s.c.Layers[i].Thickness
-		if s.below && i == len(s.c.Layers)-1 { // 8/k of half-space: elements that grow
-			first := math.Min(0.08, 0.15*top/h) // of h; heat diffuses over less than the column
-			for z := 0.0; z < 1; {
-				next := math.Min(1, z+first)
-				if 1-next < 0.5*first {
-					next = 1
-				}
-				es = append(es, heatElement{z: top + h*z, h: h * (next - z), layer: i})
-				z, first = next, 2*first
-			}
-			continue
+	fresh := true
+	for i := range m.elems {
+		f := &m.elems[i]
+		if n := len(es); !fresh && f.z+f.h-es[n-1].z <= s.heatLength(m, f.layer)*(1+1e-9) {
+			es[n-1].h = f.z + f.h - es[n-1].z
+		} else {
+			es = append(es, heatElement{z: f.z, h: f.h, layer: f.layer})
 		}
-		n := max(1, int(math.Ceil(k*h/heatSpan+s.layerSwing(i)/heatSwing)))
-		for j := range n {
-			es = append(es, heatElement{z: top + h*float64(j)/float64(n), h: h / float64(n), layer: i})
-		}
-	}
-	if refined {
-		var half []heatElement
-		for _, e := range es {
-			half = append(half, heatElement{z: e.z, h: e.h / 2, layer: e.layer}, heatElement{z: e.z + e.h/2, h: e.h / 2, layer: e.layer})
-		}
-		es = half
+		// the stretch of half-space is cut where heat needs it
+		fresh = f.last || s.below && f.layer == len(s.c.Layers)-1
 	}
 	dof := 0
 	for i := range es {
@@ -120,20 +106,25 @@ const (
 	heatSwing = 8
 )
 
-// layerSwing returns the change of ln η across a layer.
-func (s *Solver) layerSwing(layer int) float64 {
-	var sum float64
+// heatLength returns how long a heat element of a layer may be, m.
+func (s *Solver) heatLength(m *mesh, layer int) float64 {
+	h := s.c.Layers[layer].Thickness
+	var swing float64
 	for i := range s.segments {
 		if g := &s.segments[i]; g.layer == layer {
-			sum += g.swing(g.top, g.bottom)
+			swing += g.swing(g.top, g.bottom)
 		}
 	}
-	return sum
+	n := math.Ceil(m.high*h/heatSpan + swing/heatSwing)
+	if m.refined {
+		n *= 2
+	}
+	return h / n
 }
 
 // coupleHeat adds the coefficients of T' to the states.
 func (s *Solver) coupleHeat(m *mesh, k float64, p *ports, c *coupling) {
-	es, dof := s.heatMesh(m.high, m.refined)
+	es, dof := s.heatMesh(m, p)
 	first := c.n
 	n := first + dof
 	tied := -1 // the state an inviscid base ties T' to

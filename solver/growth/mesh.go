@@ -68,7 +68,7 @@ func (g *segment) swing(a, b float64) float64 {
 // divide fills m with a mesh for the band [low, high].
 func (s *Solver) divide(m *mesh, low, high float64, r rule) {
 	m.low, m.high = low, high
-	s.stretch(low)
+	s.stretch(low, m.refined)
 	m.spare, m.elems = m.elems, m.spare[:0]
 	if m.elems == nil {
 		m.elems = make([]element, 0, 48)

@@ -77,7 +77,7 @@ func (s *Solver) band(k float64) error {
 				s.bandError = math.Max(s.bandError, change/size)
 			}
 		}
-		if s.bandError <= s.tol || try == 3 {
+		if s.bandError <= s.tol || try == 3 || s.c.Diffusion != nil { // the heat mesh does not follow the rule
 			return nil
 		}
 		f := math.Pow(s.tol/s.bandError, 1.0/(2*stages)) * 0.9

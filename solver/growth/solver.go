@@ -113,17 +113,37 @@ func (c *Column) extended() *Column {
 	return &e
 }
 
-// stretch makes the added layer 8/k thick.
-func (s *Solver) stretch(k float64) {
+// stretch makes the added layer 8/k thick and cuts it where heat needs elements: short
+// ones at its top, where temperature diffuses over less than the column's depth, each
+// twice as long as the one above; half as long where refined.
+func (s *Solver) stretch(k float64, refined bool) {
 	if !s.below {
 		return
 	}
 	last := len(s.c.Layers) - 1
-	h := 8 / k
+	h, top := 8/k, s.depths[last]
 	s.c.Layers[last].Thickness = h
-	s.depths[last+1] = s.depths[last] + h
-	g := &s.segments[len(s.segments)-1]
-	g.bottom = s.depths[last+1]
+	s.depths[last+1] = top + h
+	for len(s.segments) > 0 && s.segments[len(s.segments)-1].layer == last {
+		s.segments = s.segments[:len(s.segments)-1]
+	}
+	length := math.Min(0.08, 0.15*top/h)
+	cut := func(from, to float64) {
+		s.segments = append(s.segments, segment{layer: last, top: top + h*from, bottom: top + h*to, lower: to == 1})
+	}
+	for z := 0.0; z < 1; length *= 2 {
+		next := math.Min(1, z+length)
+		if 1-next < 0.5*length {
+			next = 1
+		}
+		if refined {
+			cut(z, (z+next)/2)
+			cut((z+next)/2, next)
+		} else {
+			cut(z, next)
+		}
+		z = next
+	}
 }
 
 // NewSolver checks c and prepares to solve it to a relative tolerance tol of the

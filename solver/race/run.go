@@ -17,9 +17,9 @@ import (
 // ErrInput marks what is wrong with the experiment rather than with the computation.
 var ErrInput = errors.New("the experiment cannot be run")
 
-// Prepare returns the state of p's column at its reference strain rate.
+// Prepare returns the state of p's column at its strain rate.
 func Prepare(p *Problem) (*state.State, error) {
-	s, err := state.New(&p.Column, p.Strain.ReferenceRate)
+	s, err := state.New(&p.Column, p.StrainRate())
 	if err != nil {
 		return nil, fmt.Errorf("%w: %w", ErrInput, err)
 	}
@@ -28,7 +28,7 @@ func Prepare(p *Problem) (*state.State, error) {
 
 // Spectrum returns growth against wavelength of a prepared column.
 func Spectrum(ctx context.Context, p *Problem, s *state.State) (*growth.Spectrum, error) {
-	return growth.Compute(ctx, drip.Model(s), growth.Options{From: p.SpectrumFrom, To: p.SpectrumTo, Workers: p.Workers})
+	return growth.Compute(ctx, GrowthColumn(p, s), growth.Options{From: p.SpectrumFrom, To: p.SpectrumTo, Workers: p.Workers})
 }
 
 // Drip returns when the root of a prepared column drips.
@@ -42,6 +42,9 @@ func Drip(ctx context.Context, p *Problem, s *state.State) (*drip.Result, error)
 // canDrip refuses what no drip can be asked of: no root, a root on a wall, an
 // undulation that already is the drip.
 func (p *Problem) canDrip() error {
+	if e := p.Strain.ExtensionRate; e != 0 {
+		return fmt.Errorf("%w: strain.extension-rate is %.3g 1/s, and drips in a column that is strained are not in this version of keelfall; keelfall spectrum and keelfall mode take it", ErrInput, e)
+	}
 	_, last, ok := p.Column.RootSpan()
 	if !ok {
 		return fmt.Errorf("%w: %w", ErrInput, drip.ErrNoRoot)
@@ -127,7 +130,7 @@ func RunSaying(ctx context.Context, p *Problem, say func(string)) (*Result, erro
 	if err != nil {
 		return nil, err
 	}
-	r := &Result{Problem: p, State: s, Warnings: Warnings(s)}
+	r := &Result{Problem: p, State: s, Warnings: Warnings(p, s)}
 	say("growth against wavelength")
 	if r.Spectrum, err = Spectrum(ctx, p, s); err != nil {
 		return nil, err
@@ -162,9 +165,9 @@ func RunSaying(ctx context.Context, p *Problem, say func(string)) (*Result, erro
 }
 
 // Warnings returns what a prepared column is warned about, whatever is asked of it.
-func Warnings(s *state.State) []string {
+func Warnings(p *Problem, s *state.State) []string {
 	w := slices.Clone(s.Warnings)
-	if drip.RateDependent(s) {
+	if p.Strain.ExtensionRate == 0 && p.Drip.Softening != "self" && drip.RateDependent(s) {
 		w = append(w, fmt.Sprintf("stress exponents above 1, nothing that strains the column and no softening by the drip: viscosities are isotropic, those of the reference rate of %.3g 1/s", s.StrainRate))
 	}
 	return w
