@@ -1,5 +1,6 @@
 // Package plots turns results into figures fit for a paper: the column, growth and
-// drip time against wavelength, the fastest mode, and both fates against time.
+// drip time against wavelength, every branch of modes, the fastest mode, and both fates
+// against time.
 //
 // A figure is a pure function of the data it shows; the same result and width give
 // the same bytes in every format. Results are in SI; the axes are in the units of

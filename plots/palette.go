@@ -28,6 +28,10 @@ var (
 	orange     = color.NRGBA{R: 230, G: 159, A: 255}
 	blue       = color.NRGBA{G: 114, B: 178, A: 255}
 	vermillion = color.NRGBA{R: 213, G: 94, A: 255}
+	green      = color.NRGBA{G: 158, B: 115, A: 255}
+	purple     = color.NRGBA{R: 204, G: 121, B: 167, A: 255}
+	sky        = color.NRGBA{R: 86, G: 180, B: 233, A: 255}
+	yellow     = color.NRGBA{R: 240, G: 228, B: 66, A: 255}
 )
 
 // Greys and tints, all opaque, so that every format draws them alike.
@@ -58,5 +62,11 @@ func stroke(c color.Color, w vg.Length, dashes []vg.Length) draw.LineStyle {
 // tint mixes share of c with white.
 func tint(c color.NRGBA, share float64) color.NRGBA {
 	mix := func(v uint8) uint8 { return uint8(255 - share*(255-float64(v)) + 0.5) }
+	return color.NRGBA{R: mix(c.R), G: mix(c.G), B: mix(c.B), A: 255}
+}
+
+// shade returns share of c mixed with black.
+func shade(c color.NRGBA, share float64) color.NRGBA {
+	mix := func(v uint8) uint8 { return uint8(share*float64(v) + 0.5) }
 	return color.NRGBA{R: mix(c.R), G: mix(c.G), B: mix(c.B), A: 255}
 }

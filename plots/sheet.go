@@ -96,18 +96,25 @@ func (s *sheet) segment(a, b vg.Point, st draw.LineStyle) { s.StrokeLines(st, []
 
 // dot draws a filled circle with a white rim.
 func (s *sheet) dot(at vg.Point, radius vg.Length, c color.Color) {
-	for _, d := range []struct {
-		r vg.Length
-		c color.Color
-	}{{radius + 0.6, white}, {radius, c}} {
-		var p vg.Path
-		p.Move(vg.Point{X: at.X + d.r, Y: at.Y})
-		p.Arc(at, d.r, 0, 2*math.Pi)
-		p.Close()
-		s.SetColor(d.c)
-		s.Fill(p)
-	}
+	s.disc(at, radius+0.6, white)
+	s.disc(at, radius, c)
 	s.lines = append(s.lines, []vg.Point{{X: at.X - radius, Y: at.Y}, {X: at.X + radius, Y: at.Y}})
+}
+
+// ring draws an open circle.
+func (s *sheet) ring(at vg.Point, radius, width vg.Length, c color.Color) {
+	s.disc(at, radius, c)
+	s.disc(at, radius-width, white)
+	s.lines = append(s.lines, []vg.Point{{X: at.X - radius, Y: at.Y}, {X: at.X + radius, Y: at.Y}})
+}
+
+func (s *sheet) disc(at vg.Point, radius vg.Length, c color.Color) {
+	var p vg.Path
+	p.Move(vg.Point{X: at.X + radius, Y: at.Y})
+	p.Arc(at, radius, 0, 2*math.Pi)
+	p.Close()
+	s.SetColor(c)
+	s.Fill(p)
 }
 
 // arrow draws a line from a to b with a filled head at b.

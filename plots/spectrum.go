@@ -5,9 +5,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
-	"strings"
 
-	"gonum.org/v1/plot/text"
 	"gonum.org/v1/plot/vg"
 
 	"keelfall/solver/drip"
@@ -28,14 +26,6 @@ func SettingOf(p *race.Problem) Setting {
 	return Setting{ArcWidth: p.ArcWidth, ArcLength: p.ArcLength, Strike: p.Strain.Wavevector == race.AlongStrike, Window: p.Drip.Window}
 }
 
-// limit is the longest wavelength in force, in m, and what longer ones are in words.
-func (s Setting) limit() (most float64, beyond, is string) {
-	if s.Strike {
-		return s.ArcLength, "longer than the arc", "arc length"
-	}
-	return s.ArcWidth, "wider than the arc", "arc width"
-}
-
 // Spectrum draws growth rate and e-folding time against wavelength and, below, drip
 // time against wavelength. Either part may be missing: sp nil or without rates, dr nil
 // or without a curve; an error where both are. width is ColumnWidth where 0.
@@ -44,9 +34,7 @@ func Spectrum(sp *growth.Spectrum, dr *drip.Result, against Setting, width vg.Le
 	if err != nil {
 		return Figure{}, err
 	}
-	f := spectrumFigure{window: against.Window / myr}
-	f.arc, f.beyond, f.limitIs = against.limit()
-	f.arc /= km
+	f := spectrumFigure{arcLimit: against.limit(), window: against.Window / myr}
 	if err := finite("arc and window", f.arc, f.window); err != nil {
 		return Figure{}, err
 	}
@@ -77,9 +65,9 @@ func Spectrum(sp *growth.Spectrum, dr *drip.Result, against Setting, width vg.Le
 
 // spectrumFigure is in km, Myr and 1/Myr, by increasing wavelength.
 type spectrumFigure struct {
+	arcLimit
 	x                        scale
-	arc, window              float64
-	beyond, limitIs          string // words for wavelengths above arc, and for arc itself
+	window                   float64
 	wavelength, rate         []float64
 	peaks                    []growth.Peak
 	dripWavelength, dripTime []float64
@@ -165,10 +153,7 @@ func (f spectrumFigure) caption() string {
 	default:
 		s = "Growth rate of the fastest mode (a) and drip time (b) against wavelength"
 	}
-	if f.arc > 0 {
-		s += fmt.Sprintf("; grey: %s (%s km)", f.beyond, plain(number(f.arc, 3)))
-	}
-	s += "."
+	s += f.arcWords() + "."
 	if f.drip == nil {
 		return s
 	}
@@ -201,12 +186,7 @@ func (f spectrumFigure) draw(s *sheet) {
 		parts = append(parts, f.dripTimes())
 	}
 	for i := range parts {
-		parts[i].back = func(p *panel) {
-			if f.arc > 0 && f.arc < f.x.hi {
-				p.bandX(math.Max(f.arc, f.x.lo), f.x.hi, paleGrey)
-			}
-		}
-		parts[i].front = func(p *panel) { p.vline(f.arc, stroke(darkGrey, thin, dashed)) }
+		parts[i].back, parts[i].front = f.arcBand, f.arcLine
 	}
 	labels := parts[0].labels
 	parts[0].labels = func(p *panel) {
@@ -214,13 +194,4 @@ func (f spectrumFigure) draw(s *sheet) {
 		f.arcLabel(p)
 	}
 	s.stack(parts, f.x, s.Min.Y+xAxisHeight(1)+2, s.Max.Y-6, "Wavelength (km)", func(p *panel) []tick { return logTicks(p.x, true, p.xFits) })
-}
-
-// arcLabel names the limit that the arc sets.
-func (f spectrumFigure) arcLabel(p *panel) {
-	if f.arc > f.x.lo && f.arc < f.x.hi {
-		at := vg.Point{X: p.atX(f.arc), Y: p.box.Max.Y - 3}
-		p.place(darkGrey, p.box, []spot{{at.Add(vg.Point{X: 3}), text.XLeft, text.YTop}, {at.Sub(vg.Point{X: 3}), text.XRight, text.YTop}},
-			f.beyond, strings.Replace(f.beyond, " the", "\nthe", 1), f.limitIs)
-	}
 }

@@ -10,15 +10,32 @@ import (
 // fewPoints is up to how many wavelengths are marked one by one.
 const fewPoints = 15
 
-// growth draws growth rate; e-folding time at right where anything grows.
+// growth draws the growth rate.
 func (f spectrumFigure) growth() part {
-	lo, hi, _ := bounds(f.rate)
+	out := rateAxes(f.rate)
+	out.labels = f.peakLabels
+	out.curves = func(p *panel) {
+		p.hline(0, stroke(midGrey, thin, solid))
+		p.line("growth rate", f.wavelength, f.rate, stroke(black, 1.1, solid))
+		for i, l := range f.wavelength {
+			if len(f.wavelength) <= fewPoints && p.y.has(f.rate[i]) {
+				p.dot(p.pt(l, f.rate[i]), 1.5, black)
+			}
+		}
+	}
+	return out
+}
+
+// rateAxes has a growth-rate axis for rates; one of e-folding time at right where
+// anything grows.
+func rateAxes(rates ...[]float64) part {
+	lo, hi, _ := bounds(rates...)
 	if hi > 0 {
 		lo = math.Max(math.Min(lo, 0), -0.5*hi) // fast decay is of no interest beside growth
 	} else {
 		hi = 0
 	}
-	out := part{left: "Growth rate (1/Myr)", labels: f.peakLabels}
+	out := part{left: "Growth rate (1/Myr)"}
 	if hi > 0 {
 		out.right = "e-folding time (Myr)"
 	}
@@ -29,15 +46,6 @@ func (f spectrumFigure) growth() part {
 			right = foldTicks(p)
 		}
 		return linearTicks(p.y, p.yFits), right
-	}
-	out.curves = func(p *panel) {
-		p.hline(0, stroke(midGrey, thin, solid))
-		p.line("growth rate", f.wavelength, f.rate, stroke(black, 1.1, solid))
-		for i, l := range f.wavelength {
-			if len(f.wavelength) <= fewPoints && p.y.has(f.rate[i]) {
-				p.dot(p.pt(l, f.rate[i]), 1.5, black)
-			}
-		}
 	}
 	return out
 }

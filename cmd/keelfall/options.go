@@ -1,7 +1,6 @@
 package main
 
 import (
-	"bytes"
 	"errors"
 	"fmt"
 	"io/fs"
@@ -14,7 +13,6 @@ import (
 
 	"keelfall/cmd/internal/report"
 	"keelfall/configs"
-	"keelfall/rheology"
 	"keelfall/solver/race"
 )
 
@@ -61,11 +59,11 @@ func (o *options) load() (*configs.Experiment, *race.Problem, error) {
 	}
 	reader := configs.Reader{}
 	for _, path := range o.Settings.Catalogues {
-		laws, err := readLaws(path)
+		c, err := configs.ReadCatalogue(path)
 		if err != nil {
 			return nil, nil, usageError{err}
 		}
-		reader.Laws = append(reader.Laws, laws...)
+		reader.Catalogues = append(reader.Catalogues, c)
 	}
 	if o.File == "" {
 		text, err := configs.Example(defaultExample)
@@ -131,18 +129,6 @@ func inputError(err error) error {
 		return err
 	}
 	return usageError{err}
-}
-
-func readLaws(path string) ([]rheology.Law, error) {
-	b, err := os.ReadFile(path)
-	if err != nil {
-		return nil, err
-	}
-	laws, err := rheology.ReadLaws(bytes.NewReader(b))
-	if err != nil {
-		return nil, fmt.Errorf("%s: %w", path, err)
-	}
-	return laws, nil
 }
 
 // print writes one part of a result in the asked format.

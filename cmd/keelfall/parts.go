@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"slices"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -12,7 +13,6 @@ import (
 	"keelfall/cmd/internal/report"
 	"keelfall/configs"
 	"keelfall/plots"
-	"keelfall/solver/drip"
 	"keelfall/solver/growth"
 	"keelfall/solver/race"
 	"keelfall/solver/state"
@@ -91,15 +91,16 @@ func (o *options) fill(folder *report.Folder, r *part) error {
 func newColumnCmd(s Streams) *cobra.Command {
 	cmd, _ := newPartCmd(s, "column FILE", "Temperature, pressure, density and viscosity against depth",
 		func(_ context.Context, _ *options, p *race.Problem, st *state.State) (*part, error) {
-			return &part{name: "column", text: report.ColumnPage(p, st), value: report.Column(st), table: report.ColumnTable(st),
+			return &part{name: "column", text: report.ColumnPage(p, st), value: report.Column(p, st), table: report.ColumnTable(st),
 				figure:   func(w vg.Length) (plots.Figure, error) { return plots.Column(st, w) },
-				warnings: race.Warnings(st)}, nil
+				warnings: race.Warnings(p, st)}, nil
 		})
 	return cmd
 }
 
 func newSpectrumCmd(s Streams) *cobra.Command {
 	var at string
+	var follow bool
 	cmd, _ := newPartCmd(s, "spectrum FILE", "Growth rate against wavelength",
 		func(ctx context.Context, o *options, p *race.Problem, st *state.State) (*part, error) {
 			var wavelengths []float64
@@ -116,26 +117,45 @@ func newSpectrumCmd(s Streams) *cobra.Command {
 			rates := sp.Rates
 			var exact []growth.Rate
 			if wavelengths != nil {
-				if exact, err = growth.Evaluate(ctx, drip.Model(st), wavelengths, growth.Options{Workers: p.Workers}); err != nil {
+				if exact, err = growth.Evaluate(ctx, race.GrowthColumn(p, st), wavelengths, growth.Options{Workers: p.Workers}); err != nil {
 					return nil, err
 				}
 				rates = exact
 			}
-			return &part{name: "spectrum", text: report.SpectrumPage(p, st, sp, exact), value: report.Spectrum(st, sp, exact), table: report.SpectrumTable(rates),
+			out := &part{name: "spectrum", text: report.SpectrumPage(p, st, sp, exact), table: report.SpectrumTable(rates),
 				figure: func(w vg.Length) (plots.Figure, error) {
-					return plots.Spectrum(sp, nil, against(p), w)
+					return plots.Spectrum(sp, nil, plots.SettingOf(p), w)
 				},
-				warnings: report.SpectrumWarnings(st, sp)}, nil
+				warnings: report.SpectrumWarnings(p, st, sp)}
+			value := report.Spectrum(p, st, sp, exact)
+			if follow {
+				all, err := branches(ctx, p, st, sp, wavelengths)
+				if err != nil {
+					return nil, err
+				}
+				value.Branches = report.Branches(st, all)
+				out.text += report.BranchesText(st, all)
+				out.table = report.BranchesTable(st, all)
+			}
+			out.value = value
+			return out, nil
 		})
 	cmd.Flags().StringVar(&at, "at", "", "evaluate exactly these wavelengths: 50km,100km")
+	cmd.Flags().BoolVar(&follow, "branches", false, "follow every growing mode across the wavelengths, not the fastest alone")
 	return cmd
 }
 
-// against is what a spectrum is drawn against: the limit on wavelength in force and
-// the window.
-func against(p *race.Problem) plots.Setting {
-	limit, _ := p.Limit()
-	return plots.Setting{ArcWidth: limit, Window: p.Drip.Window}
+// branches follows every growing mode over the wavelengths asked for, in increasing
+// order, or over those of the spectrum.
+func branches(ctx context.Context, p *race.Problem, st *state.State, sp *growth.Spectrum, wavelengths []float64) ([]growth.Branch, error) {
+	wavelengths = slices.Clone(wavelengths)
+	if wavelengths == nil {
+		for _, r := range sp.Rates {
+			wavelengths = append(wavelengths, r.Wavelength)
+		}
+	}
+	slices.Sort(wavelengths)
+	return growth.Branches(ctx, race.GrowthColumn(p, st), slices.Compact(wavelengths), growth.Options{Workers: p.Workers})
 }
 
 // Wavelengths that are taken, m: below, a hand sample; above, more than the Earth.
@@ -170,9 +190,9 @@ func newDripCmd(s Streams) *cobra.Command {
 			}
 			return &part{name: "drip", text: report.DripPage(p, r), value: report.Drip(p, st, r.Drip), table: report.DripTable(r),
 				figure: func(w vg.Length) (plots.Figure, error) {
-					return plots.Spectrum(nil, r.Drip, against(p), w)
+					return plots.Spectrum(nil, r.Drip, plots.SettingOf(p), w)
 				},
-				warnings: report.DripWarnings(st, r.Drip)}, nil
+				warnings: report.DripWarnings(p, st, r.Drip)}, nil
 		})
 	return cmd
 }
@@ -186,7 +206,7 @@ func newExciseCmd(s Streams) *cobra.Command {
 				return nil, err
 			}
 			out := &part{name: "excise", text: report.ExcisionPage(p, r), value: report.Excision(p, st, r.Excision), table: report.ExcisionTable(r),
-				warnings: report.ExcisionWarnings(st, r.Excision)}
+				warnings: report.ExcisionWarnings(p, st, r.Excision)}
 			if len(p.Zones) > 0 {
 				out.figure = func(w vg.Length) (plots.Figure, error) { return plots.Fates(r, w) }
 			}

@@ -59,7 +59,11 @@ func (p *Problem) limits(peel Peeling) []string {
 		l = append(l, "power-law softening by the drip itself is left out: viscosities are isotropic, at the reference strain rate; rock drips sooner or later than that as its own strain rate is above or below it")
 	}
 	if warm {
-		l = append(l, "thermal buoyancy of the undulation is left out: rock keeps the density of its composition at the contact")
+		where := "of the undulation is left out"
+		if p.ThermalBuoyancy != "none" {
+			where = "counts for the growth rates (" + p.ThermalBuoyancy + ") and is left out of the drip"
+		}
+		l = append(l, "thermal buoyancy "+where+": there, rock keeps the density of its composition")
 	}
 	return append(l, peel.words(), "subduction drag and the third dimension are left out")
 }

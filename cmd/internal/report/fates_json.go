@@ -50,7 +50,7 @@ func Drip(p *race.Problem, s *state.State, d *drip.Result) DripJSON {
 	if d == nil {
 		return DripJSON{Time: none, Wavelength: none, InitialWavelength: none, TimeLow: none, TimeHigh: none, Events: []eventJSON{},
 			Reason: noRoot, SpacingFrom: none, SpacingTo: none, Growth: none, StrainRate: none, StrainRateEnd: none,
-			Curve: curveJSON{[]number{}, []number{}, []number{}, []number{}}, Warnings: list(race.Warnings(s))}
+			Curve: curveJSON{[]number{}, []number{}, []number{}, []number{}}, Warnings: list(race.Warnings(p, s))}
 	}
 	or := func(x float64) number { // 0 where nothing drips
 		if math.IsInf(d.Time, 1) {
@@ -63,7 +63,7 @@ func Drip(p *race.Problem, s *state.State, d *drip.Result) DripJSON {
 		SpacingFrom: or(d.SpacingFrom), SpacingTo: or(d.SpacingTo), Growth: or(d.Rate),
 		StrainRate: or(d.StrainRate), StrainRateEnd: or(d.StrainRateEnd),
 		Curve:    curveJSON{numbers(d.Curve.Wavelength), numbers(d.Curve.Time), numbers(d.Curve.Low), numbers(d.Curve.High)},
-		Warnings: list(DripWarnings(s, d))}
+		Warnings: list(DripWarnings(p, s, d))}
 	if d.Outcome == "drips" {
 		j.Events = append(j.Events, eventJSON{number(d.Time), number(d.Wavelength), number(p.Drip.Removes), number(p.Column.RootThickness() * p.Drip.Removes)})
 	}
@@ -104,14 +104,14 @@ func Excision(p *race.Problem, s *state.State, x *excision.Result) ExcisionJSON 
 		empty := []number{}
 		return ExcisionJSON{Time: none, Share: none, Slip: none, Heave: none, Throw: none, Extension: none, PressureGap: none,
 			CutTime: none, CutSlip: none, CutHeave: none, ArcMeanTime: none,
-			History: historyJSON{empty, empty, empty, empty, empty, empty, empty}, Warnings: append(list(race.Warnings(s)), noRoot)}
+			History: historyJSON{empty, empty, empty, empty, empty, empty, empty}, Warnings: append(list(race.Warnings(p, s)), noRoot)}
 	}
 	j := ExcisionJSON{Outcome: &x.Outcome, Time: number(x.LocalBeyond), Share: number(x.Share), Slip: number(x.Slip), Heave: number(x.Heave),
 		Throw: number(x.Throw), Extension: none, PressureGap: number(x.PressureGap),
 		CutTime: number(x.CutThroughTime), CutSlip: none, CutHeave: none, ArcMeanTime: number(x.ArcMeanTime),
 		History: historyJSON{numbers(x.History.Time), numbers(x.History.RootThickness), numbers(x.History.ArcMean),
 			numbers(x.History.Slip), numbers(x.History.Heave), numbers(x.History.Throw), numbers(x.History.RootMassShare)},
-		Warnings: list(ExcisionWarnings(s, x))}
+		Warnings: list(ExcisionWarnings(p, s, x))}
 	if x.Outcome == "excised" {
 		j.Time = number(x.Time)
 	}

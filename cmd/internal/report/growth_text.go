@@ -52,7 +52,14 @@ func growthText(p *page, s *state.State, sp *growth.Spectrum, shown []growth.Rat
 		p.say("Nothing grows: every undulation decays or stays; slowest decay %.3g 1/Myr, at %s km.", -f.Growth*Myr, short(f.Wavelength/km))
 		return
 	}
-	p.say("Fastest wavelength %s km, e-folding time %s at first.", short(f.Wavelength/km), myr(1/f.Growth))
+	what := ""
+	if m := sp.Mode; m != nil {
+		what = fmt.Sprintf("; what moves: %s", m.Label(RootBase(s), depthsOf(s)))
+		if m.Imaginary != 0 {
+			what += fmt.Sprintf(", oscillating with a period of %s", myr(2*math.Pi/m.Imaginary))
+		}
+	}
+	p.say("Fastest wavelength %s km, e-folding time %s at first%s.", short(f.Wavelength/km), myr(1/f.Growth), what)
 	if f.AtRangeEdge {
 		p.say("That is an end of the range of wavelengths: no maximum was bracketed.")
 	}
@@ -63,6 +70,15 @@ func growthText(p *page, s *state.State, sp *growth.Spectrum, shown []growth.Rat
 	}
 	if w := shares(s, sp.Mode); w != "" {
 		p.say("Resistance: %s.", w)
+	}
+	if m := sp.Mode; m != nil {
+		var heat float64
+		for _, v := range m.ThermalWork {
+			heat += v
+		}
+		if math.Abs(heat) > 0.005 {
+			p.say("Of the work, %.0f %% is done by the heat that the undulation carries.", 100*heat)
+		}
 	}
 	worst := 0.0
 	for _, x := range shown {

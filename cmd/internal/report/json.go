@@ -37,8 +37,8 @@ type interfaceJSON struct {
 }
 
 // Column returns the column of s.
-func Column(s *state.State) ColumnJSON {
-	c := ColumnJSON{StrainRate: number(s.StrainRate), SurfaceFlow: none, BaseFlow: none, HeatResidual: none, Warnings: list(race.Warnings(s))}
+func Column(p *race.Problem, s *state.State) ColumnJSON {
+	c := ColumnJSON{StrainRate: number(s.StrainRate), SurfaceFlow: none, BaseFlow: none, HeatResidual: none, Warnings: list(race.Warnings(p, s))}
 	if s.HasTemperature {
 		c.SurfaceFlow, c.BaseFlow = number(s.SurfaceFlow), number(s.BaseFlow)
 		if len(s.Column.Geotherm) == 0 {
@@ -84,6 +84,9 @@ type SpectrumJSON struct {
 	Peaks      []peakJSON        `json:"peaks"`
 	Layers     []layerShareJSON  `json:"layers"`
 	Interfaces []contactWorkJSON `json:"interfaces"`
+	Label      string            `json:"label"`    // what moves in the fastest mode
+	Controls   []Control         `json:"controls"` // of the fastest mode, ranked
+	Branches   []BranchJSON      `json:"branches"` // empty unless asked for
 	Warnings   []string          `json:"warnings"`
 }
 
@@ -127,11 +130,14 @@ func efold(q float64) float64 {
 
 // Spectrum returns a spectrum of s; rates, where not nil, replace the wavelengths
 // that the spectrum chose, in their own order.
-func Spectrum(s *state.State, sp *growth.Spectrum, rates []growth.Rate) SpectrumJSON {
+func Spectrum(p *race.Problem, s *state.State, sp *growth.Spectrum, rates []growth.Rate) SpectrumJSON {
 	if rates == nil {
 		rates = sp.Rates
 	}
-	j := SpectrumJSON{Fastest: fastestJSON{peak(sp.Fastest), sp.Fastest.AtRangeEdge}, Peaks: []peakJSON{}, Warnings: list(SpectrumWarnings(s, sp))}
+	j := SpectrumJSON{Fastest: fastestJSON{peak(sp.Fastest), sp.Fastest.AtRangeEdge}, Peaks: []peakJSON{}, Controls: Controls(s, sp.Mode), Branches: []BranchJSON{}, Warnings: list(SpectrumWarnings(p, s, sp))}
+	if sp.Mode != nil {
+		j.Label = sp.Mode.Label(RootBase(s), depthsOf(s))
+	}
 	for _, r := range rates {
 		j.Wavelength, j.Growth = append(j.Wavelength, number(r.Wavelength)), append(j.Growth, number(r.Growth))
 		j.Imaginary, j.Error = append(j.Imaginary, number(r.Imaginary)), append(j.Error, number(r.RelativeError))
@@ -162,8 +168,8 @@ func Spectrum(s *state.State, sp *growth.Spectrum, rates []growth.Rate) Spectrum
 }
 
 // SpectrumWarnings are the warnings of a spectrum and its column.
-func SpectrumWarnings(s *state.State, sp *growth.Spectrum) []string {
-	w := race.Warnings(s)
+func SpectrumWarnings(p *race.Problem, s *state.State, sp *growth.Spectrum) []string {
+	w := race.Warnings(p, s)
 	if sp.Fastest.AtRangeEdge {
 		w = append(w, "the fastest wavelength is at an end of the range: no maximum was bracketed")
 	}
@@ -171,8 +177,8 @@ func SpectrumWarnings(s *state.State, sp *growth.Spectrum) []string {
 }
 
 // DripWarnings are the warnings of a drip and its column.
-func DripWarnings(s *state.State, d *drip.Result) []string {
-	w := append(race.Warnings(s), d.Warnings...)
+func DripWarnings(p *race.Problem, s *state.State, d *drip.Result) []string {
+	w := append(race.Warnings(p, s), d.Warnings...)
 	if d.Excluded != "" {
 		w = append(w, d.Excluded)
 	}
@@ -180,8 +186,8 @@ func DripWarnings(s *state.State, d *drip.Result) []string {
 }
 
 // ExcisionWarnings are the warnings of an excision and its column.
-func ExcisionWarnings(s *state.State, x *excision.Result) []string {
-	return append(race.Warnings(s), x.Warnings...)
+func ExcisionWarnings(p *race.Problem, s *state.State, x *excision.Result) []string {
+	return append(race.Warnings(p, s), x.Warnings...)
 }
 
 // ResultJSON is result.json.
@@ -196,5 +202,5 @@ type ResultJSON struct {
 
 // Result returns everything a run found.
 func Result(r *race.Result, p ProvenanceJSON) ResultJSON {
-	return ResultJSON{Column(r.State), Spectrum(r.State, r.Spectrum, nil), Drip(r.Problem, r.State, r.Drip), Excision(r.Problem, r.State, r.Excision), Verdict(r), p}
+	return ResultJSON{Column(r.Problem, r.State), Spectrum(r.Problem, r.State, r.Spectrum, nil), Drip(r.Problem, r.State, r.Drip), Excision(r.Problem, r.State, r.Excision), Verdict(r), p}
 }
