@@ -255,18 +255,37 @@ func (l branchLine) name(p *panel, c color.Color, parts [][]vg.Point) {
 		dark = shade(v, 0.8) // thin type needs more contrast than a line
 	}
 	wordings := l.wordings(p.box.Max.X - p.box.Min.X)
-	for _, w := range wordings {
-		if sp, n := p.best(w, p.box, spots); n == 0 {
+	near := func(w string) bool {
+		sp, n := p.best(w, p.box, slices.DeleteFunc(slices.Clone(spots), func(sp spot) bool {
+			return !p.nearest(textBox(sp.at, w, textStyle{x: sp.x, y: sp.y}), append(parts, []vg.Point{at, at}))
+		}))
+		if n == 0 {
 			p.text(sp.at, w, textStyle{color: dark, x: sp.x, y: sp.y})
-			return
+		}
+		return n == 0
+	}
+	lead := func(w string) bool { return p.lead(at, w, dark) }
+	alone := fmt.Sprint(l.number)
+	if slices.ContainsFunc(wordings, near) || slices.ContainsFunc(wordings, lead) || near(alone) || lead(alone) {
+		return
+	}
+	p.place(dark, p.box, spots, alone)
+}
+
+// nearest reports whether no line comes closer to box than the closest of own.
+func (p *panel) nearest(box vg.Rectangle, own [][]vg.Point) bool {
+	touched := func(lines [][]vg.Point, room vg.Rectangle) bool {
+		return (&sheet{lines: lines}).crossed(room) > 0
+	}
+	others := slices.DeleteFunc(slices.Clone(p.lines), func(l []vg.Point) bool {
+		return slices.ContainsFunc(own, func(o []vg.Point) bool { return &o[0] == &l[0] || inside(boundsOf(l), grown(boundsOf(o), 3)) && len(l) == 2 })
+	})
+	for d := vg.Length(1); d < 20; d++ {
+		if room := grown(box, d); touched(own, room) {
+			return !touched(others, room)
 		}
 	}
-	for _, w := range wordings {
-		if p.lead(at, w, dark) {
-			return
-		}
-	}
-	p.place(dark, p.box, spots, fmt.Sprint(l.number))
+	return false
 }
 
 // wordings are the number and label in fewer and fewer words, for a panel so wide.
@@ -277,7 +296,7 @@ func (l branchLine) wordings(room vg.Length) []string {
 
 // lead writes txt where it is clear of all, with a thin line to at that crosses no text.
 func (p *panel) lead(at vg.Point, txt string, c color.Color) bool {
-	const reach = 80
+	const reach = 130
 	for _, sp := range nearby(at, p.box, reach) {
 		st := textStyle{color: c, x: sp.x, y: sp.y}
 		box := textBox(sp.at, txt, st)
