@@ -185,14 +185,13 @@ func (f branchesFigure) draw(s *sheet) {
 		for i, l := range slices.Backward(f.lines) {
 			if at := p.pt(l.wavelength[l.top], l.rate[l.top]); p.clip().Contains(at) {
 				p.dot(at, 0.9+0.7*f.style(i).Width, f.style(i).Color)
+				seen[i] = append(seen[i], []vg.Point{at, at})
 			}
 		}
 	}
 	axes.labels = func(p *panel) {
 		f.arcLabel(p)
-		for i, l := range f.lines[:f.named()] {
-			l.name(p, branchStyles[i].Color, seen[i])
-		}
+		f.names(p, seen)
 	}
 	s.stack([]part{axes}, f.x, s.Min.Y+xAxisHeight(1)+2, s.Max.Y-6, "Wavelength (km)", func(p *panel) []tick { return logTicks(p.x, true, p.xFits) })
 }
@@ -233,70 +232,98 @@ func (l branchLine) rings(p *panel, c color.Color) {
 // apart is the distance of two points.
 func apart(a, b vg.Point) vg.Length { return vg.Length(math.Hypot(float64(a.X-b.X), float64(a.Y-b.Y))) }
 
-// name writes the branch's number and label at its line, else with a leader to it, else
-// the number alone. parts is where the line is on the page.
-func (l branchLine) name(p *panel, c color.Color, parts [][]vg.Point) {
-	at, ok := p.pt(l.wavelength[l.top], l.rate[l.top]), true
-	var spots []spot
-	if ok = p.clip().Contains(at); ok {
-		spots = append([]spot{{at.Add(vg.Point{Y: 4.5}), text.XCenter, text.YBottom}}, around(at, 4.5)[:8]...)
-	}
-	for _, part := range parts {
-		spots = append(spots, along(part, 3)...)
-		if !ok {
-			at, ok = part[len(part)/2], true
+// names writes each named branch's number and label: where it is fastest, else beside
+// its line, else with a leader to it, else the number alone. seen is where each line is
+// on the page; one off the panel has no name.
+func (f branchesFigure) names(p *panel, seen [][][]vg.Point) {
+	done := make([]bool, f.named())
+	for step := range 6 {
+		for i, l := range f.lines[:f.named()] {
+			if done[i] || len(seen[i]) == 0 {
+				continue
+			}
+			others := slices.Concat(slices.Concat(seen[:i]...), slices.Concat(seen[i+1:]...))
+			c := nameColor(branchStyles[i].Color)
+			var beside []spot
+			anchors := []vg.Point{p.pt(l.wavelength[l.top], l.rate[l.top])}
+			if at := anchors[0]; p.clip().Contains(at) {
+				beside = append([]spot{{at.Add(vg.Point{Y: 4.5}), text.XCenter, text.YBottom}}, around(at, 4.5)[:8]...)
+			} else {
+				anchors = nil
+			}
+			if step > 0 {
+				for _, part := range seen[i] {
+					beside = append(beside, along(part, 3)...)
+					anchors = append(anchors, part[len(part)/2], part[len(part)/4], part[3*len(part)/4])
+				}
+			}
+			near := func(w string) bool { return p.beside(w, c, beside, seen[i], others) }
+			lead := func(w string) bool {
+				return slices.ContainsFunc(anchors, func(at vg.Point) bool { return p.lead(at, w, c, others) })
+			}
+			words, alone := l.wordings(p.box.Max.X-p.box.Min.X), []string{fmt.Sprint(l.number)}
+			switch step {
+			case 0, 1:
+				done[i] = slices.ContainsFunc(words, near)
+			case 2:
+				done[i] = slices.ContainsFunc(words, lead)
+			case 3:
+				done[i] = slices.ContainsFunc(alone, near)
+			case 4:
+				done[i] = slices.ContainsFunc(alone, lead)
+			default:
+				p.place(c, p.box, beside, alone...)
+			}
 		}
 	}
-	if !ok {
-		return // it is off the panel
-	}
-	dark := c
-	if v, ok := c.(color.NRGBA); ok && v.G > 110 {
-		dark = shade(v, 0.8) // thin type needs more contrast than a line
-	}
-	wordings := l.wordings(p.box.Max.X - p.box.Min.X)
-	near := func(w string) bool {
-		sp, n := p.best(w, p.box, slices.DeleteFunc(slices.Clone(spots), func(sp spot) bool {
-			return !p.nearest(textBox(sp.at, w, textStyle{x: sp.x, y: sp.y}), append(parts, []vg.Point{at, at}))
-		}))
-		if n == 0 {
-			p.text(sp.at, w, textStyle{color: dark, x: sp.x, y: sp.y})
-		}
-		return n == 0
-	}
-	lead := func(w string) bool { return p.lead(at, w, dark) }
-	alone := fmt.Sprint(l.number)
-	if slices.ContainsFunc(wordings, near) || slices.ContainsFunc(wordings, lead) || near(alone) || lead(alone) {
-		return
-	}
-	p.place(dark, p.box, spots, alone)
 }
 
-// nearest reports whether no line comes closer to box than the closest of own.
-func (p *panel) nearest(box vg.Rectangle, own [][]vg.Point) bool {
-	touched := func(lines [][]vg.Point, room vg.Rectangle) bool {
-		return (&sheet{lines: lines}).crossed(room) > 0
+// nameColor darkens light colours: thin type needs more contrast than a line.
+func nameColor(c color.Color) color.Color {
+	if v, ok := c.(color.NRGBA); ok && v.G > 110 {
+		return shade(v, 0.8)
 	}
-	others := slices.DeleteFunc(slices.Clone(p.lines), func(l []vg.Point) bool {
-		return slices.ContainsFunc(own, func(o []vg.Point) bool { return &o[0] == &l[0] || inside(boundsOf(l), grown(boundsOf(o), 3)) && len(l) == 2 })
-	})
-	for d := vg.Length(1); d < 20; d++ {
-		if room := grown(box, d); touched(own, room) {
-			return !touched(others, room)
+	return c
+}
+
+// beside writes txt at the first of spots that is clear of all and clearly next to own.
+func (p *panel) beside(txt string, c color.Color, spots []spot, own, others [][]vg.Point) bool {
+	for _, sp := range spots {
+		st := textStyle{color: c, x: sp.x, y: sp.y}
+		if _, n := p.best(txt, p.box, []spot{sp}); n == 0 && nearest(textBox(sp.at, txt, st), own, others) {
+			p.text(sp.at, txt, st)
+			return true
 		}
 	}
 	return false
 }
 
-// wordings are the number and label in fewer and fewer words, for a panel so wide.
-func (l branchLine) wordings(room vg.Length) []string {
-	whole := strings.TrimSpace(fmt.Sprintf("%d %s", l.number, l.label))
-	return slices.Compact([]string{wrap(whole, typeSize, 0.6*room, 1), wrap(whole, typeSize, 0.36*room, 2), wrap(whole, typeSize, 0.25*room, 3)})
+// nearest reports whether box lies close to one of the lines own and clearly closer
+// than to any of others.
+func nearest(box vg.Rectangle, own, others [][]vg.Point) bool {
+	touched := func(lines [][]vg.Point, room vg.Rectangle) bool {
+		return (&sheet{lines: lines}).crossed(room) > 0
+	}
+	for d := vg.Length(1); d < 10; d++ {
+		if touched(own, grown(box, d)) {
+			return !touched(others, grown(box, d+1.5))
+		}
+	}
+	return false
 }
 
-// lead writes txt where it is clear of all, with a thin line to at that crosses no text.
-func (p *panel) lead(at vg.Point, txt string, c color.Color) bool {
-	const reach = 130
+// wordings are the number and label on more and more lines, for a panel so wide.
+func (l branchLine) wordings(room vg.Length) []string {
+	whole := strings.TrimSpace(fmt.Sprintf("%d %s", l.number, l.label))
+	w := width(whole, typeSize)
+	return slices.Compact([]string{wrap(whole, typeSize, 0.6*room, 1), wrap(whole, typeSize, min(0.36*room, max(0.65*w, 30)), 2),
+		wrap(whole, typeSize, min(0.25*room, max(0.5*w, 30)), 3)})
+}
+
+// lead writes txt where it is clear of all, with a thin line to at that crosses no text,
+// few of others and none of their dots.
+func (p *panel) lead(at vg.Point, txt string, c color.Color, others [][]vg.Point) bool {
+	const reach, most = 85, 2
 	for _, sp := range nearby(at, p.box, reach) {
 		st := textStyle{color: c, x: sp.x, y: sp.y}
 		box := textBox(sp.at, txt, st)
@@ -305,7 +332,7 @@ func (p *panel) lead(at vg.Point, txt string, c color.Color) bool {
 		}
 		near := grown(box, 1)
 		foot := vg.Point{X: min(max(at.X, near.Min.X), near.Max.X), Y: min(max(at.Y, near.Min.Y), near.Max.Y)}
-		if slices.ContainsFunc(p.texts, func(t placed) bool { return crosses(foot, at, t.box) }) {
+		if slices.ContainsFunc(p.texts, func(t placed) bool { return crosses(foot, at, t.box) }) || met(foot, at, others) > most {
 			continue
 		}
 		p.text(sp.at, txt, st)
@@ -314,4 +341,22 @@ func (p *panel) lead(at vg.Point, txt string, c color.Color) bool {
 		return true
 	}
 	return false
+}
+
+// met counts the lines that the segment from a to b meets; a dot short of b counts for
+// many.
+func met(a, b vg.Point, lines [][]vg.Point) int {
+	n := 0
+	side := func(a, b, c vg.Point) bool { return (b.X-a.X)*(c.Y-a.Y) > (b.Y-a.Y)*(c.X-a.X) }
+	for _, l := range lines {
+		if len(l) == 2 && l[0] == l[1] && l[0] != b && crosses(a, b, grown(vg.Rectangle{Min: l[0], Max: l[0]}, 4)) {
+			n += 10
+		}
+		for i := 1; i < len(l); i++ {
+			if side(a, b, l[i-1]) != side(a, b, l[i]) && side(l[i-1], l[i], a) != side(l[i-1], l[i], b) {
+				n++
+			}
+		}
+	}
+	return n
 }

@@ -40,9 +40,9 @@ func newModeCmd(s Streams) *cobra.Command {
 			}
 			m := modes[number-1]
 			return &part{name: "mode", text: report.ModesPage(p, st, wavelengths[0], modes, number-1),
-				value: report.Modes(st, wavelengths[0], modes, st.Warnings), table: report.ModeTable(st, m),
+				value: report.Modes(st, wavelengths[0], modes, race.Warnings(p, st)), table: report.ModeTable(st, m),
 				figure:   func(w vg.Length) (plots.Figure, error) { return plots.Mode(st.Column, m, w) },
-				warnings: st.Warnings}, nil
+				warnings: race.Warnings(p, st)}, nil
 		})
 	cmd.Flags().StringVar(&at, "at", "", "the wavelength, for example 60km")
 	cmd.Flags().IntVar(&number, "mode", 1, "which of the growing modes, fastest first, to print in full and draw")

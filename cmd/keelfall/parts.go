@@ -136,6 +136,9 @@ func newSpectrumCmd(s Streams) *cobra.Command {
 				value.Branches = report.Branches(st, all)
 				out.text += report.BranchesText(st, all)
 				out.table = report.BranchesTable(st, all)
+				out.figure = func(w vg.Length) (plots.Figure, error) {
+					return plots.Branches(all, report.BranchLabels(st, all), plots.SettingOf(p), w)
+				}
 			}
 			out.value = value
 			return out, nil

@@ -164,7 +164,10 @@ func Compute(ctx context.Context, c *Column, o Options) (*Spectrum, error) {
 	if sp.Mode, err = s.Mode(r.Wavelength); err != nil {
 		return nil, err
 	}
-	return sp, nil
+	if !sp.Fastest.AtRangeEdge {
+		sp.Shift, err = s.shift(r.Wavelength)
+	}
+	return sp, err
 }
 
 // Range returns the wavelengths in m that a spectrum covers where none are asked:

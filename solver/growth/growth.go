@@ -59,8 +59,14 @@ type Spectrum struct {
 	Rates   []Rate // by increasing wavelength, or in the order asked for
 	Peaks   []Peak // by decreasing growth; maxima inside the range
 	Fastest Peak   // over the whole range
-	Mode    *Mode  // at Fastest; nil where every interface is neutral
+	Mode    *Mode  // at Fastest
+	Shift   *Shift // of Fastest.Wavelength; nil at an end of the range and at a corner
 }
+
+// Shift is how the fastest wavelength λ moves: derivatives of ln λ with respect to each
+// layer's ln viscosity, density (per kg/m³) and thickness (per m), the half-space last.
+// Thickness is left out with diffusing temperature.
+type Shift struct{ DlnEta, Drho, Dh []float64 }
 
 // Mode is one eigenmode: shape, budget and sensitivities. Amplitudes are scaled so
 // that the largest displacement of an interface or gradient is 1 m; of a complex mode

@@ -203,3 +203,41 @@ func TestComplexSensitivities(t *testing.T) {
 	}
 	t.Fatalf("only %d oscillating modes found", tested)
 }
+
+// The fastest wavelength moves as its derivatives say: maxima found again with one
+// layer changed, without a background and while the column is shortened.
+func TestShift(t *testing.T) {
+	for _, e := range []float64{0, -1e-15} {
+		fastest := func(scale, rho, thick []float64) *growth.Spectrum {
+			sp, err := growth.Compute(t.Context(), stack(growth.HalfSpace, e, scale, rho, thick), growth.Options{From: 30e3, To: 300e3, Tolerance: 1e-11})
+			if err != nil {
+				t.Fatal(err)
+			}
+			if sp.Fastest.AtRangeEdge || sp.Shift == nil {
+				t.Fatalf("e %g: no maximum inside the range", e)
+			}
+			return sp
+		}
+		here := fastest(ones(), zeros(), zeros())
+		check := func(name string, got float64, a, b *growth.Spectrum, step, size float64) {
+			t.Helper()
+			want := math.Log(b.Fastest.Wavelength/a.Fastest.Wavelength) / (2 * step)
+			if math.Abs(got-want) > 2e-4*size { // peaks are resolved to about 1e-9, h⁴ of the differences
+				t.Errorf("e %g, %s: %.8g, peaks found again %.8g", e, name, got, want)
+			}
+		}
+		for i := range 4 {
+			up, down := ones(), ones()
+			up[i], down[i] = math.Exp(1e-3), math.Exp(-1e-3)
+			check(fmt.Sprintf("ln viscosity of layer %d", i), here.Shift.DlnEta[i], fastest(down, zeros(), zeros()), fastest(up, zeros(), zeros()), 1e-3, 1)
+			up, down = zeros(), zeros()
+			up[i], down[i] = 0.2, -0.2
+			check(fmt.Sprintf("density of layer %d", i), here.Shift.Drho[i], fastest(ones(), down, zeros()), fastest(ones(), up, zeros()), 0.2, 1e-2)
+		}
+		for i := range 3 {
+			up, down := zeros(), zeros()
+			up[i], down[i] = 10, -10
+			check(fmt.Sprintf("thickness of layer %d", i), here.Shift.Dh[i], fastest(ones(), zeros(), down), fastest(ones(), zeros(), up), 10, 1e-4)
+		}
+	}
+}

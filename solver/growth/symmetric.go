@@ -138,17 +138,19 @@ func largest(d, e []float64) (x, bound float64) {
 	for range 80 {
 		// the pivots p_i of x − T are positive above the largest root; r = Σ p'/p and
 		// c = Σ (p'/p)² − p''/p are minus the first and second derivative of ln det
-		p, dp, ddp := 1.0, 0.0, 0.0
+		inv, w, u := 1.0, 0.0, 0.0 // 1/p, p'/p and p''/p of the row before
 		var r, c float64
 		for i := range d {
-			q := e[i] / (p * p)
-			p, dp, ddp = x-d[i]-q*p, 1+q*dp, q*(ddp-2*dp*dp/p)
+			q := e[i] * inv
+			p := x - d[i] - q
 			if !(p > 0) {
 				return x, bound
 			}
-			w := dp / p
+			dp, ddp := 1+q*w, q*(u-2*w*w)
+			inv = 1 / p
+			w, u = dp*inv, ddp*inv
 			r += w
-			c += w*w - ddp/p
+			c += w*w - u
 		}
 		step := n / (r + math.Sqrt(math.Max(0, (n-1)*(n*c-r*r))))
 		if y := x - step; y != x && step > 0x1p-53*math.Abs(x) {

@@ -134,7 +134,7 @@ func Spectrum(p *race.Problem, s *state.State, sp *growth.Spectrum, rates []grow
 	if rates == nil {
 		rates = sp.Rates
 	}
-	j := SpectrumJSON{Fastest: fastestJSON{peak(sp.Fastest), sp.Fastest.AtRangeEdge}, Peaks: []peakJSON{}, Controls: Controls(s, sp.Mode), Branches: []BranchJSON{}, Warnings: list(SpectrumWarnings(p, s, sp))}
+	j := SpectrumJSON{Fastest: fastestJSON{peak(sp.Fastest), sp.Fastest.AtRangeEdge}, Peaks: []peakJSON{}, Controls: Controls(s, sp.Mode, sp.Shift), Branches: []BranchJSON{}, Warnings: list(SpectrumWarnings(p, s, sp))}
 	if sp.Mode != nil {
 		j.Label = sp.Mode.Label(RootBase(s), depthsOf(s))
 	}

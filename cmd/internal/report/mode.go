@@ -3,7 +3,6 @@ package report
 import (
 	"fmt"
 	"math"
-	"slices"
 
 	"keelfall/solver/growth"
 	"keelfall/solver/race"
@@ -150,7 +149,7 @@ func ModesPage(p *race.Problem, s *state.State, wavelength float64, modes []*gro
 			pg.say("Work done on %s: %.1f %% of the dissipation.", part.what, 100*sum)
 		}
 	}
-	controls(pg, s, m)
+	controls(pg, s, m, nil)
 	return pg.b.String()
 }
 
@@ -159,120 +158,4 @@ func percentAt(x []float64, i int) string {
 		return fmt.Sprintf("%.1f", 100*x[i])
 	}
 	return "-"
-}
-
-// Control is one exact derivative of the growth rate, made comparable: the relative
-// change of the rate for a stated change of one layer.
-type Control struct {
-	Layer  string  `json:"layer"`
-	What   string  `json:"what"`   // viscosity, density or thickness
-	Change string  `json:"change"` // what it is changed by
-	Effect float64 `json:"dlnq"`   // resulting relative change of the rate
-}
-
-// Controls ranks what controls a mode: viscosity × e^0.1, density + 10 kg/m³, thickness
-// + 10 %, each alone, all else held.
-func Controls(s *state.State, m *growth.Mode) []Control {
-	out := []Control{}
-	if m == nil || m.Growth == 0 {
-		return out
-	}
-	for i := 0; i <= len(s.Column.Layers); i++ {
-		name, h := "half-space", 0.0
-		if i < len(s.Column.Layers) {
-			name, h = s.Column.Layers[i].Name, s.Column.Layers[i].Thickness
-		}
-		if i < len(m.DlnqDlnEta) {
-			out = append(out, Control{name, "viscosity", "+ 10 %", 0.1 * m.DlnqDlnEta[i]})
-		}
-		if i < len(m.DqDrho) {
-			out = append(out, Control{name, "density", "+ 10 kg/m3", 10 * m.DqDrho[i] / math.Abs(m.Growth)})
-		}
-		if i < len(m.DqDh) {
-			out = append(out, Control{name, "thickness", "+ 10 %", 0.1 * h * m.DqDh[i] / math.Abs(m.Growth)})
-		}
-	}
-	slices.SortStableFunc(out, func(a, b Control) int {
-		switch x, y := math.Abs(a.Effect), math.Abs(b.Effect); {
-		case x > y:
-			return -1
-		case x < y:
-			return 1
-		}
-		return 0
-	})
-	return out
-}
-
-// controls writes the ranked list, effects above half a percent.
-func controls(pg *page, s *state.State, m *growth.Mode) {
-	all := Controls(s, m)
-	if len(all) == 0 {
-		return
-	}
-	pg.section("CONTROLS")
-	pg.say("Change of the growth rate for a change of one layer, all else held (exact derivatives; viscosities, temperatures and density jumps as they are):")
-	for i, c := range all {
-		if i == 10 || math.Abs(c.Effect) < 5e-3 {
-			break
-		}
-		pg.line("%-28s %-10s %-11s %+7.1f %%", cut(c.Layer, 28), c.What, c.Change, 100*c.Effect)
-	}
-}
-
-// BranchJSON is one mode followed across wavelengths.
-type BranchJSON struct {
-	Label      []string `json:"label"`
-	Wavelength []number `json:"wavelength_m"`
-	Growth     []number `json:"growth_rate_per_s"`
-	Imaginary  []number `json:"imaginary_per_s"`
-}
-
-// Branches returns every branch of a spectrum.
-func Branches(s *state.State, all []growth.Branch) []BranchJSON {
-	out := []BranchJSON{}
-	depths := depthsOf(s)
-	for _, b := range all {
-		var j BranchJSON
-		for _, m := range b.Modes {
-			j.Label = append(j.Label, m.Label(RootBase(s), depths))
-			j.Wavelength = append(j.Wavelength, number(m.Wavelength))
-			j.Growth = append(j.Growth, number(m.Growth))
-			j.Imaginary = append(j.Imaginary, number(m.Imaginary))
-		}
-		out = append(out, j)
-	}
-	return out
-}
-
-// BranchesTable is every branch as one table.
-func BranchesTable(s *state.State, all []growth.Branch) Table {
-	t := Table{Name: "branches", Header: []string{"branch", "label", "wavelength_km", "growth_rate_1_Myr", "imaginary_1_Myr"}}
-	depths := depthsOf(s)
-	for i, b := range all {
-		for _, m := range b.Modes {
-			t.Rows = append(t.Rows, []string{fmt.Sprint(i + 1), m.Label(RootBase(s), depths), cell(m.Wavelength / km), cell(m.Growth * Myr), cell(m.Imaginary * Myr)})
-		}
-	}
-	return t
-}
-
-// BranchesText lists the branches: where each grows and where it is fastest.
-func BranchesText(s *state.State, all []growth.Branch) string {
-	pg := &page{}
-	depths := depthsOf(s)
-	pg.section("BRANCHES")
-	pg.line("%-3s %-30s %16s  %14s  %14s", "", "what moves, where it is fastest", "from-to km", "fastest km", "e-folding Myr")
-	for i, b := range all {
-		best := b.Modes[0]
-		for _, m := range b.Modes {
-			if m.Growth > best.Growth {
-				best = m
-			}
-		}
-		first, last := b.Modes[0], b.Modes[len(b.Modes)-1]
-		pg.line("%-3d %-30s %16s  %14s  %14s", i+1, best.Label(RootBase(s), depths),
-			sig(first.Wavelength/km, 3)+"-"+sig(last.Wavelength/km, 3), sig(best.Wavelength/km, 3), sig(efold(best.Growth)/Myr, 3))
-	}
-	return pg.b.String()
 }

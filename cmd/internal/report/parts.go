@@ -52,6 +52,7 @@ func SpectrumPage(p *race.Problem, s *state.State, sp *growth.Spectrum, exact []
 	for _, r := range rates {
 		pg.line("%14s  %18s  %16s  %14.0e", sig(r.Wavelength/km, 5), sig(r.Growth*Myr, 6), sig(efold(r.Growth)/Myr, 4), r.RelativeError)
 	}
+	controls(pg, s, sp.Mode, sp.Shift)
 	return pg.b.String()
 }
 

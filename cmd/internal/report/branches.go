@@ -1,0 +1,81 @@
+package report
+
+import (
+	"fmt"
+
+	"keelfall/solver/growth"
+	"keelfall/solver/state"
+)
+
+// BranchJSON is one mode followed across wavelengths.
+type BranchJSON struct {
+	Label      []string `json:"label"`
+	Wavelength []number `json:"wavelength_m"`
+	Growth     []number `json:"growth_rate_per_s"`
+	Imaginary  []number `json:"imaginary_per_s"`
+}
+
+// Branches returns every branch of a spectrum.
+func Branches(s *state.State, all []growth.Branch) []BranchJSON {
+	out := []BranchJSON{}
+	depths := depthsOf(s)
+	for _, b := range all {
+		var j BranchJSON
+		for _, m := range b.Modes {
+			j.Label = append(j.Label, m.Label(RootBase(s), depths))
+			j.Wavelength = append(j.Wavelength, number(m.Wavelength))
+			j.Growth = append(j.Growth, number(m.Growth))
+			j.Imaginary = append(j.Imaginary, number(m.Imaginary))
+		}
+		out = append(out, j)
+	}
+	return out
+}
+
+// BranchesTable is every branch as one table.
+func BranchesTable(s *state.State, all []growth.Branch) Table {
+	t := Table{Name: "branches", Header: []string{"branch", "label", "wavelength_km", "growth_rate_1_Myr", "imaginary_1_Myr"}}
+	depths := depthsOf(s)
+	for i, b := range all {
+		for _, m := range b.Modes {
+			t.Rows = append(t.Rows, []string{fmt.Sprint(i + 1), m.Label(RootBase(s), depths), cell(m.Wavelength / km), cell(m.Growth * Myr), cell(m.Imaginary * Myr)})
+		}
+	}
+	return t
+}
+
+// fastestOf returns a branch's fastest mode.
+func fastestOf(b growth.Branch) *growth.Mode {
+	best := b.Modes[0]
+	for _, m := range b.Modes {
+		if m.Growth > best.Growth {
+			best = m
+		}
+	}
+	return best
+}
+
+// BranchLabels says of each branch what moves where it is fastest.
+func BranchLabels(s *state.State, all []growth.Branch) []string {
+	depths := depthsOf(s)
+	labels := make([]string, len(all))
+	for i, b := range all {
+		labels[i] = fastestOf(b).Label(RootBase(s), depths)
+	}
+	return labels
+}
+
+// BranchesText lists the branches: where each grows and where it is fastest.
+func BranchesText(s *state.State, all []growth.Branch) string {
+	pg := &page{}
+	pg.section("BRANCHES")
+	pg.line("%-3s %-30s %16s  %14s  %14s", "", "what moves, where it is fastest", "from-to km", "fastest km", "e-folding Myr")
+	labels := BranchLabels(s, all)
+	for i, b := range all {
+		best := fastestOf(b)
+		first, last := b.Modes[0], b.Modes[len(b.Modes)-1]
+		pg.line("%-3d %-30s %16s  %14s  %14s", i+1, labels[i],
+			sig(first.Wavelength/km, 3)+"-"+sig(last.Wavelength/km, 3), sig(best.Wavelength/km, 3), sig(efold(best.Growth)/Myr, 3))
+	}
+	return pg.b.String()
+}
