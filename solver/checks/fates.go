@@ -8,6 +8,7 @@ import (
 	"keelfall/rheology"
 	"keelfall/solver/drip"
 	"keelfall/solver/excision"
+	"keelfall/solver/growth"
 	"keelfall/solver/heat"
 	"keelfall/solver/state"
 )
@@ -49,6 +50,8 @@ func fateChecks() []Check {
 			"plane geometry of a fault, common practice", Common, cutThrough(30, 10, func(r *excision.Result) float64 { return r.CutThroughSlip / 1e3 })},
 		{"arc mean after a heave of 20 km in an arc of 100 km: h heave/(B + heave) of 12 km lost", "km", 12 * 20.0 / 120, 1e-12,
 			"as uniform stretching by the same extension, derived", Derived, arcMean},
+		{"growing modes of one composition, compressible, not expanding", "", 0, 1e-300,
+			"a displaced parcel keeps its composition, so only the surface relaxes; derived", Derived, oneComposition},
 		{"pressure under 20 km of 2800 kg/m³", "MPa", 2800 * g * 20e3 / 1e6, 1e-12,
 			"hydrostatic balance P = ρgz", Published, func(context.Context) (float64, error) {
 				c := hangingColumn(20e3, 0, 1e21)
@@ -131,6 +134,18 @@ func heatChecks() []Check {
 				}
 				return p.BaseFlow * 1e3, nil
 			}},
+		{"geotherm with conductivity 3/(1 + 0.001 (T − T_s)) W/m/K, 40 mW/m² over 30 km", "K above the surface", (math.Exp(1e-3*40e-3*30e3/3) - 1) / 1e-3, 1e-10,
+			"Kirchhoff transform, Carslaw & Jaeger 1959; closed form", Published, func(context.Context) (float64, error) {
+				c := heatColumn([]float64{30}, []float64{3}, []column.HeatProduction{{}})
+				c.Base.HeatFlow, c.Base.HasHeatFlow = 40e-3, true
+				c.Layers[0].Conductivity = column.Conductivity{Reference: 3, PerKelvin: 1e-3, At: 273.15}
+				p, err := heat.Solve(c)
+				if err != nil {
+					return 0, err
+				}
+				T, _, _ := p.Layers[0].At(30e3)
+				return T - 273.15, nil
+			}},
 		{"tangent exponent where n = 1 and n = 3.5 carry equal rates", "", 2.25, 1e-10, "Σ n ε/Σ ε, derived", Derived,
 			func(context.Context) (float64, error) { return tangent(1, 1, 2) }},
 		{"tangent exponent of 1 τ + 2 τ^3.5 at ε = 0.8", "", 1.777334739, 1e-9, "derived", Derived,
@@ -143,4 +158,33 @@ func tangent(a, b, rate float64) (float64, error) {
 	c := rheology.Creep{Laws: []rheology.Law{{Name: "linear", A: a, N: 1}, {Name: "power law", A: b, N: 3.5}}}
 	r, err := c.Respond(rate, rheology.Conditions{T: 1000})
 	return r.Exponent, err
+}
+
+// oneComposition counts the growing modes of 100 km of one compressible rock over a
+// half-space of it, at ten wavelengths.
+func oneComposition(context.Context) (float64, error) {
+	rock := column.Rock{Density: column.EquationOfState{Reference: 3300, Compressibility: 1e-11, ReferenceTemperature: 293.15},
+		Viscosity: column.Viscosity{Top: 1e22, Bottom: 1e20, Exponent: 1, Factor: 1}, Conductivity: column.Conductivity{Reference: 3}, HeatCapacity: 1000}
+	c := &column.Column{Gravity: g, Surface: column.Surface{Boundary: column.Free, Temperature: 273.15},
+		Layers: []column.Layer{{Name: "upper", Thickness: 50e3, Rock: rock}, {Name: "lower", Thickness: 50e3, Rock: rock}},
+		Base:   column.Base{Boundary: column.HalfSpace, HasTemperature: true, Temperature: 1573.15, Rock: rock}}
+	st, err := state.New(c, 0)
+	if err != nil {
+		return 0, err
+	}
+	s, err := growth.NewSolver(drip.Strained(st, drip.Background{}, "diffusive"), 0)
+	if err != nil {
+		return 0, err
+	}
+	var growing float64
+	for i := range 10 {
+		r, err := s.Rate(10e3 * math.Pow(2, float64(i)))
+		if err != nil {
+			return 0, err
+		}
+		if r.Growth > 0 {
+			growing++
+		}
+	}
+	return growing, nil
 }

@@ -102,8 +102,8 @@ func (s *Solver) heatMesh(m *mesh, p *ports) ([]heatElement, int) {
 // heatSpan is kh, and heatSwing the change of ln η, of a heat element at the working
 // resolution: T' follows W, and W follows the viscosity.
 const (
-	heatSpan  = 5
-	heatSwing = 8
+	heatSpan  = 10
+	heatSwing = 20
 )
 
 // heatLength returns how long a heat element of a layer may be, m.
@@ -144,6 +144,12 @@ func (s *Solver) coupleHeat(m *mesh, k float64, p *ports, c *coupling) {
 	tiedMass, tiedStiff := make([]float64, dof), make([]float64, dof)
 	work := make([][]entry, dof) // ∫ ρ c_p γ φ W by port
 	load := make([][]entry, dof)
+	store := make([]entry, 8*stages*dof) // room for most lists at once
+	for i := range dof {
+		at := 8 * stages * i
+		work[i] = store[at : at : at+4*stages]
+		load[i] = store[at+4*stages : at+4*stages : at+8*stages]
+	}
 	var tiedLoad []entry
 	var v, dv [degree + 1]float64
 	gx, gw := heatQuadrature()

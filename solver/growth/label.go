@@ -10,8 +10,17 @@ import (
 // (the background strain does most of the work); "thermal" (temperature perturbations
 // do); "graded layer overturns"; or the contact that drives it. rootBase is the
 // interface below the lowest root layer, −1 without a root; depths are those of the
-// interfaces in m.
+// interfaces in m. A mode that decays says so.
 func (m *Mode) Label(rootBase int, depths []float64) string {
+	what := m.moves(rootBase, depths)
+	if m.Growth < 0 && what != "surface relaxes" && what != "decays" {
+		what += ", decaying"
+	}
+	return what
+}
+
+// moves says what moves, growing or not.
+func (m *Mode) moves(rootBase int, depths []float64) string {
 	if m.WorkShare == nil || m.DissipationShare == nil {
 		return "neutral"
 	}

@@ -115,7 +115,7 @@ func (c *Column) extended() *Column {
 
 // stretch makes the added layer 8/k thick and cuts it where heat needs elements: short
 // ones at its top, where temperature diffuses over less than the column's depth, each
-// twice as long as the one above; half as long where refined.
+// four times as long as the one above; half as long where refined.
 func (s *Solver) stretch(k float64, refined bool) {
 	if !s.below {
 		return
@@ -131,7 +131,7 @@ func (s *Solver) stretch(k float64, refined bool) {
 	cut := func(from, to float64) {
 		s.segments = append(s.segments, segment{layer: last, top: top + h*from, bottom: top + h*to, lower: to == 1})
 	}
-	for z := 0.0; z < 1; length *= 2 {
+	for z := 0.0; z < 1; length *= 4 {
 		next := math.Min(1, z+length)
 		if 1-next < 0.5*length {
 			next = 1
