@@ -80,9 +80,16 @@ func growthText(p *page, s *state.State, sp *growth.Spectrum, shown []growth.Rat
 			p.say("Of the work, %.0f %% is done by the heat that the undulation carries.", 100*heat)
 		}
 	}
-	worst := 0.0
+	worst, own := 0.0, math.NaN()
 	for _, x := range shown {
 		worst = math.Max(worst, x.RelativeError)
+		if x.Wavelength == f.Wavelength {
+			own = x.RelativeError
+		}
 	}
-	p.say("Growth rates good to %.0e (estimated).", worst)
+	if math.IsNaN(own) { // other wavelengths were asked for
+		p.say("Growth rates below good to %.0e (estimated).", worst)
+		return
+	}
+	p.say("That rate is good to %.0e, the worst of the range to %.0e (estimated).", own, worst)
 }
