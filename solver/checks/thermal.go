@@ -4,7 +4,10 @@ import (
 	"context"
 	"math"
 
+	"keelfall/column"
+	"keelfall/solver/drip"
 	"keelfall/solver/growth"
+	"keelfall/solver/state"
 )
 
 // heated is a unit layer of unit viscosity, conductivity, heat capacity and
@@ -94,5 +97,23 @@ func thermalChecks() []Check {
 				return []float64{r.Growth, r.Imaginary}[i], nil
 			}})
 	}
-	return list
+	return append(list, Check{"hot layer of one rock over an inviscid base, no density jump, λ = 100 km", "1/s", 2.711342845e-14, 1e-9,
+		"derived; collocation in 30 digits by a second hand, T' = −ξ dT₀/dz at the base", Derived, overFluid})
+}
+
+// overFluid is the growth rate of 100 km of expanding rock, 0 to 1300 °C, over fluid of
+// its own density: only temperature acts.
+func overFluid(context.Context) (float64, error) {
+	rock := column.Rock{Density: column.EquationOfState{Reference: 3300, Expansivity: 3e-5, ReferenceTemperature: 273.15},
+		Viscosity: column.Viscosity{Top: 1e20, Bottom: 1e20, Exponent: 1, Factor: 1}, Conductivity: column.Conductivity{Reference: 2.5}, HeatCapacity: 1000}
+	c := &column.Column{Gravity: g, Surface: column.Surface{Boundary: column.Rigid, Temperature: 273.15},
+		Base: column.Base{Boundary: column.Inviscid, HasTemperature: true, Temperature: 1573.15, Rock: rock}}
+	for i := range 8 {
+		c.Layers = append(c.Layers, column.Layer{Name: string(rune('a' + i)), Thickness: 12.5e3, Rock: rock})
+	}
+	s, err := state.New(c, 0)
+	if err != nil {
+		return 0, err
+	}
+	return rate(drip.Strained(s, drip.Background{}, "diffusive"), 2*math.Pi/100e3)
 }

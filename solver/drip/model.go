@@ -14,13 +14,16 @@ type Background struct {
 	AlongStrike   bool    // the wavevector runs along strike, across the extension
 }
 
-// rates returns d = (e_k − e_z)/2, the second invariant ε₀ and e_z.
-func (b Background) rates() (d, invariant, vertical float64) {
-	e := b.ExtensionRate
-	if b.AlongStrike { // e_k = 0, e_y = e, e_z = −e
-		return e / 2, math.Abs(e), -e
+// rates returns d = (e_k − e_z)/2, e_z and (d/ε₀)² with the second invariant ε₀ = |e|.
+func (b Background) rates() (d, vertical, ratio float64) {
+	switch e := b.ExtensionRate; {
+	case e == 0:
+		return 0, 0, 0
+	case b.AlongStrike: // e_k = 0, e_y = e, e_z = −e
+		return e / 2, -e, 0.25
+	default: // e_k = e, e_z = −e
+		return e, -e, 1
 	}
-	return e, math.Abs(e), -e // e_k = e, e_z = −e
 }
 
 // Model returns what the growth solver needs of a state that nothing strains: the
@@ -35,11 +38,7 @@ func Model(s *state.State) *growth.Column { return Strained(s, Background{}, "no
 // at the background's strain rate.
 func Strained(s *state.State, b Background, thermal string) *growth.Column {
 	c := s.Column
-	d, invariant, vertical := b.rates()
-	soften := 0.0 // (d/ε₀)²
-	if invariant > 0 {
-		soften = d * d / (invariant * invariant)
-	}
+	d, vertical, soften := b.rates()
 	normal := func(eta, n float64) float64 { return eta * (1 + (1/n-1)*soften) }
 	m := &growth.Column{
 		Gravity: c.Gravity,
@@ -70,6 +69,7 @@ func Strained(s *state.State, b Background, thermal string) *growth.Column {
 				continue
 			}
 			composition, heat := m.Layers[i].Gradient, heatOf(s, i)
+			m.Layers[i].HeatGradient = composition == nil
 			m.Layers[i].Gradient = func(z float64) float64 {
 				g := heat.PerKelvin(z) * heat.Excess(z)
 				if composition != nil {

@@ -19,7 +19,11 @@ func (s *Solver) newFlow(k float64) *flow {
 	t := s.copy() // the solver's mesh and matrices stay as they are
 	t.nodal = true
 	f := &flow{s: t, m: &mesh{}, k: k}
-	t.divide(f.m, k, k, t.rule)
+	low, high, r := k, k, t.rule
+	if k >= s.mesh.low && k <= s.mesh.high { // the mesh that the rate was found on
+		low, high, r, f.m.parts = s.mesh.low, s.mesh.high, s.bandRule, s.mesh.parts
+	}
+	t.divide(f.m, low, high, r)
 	t.room(f.m)
 	t.assemble(f.m, k)
 	f.p = t.layout(f.m)

@@ -22,6 +22,9 @@ type Layer struct {
 	// Gradient returns the compositional density gradient ρ_c in kg/m⁴ at depth z;
 	// nil where composition is uniform.
 	Gradient func(z float64) float64
+	// HeatGradient says that Gradient is mostly that of temperature, carried without
+	// diffusion: for the names of modes and the budget.
+	HeatGradient bool
 }
 
 // Column is what the growth solver needs of a column, SI.
@@ -87,5 +90,5 @@ type Mode struct {
 	DqDrho                        []float64 // ∂q/∂ρ of each layer, the half-space last, 1/s per kg/m³
 	DqDh                          []float64 // ∂q/∂h of each layer, its profile stretched and everything below moving down, 1/s per m
 
-	shear float64 // d of the background
+	shear, vertical float64 // d and e_z of the background
 }

@@ -62,7 +62,7 @@ func shape(s, h float64, v, dv *[degree + 1]float64) {
 
 // heatMesh groups the flow's elements into elements for heat, so that no flow element
 // sees a kink of T': a group spans at most heatSpan of kh and heatSwing of ln η, or is
-// one element. Refined, groups are half as long.
+// one element; m.parts cuts that further.
 func (s *Solver) heatMesh(m *mesh, p *ports) ([]heatElement, int) {
 	var es []heatElement
 	fresh := true
@@ -87,12 +87,16 @@ func (s *Solver) heatMesh(m *mesh, p *ports) ([]heatElement, int) {
 			e.dof[j] = dof
 			dof++
 		}
-		if i < len(es)-1 || s.c.Diffusion.FixedFlow {
+		switch {
+		case i < len(es)-1:
 			e.dof[1] = dof
 			dof++
-		} else if s.c.Base == Inviscid {
+		case s.c.Base == Inviscid:
 			e.dof[1] = -2
-		} else {
+		case s.c.Diffusion.FixedFlow && !s.below:
+			e.dof[1] = dof
+			dof++
+		default:
 			e.dof[1] = -1
 		}
 	}
@@ -116,10 +120,7 @@ func (s *Solver) heatLength(m *mesh, layer int) float64 {
 		}
 	}
 	n := math.Ceil(m.high*h/heatSpan + swing/heatSwing)
-	if m.refined {
-		n *= 2
-	}
-	return h / n
+	return h / (n * float64(max(1, m.parts)))
 }
 
 // coupleHeat adds the coefficients of T' to the states.

@@ -13,7 +13,7 @@ import (
 // interfaces in m. A mode that decays says so.
 func (m *Mode) Label(rootBase int, depths []float64) string {
 	what := m.moves(rootBase, depths)
-	if m.Growth < 0 && what != "surface relaxes" && what != "decays" {
+	if m.Growth < 0 && what != "surface relaxes" && what != "decays" && what != "heat diffuses" {
 		what += ", decaying"
 	}
 	return what
@@ -38,10 +38,14 @@ func (m *Mode) moves(rootBase int, depths []float64) string {
 	}
 	strain, heat, grade, contact := total(m.StrainShare), total(m.ThermalWork), total(m.GradientWork), m.WorkShare[driver]
 	switch most := math.Max(math.Max(strain, heat), math.Max(grade, contact)); {
-	case m.Growth <= 0 && driver == 0:
+	case m.Growth <= 0 && m.WorkShare[0] > 0.5:
 		return "surface relaxes"
+	case m.Growth <= 0 && heat > 0.5:
+		return "heat diffuses"
 	case most <= 0:
 		return "decays"
+	case m.shear != 0 && m.Growth > 0 && m.Growth <= m.vertical:
+		return "carried by thickening" // its own dynamics decay
 	case most == strain:
 		if m.shear > 0 {
 			return "lid necks"

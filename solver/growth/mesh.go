@@ -4,13 +4,13 @@ import "math"
 
 // mesh is a division of the column that serves every k of a band.
 type mesh struct {
-	elems   []element
-	spare   []element // of the mesh before, whose elements may serve again
-	old     int       // next of spare to look at
-	low     float64   // smallest k it serves
-	high    float64   // largest k it serves
-	states  int       // size of A: interfaces and fields
-	refined bool      // a check on another: heat elements are halved too
+	elems  []element
+	spare  []element // of the mesh before, whose elements may serve again
+	old    int       // next of spare to look at
+	low    float64   // smallest k it serves
+	high   float64   // largest k it serves
+	states int       // size of A: interfaces and fields
+	parts  int       // into which heat elements are cut beyond the rule; 0 as 1
 }
 
 // rule turns a tolerance into the mesh rule's numbers: an element may span
@@ -68,7 +68,7 @@ func (g *segment) swing(a, b float64) float64 {
 // divide fills m with a mesh for the band [low, high].
 func (s *Solver) divide(m *mesh, low, high float64, r rule) {
 	m.low, m.high = low, high
-	s.stretch(low, m.refined)
+	s.stretch(low, max(1, m.parts))
 	m.spare, m.elems = m.elems, m.spare[:0]
 	if m.elems == nil {
 		m.elems = make([]element, 0, 48)

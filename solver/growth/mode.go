@@ -26,6 +26,9 @@ func (s *Solver) Modes(wavelength float64) ([]*Mode, error) {
 	if !positive(wavelength) {
 		return nil, fmt.Errorf("%w: %g m", ErrWavelength, wavelength)
 	}
+	if _, err := s.Rate(wavelength); err != nil { // makes the band's mesh
+		return nil, err
+	}
 	f := s.newFlow(2 * math.Pi / wavelength)
 	if f.n == 0 {
 		m, err := s.Mode(wavelength)
@@ -58,7 +61,7 @@ func (s *Solver) Modes(wavelength float64) ([]*Mode, error) {
 
 // mode describes the mode whose rate is nearest to q.
 func (f *flow) mode(q complex128) (*Mode, error) {
-	m := &Mode{Wavelength: 2 * math.Pi / f.k, Growth: real(q), Imaginary: imag(q), shear: f.s.c.ShearRate}
+	m := &Mode{Wavelength: 2 * math.Pi / f.k, Growth: real(q), Imaginary: imag(q), shear: f.s.c.ShearRate, vertical: f.s.c.VerticalStrain}
 	x, y, err := f.eigenvectors(q)
 	if err != nil {
 		return nil, err
@@ -175,6 +178,8 @@ func (f *flow) shares(m *Mode, b *budget) {
 				switch {
 				case j >= f.c.heat:
 					m.ThermalWork[min(f.layerOf(l.at), layers)] += p
+				case f.c.what[j] < 0 && f.s.c.Layers[-1-f.c.what[j]].HeatGradient:
+					m.ThermalWork[-1-f.c.what[j]] += p
 				case f.c.what[j] < 0:
 					m.GradientWork[-1-f.c.what[j]] += p
 				case n == 0:

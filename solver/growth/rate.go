@@ -35,6 +35,8 @@ func (s *Solver) Rate(wavelength float64) (Rate, error) {
 }
 
 const (
+	// heatTolerance is what the mesh is refined to, at most twice, where heat diffuses.
+	heatTolerance = 1e-6
 	// safety multiplies the change between two meshes: the change is taken at the ends
 	// of a band, and 1 in 70 random columns has up to three times as much inside it.
 	safety = 5
@@ -53,11 +55,15 @@ func bandOf(k float64) (low, high float64) {
 // band meshes the band of k and estimates its error at both ends.
 func (s *Solver) band(k float64) error {
 	low, high := bandOf(k)
-	r := s.rule
+	r, parts, enough := s.rule, 1, s.tol
+	if s.c.Diffusion != nil {
+		enough = math.Max(s.tol, heatTolerance)
+	}
 	for try := 0; ; try++ {
+		s.mesh.parts, s.fine.parts = parts, 2*parts
 		s.divide(&s.mesh, low, high, r)
-		s.fine.refined = true
 		s.divide(&s.fine, low, high, r.finer())
+		s.bandRule = r
 		s.bandError = 0
 		for i, kk := range [2]float64{low, high} {
 			re, im, fast, err := s.leading(&s.mesh, kk)
@@ -77,8 +83,15 @@ func (s *Solver) band(k float64) error {
 				s.bandError = math.Max(s.bandError, change/size)
 			}
 		}
-		if s.bandError <= s.tol || try == 3 || s.c.Diffusion != nil { // the heat mesh does not follow the rule
+		if s.bandError <= enough || try == 3 {
 			return nil
+		}
+		if s.c.Diffusion != nil { // halve the elements of heat, and the flow's with them
+			if try == 2 {
+				return nil
+			}
+			r, parts = rule{r.span / 2, r.depth}, 2*parts
+			continue
 		}
 		f := math.Pow(s.tol/s.bandError, 1.0/(2*stages)) * 0.9
 		r = rule{r.span * math.Max(f, 0.25), r.depth + 1}

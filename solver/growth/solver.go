@@ -40,6 +40,7 @@ type Solver struct {
 type workspace struct {
 	mesh, fine mesh
 	bandError  float64 // of mesh, relative
+	bandRule   rule    // mesh was made with
 	ends       [2]rateAt
 	second     float64 // real part of the second mode, from leading
 
@@ -116,7 +117,7 @@ func (c *Column) extended() *Column {
 // stretch makes the added layer 8/k thick and cuts it where heat needs elements: short
 // ones at its top, where temperature diffuses over less than the column's depth, each
 // four times as long as the one above; half as long where refined.
-func (s *Solver) stretch(k float64, refined bool) {
+func (s *Solver) stretch(k float64, parts int) {
 	if !s.below {
 		return
 	}
@@ -136,11 +137,12 @@ func (s *Solver) stretch(k float64, refined bool) {
 		if 1-next < 0.5*length {
 			next = 1
 		}
-		if refined {
-			cut(z, (z+next)/2)
-			cut((z+next)/2, next)
-		} else {
-			cut(z, next)
+		for i := range parts {
+			from, to := z+(next-z)*float64(i)/float64(parts), z+(next-z)*float64(i+1)/float64(parts)
+			if i == parts-1 {
+				to = next
+			}
+			cut(from, to)
 		}
 		z = next
 	}
@@ -203,7 +205,9 @@ func newSolver(c *Column, tol float64, w *workspace) (*Solver, error) {
 	}
 	s.active = make([]bool, len(s.forces))
 	for i, f := range s.forces {
-		if s.active[i] = s.movable(i) && f != (force{}); s.active[i] {
+		// an inviscid base ties temperature to its displacement, whatever its density
+		tied := c.Diffusion != nil && c.Base == Inviscid && i == len(c.Layers)
+		if s.active[i] = s.movable(i) && (tied || f != (force{})); s.active[i] {
 			s.interfaces++
 		}
 	}
