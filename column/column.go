@@ -64,6 +64,8 @@ type Rock struct {
 	GrainSize      float64 // m; 0 where not given
 	Water          float64 // Pa or H/10⁶ Si, as WaterMeasure says
 	WaterMeasure   rheology.WaterMeasure
+	Friction       *rheology.Friction   // of creep laws only; nil: no yield
+	Piezometer     *rheology.Piezometer // grain size from the stress in place of GrainSize; nil: none
 	Source, Notes  string
 }
 
@@ -101,6 +103,7 @@ type Column struct {
 	Layers   []Layer // from the surface down
 	Base     Base
 	Limits   rheology.Limits // of creep viscosities
+	Sense    float64         // sign of the extension rate, for friction: 1, -1, or 0 where nothing strains the column
 	Geotherm []Point         // a given geotherm; nil: steady conduction, or none where neither Base temperature nor heat flow is given
 }
 

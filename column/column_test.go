@@ -96,6 +96,10 @@ func TestCreepWith(t *testing.T) {
 	if got.Factor != 6 || got.Limits.Highest != 1e24 || own.Factor != 3 || own.Limits.Highest != 0 {
 		t.Errorf("%+v from %+v", got, own)
 	}
+	r.Friction, r.Piezometer = &rheology.Friction{Cohesion: 1e6}, &rheology.Piezometer{B: 0.01, P: 1}
+	if got = r.CreepWith(rheology.Limits{}); got.Friction != r.Friction || got.Piezometer != r.Piezometer || own.Friction != nil {
+		t.Errorf("%+v from %+v", got, own)
+	}
 }
 
 // good is a valid column of creep and numbers; each case of TestValidate spoils it.

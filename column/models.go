@@ -133,8 +133,9 @@ func (r *Rock) Conditions(T, P float64) rheology.Conditions {
 	return rheology.Conditions{T: T, P: P, GrainSize: r.GrainSize, Water: r.Water, WaterMeasure: r.WaterMeasure}
 }
 
-// CreepWith returns the rock's creep laws with its own viscosity factor multiplied in
-// and the column's limits in place of theirs, or nil where its viscosity is a number.
+// CreepWith returns the rock's creep laws with its own viscosity factor multiplied in,
+// the column's limits in place of theirs, and its friction and piezometer; nil where its
+// viscosity is a number.
 func (r *Rock) CreepWith(limits rheology.Limits) *rheology.Creep {
 	if r.Viscosity.Creep == nil {
 		return nil
@@ -145,6 +146,12 @@ func (r *Rock) CreepWith(limits rheology.Limits) *rheology.Creep {
 	}
 	c.Factor *= r.Viscosity.FactorOr1()
 	c.Limits = limits
+	if r.Friction != nil {
+		c.Friction = r.Friction
+	}
+	if r.Piezometer != nil {
+		c.Piezometer = r.Piezometer
+	}
 	return &c
 }
 

@@ -21,6 +21,8 @@ func (c *Column) Validate() error {
 		return fmt.Errorf("column: surface boundary %v; known are free, free-slip, rigid", c.Surface.Boundary)
 	case c.Base.Boundary < FreeSlip || c.Base.Boundary > Inviscid:
 		return fmt.Errorf("column: base boundary %v; known are half-space, inviscid, free-slip, rigid", c.Base.Boundary)
+	case c.Sense != 0 && c.Sense != 1 && c.Sense != -1:
+		return fmt.Errorf("column: sense of strain %g, must be 1, 0 or -1", c.Sense)
 	case c.Limits.Lowest < 0 || c.Limits.Highest < 0 || math.IsNaN(c.Limits.Lowest+c.Limits.Highest):
 		return fmt.Errorf("column: viscosity limits %g and %g Pa s, must be >= 0", c.Limits.Lowest, c.Limits.Highest)
 	case c.Limits.Highest > 0 && c.Limits.Lowest > c.Limits.Highest:
@@ -79,6 +81,10 @@ func (c *Column) rock(r *Rock, viscous bool) error {
 		if !positive(d.Reference) || !(d.Compressibility >= 0) || math.IsNaN(d.Expansivity+d.ReferenceTemperature) {
 			return fmt.Errorf("density: reference %g kg/m³, expansivity %g 1/K, compressibility %g 1/Pa, at %g K", d.Reference, d.Expansivity, d.Compressibility, d.ReferenceTemperature)
 		}
+	case interface{ Validate() error }:
+		if err := d.Validate(); err != nil {
+			return err
+		}
 	}
 	if !viscous {
 		return nil
@@ -92,6 +98,9 @@ func (c *Column) viscosity(r *Rock) error {
 		return fmt.Errorf("viscosity factor %g, must be > 0", v.Factor)
 	}
 	if v.Creep == nil {
+		if r.Friction != nil {
+			return fmt.Errorf("friction belongs to creep laws; a viscosity given as a number is used as it is")
+		}
 		if !positive(v.Top) || !positive(v.Bottom) {
 			return fmt.Errorf("viscosity %g to %g Pa s, must be > 0", v.Top, v.Bottom)
 		}
@@ -103,13 +112,19 @@ func (c *Column) viscosity(r *Rock) error {
 	if !c.HasTemperature() {
 		return fmt.Errorf("creep laws need a temperature and the column has none: give a basal temperature, a basal heat flow or a geotherm")
 	}
-	for i := range v.Creep.Laws {
-		if err := v.Creep.Laws[i].Validate(); err != nil {
+	for _, l := range v.Creep.AllLaws() {
+		if err := l.Validate(); err != nil {
 			return err
 		}
 	}
-	// Any temperature and strain rate show whether grain size and water are there.
 	creep := r.CreepWith(rheology.Limits{})
+	if f := creep.Friction; f != nil {
+		if err := f.Validate(); err != nil {
+			return err
+		}
+		creep.Friction = nil // of cohesion 0 has no strength at P = 0
+	}
+	// Any temperature and strain rate show whether grain size and water are there.
 	_, err := creep.Respond(1e-15, r.Conditions(1000, 0))
 	return err
 }

@@ -28,7 +28,21 @@ type creepItem struct {
 type mixture struct {
 	block
 	Mix text       `key:"mix,required" one:"geometric|iso-stress|iso-strain-rate" doc:"how the parts share stress and strain rate"`
-	Of  []mixShare `key:"of,required" doc:"the parts"`
+	Of  []mixShare `key:"of,required" doc:"the parts, two or more; their fractions sum to 1"`
+}
+
+func (m *mixture) check(w *walker) {
+	if len(m.Of) < 2 {
+		w.addf(m.at.get("of"), m.path+".of", "has %d part; a mixture needs two or more", len(m.Of))
+		return
+	}
+	var sum float64
+	for i := range m.Of {
+		sum += m.Of[i].Fraction.SI
+	}
+	if math.Abs(sum-1) > rheology.FractionSlack*(1+1e-9) {
+		w.addf(m.at.get("of"), m.path+".of", "has fractions that sum to %.4g; need 1 (within %g)", sum, rheology.FractionSlack)
+	}
 }
 
 type mixShare struct {
@@ -98,10 +112,10 @@ func (l *inlineLaw) prefactorUnit() string {
 // short prints a number without the noise of binary fractions.
 func short(x float64) string { return strconv.FormatFloat(math.Round(x*1e9)/1e9, 'g', -1, 64) }
 
-// laws returns the laws acting in parallel; extra are the user's own catalogues.
-func (c *creep) laws(w *walker, path string, extra []rheology.Law) []rheology.Law {
-	var out []rheology.Law
-	one := func(name text, in *inlineLaw, path string) {
+// laws returns the laws and mixtures acting in parallel; extra are the user's own
+// catalogues.
+func (c *creep) laws(w *walker, path string, extra []rheology.Law) (out []rheology.Law, mixed []rheology.Mixture) {
+	one := func(name text, in *inlineLaw, mix *mixture, path string) {
 		switch {
 		case name.given():
 			law, err := findLaw(name.Value, extra)
@@ -112,11 +126,25 @@ func (c *creep) laws(w *walker, path string, extra []rheology.Law) []rheology.La
 			out = append(out, law)
 		case in != nil:
 			out = append(out, in.law(path))
+		case mix != nil:
+			mixed = append(mixed, mix.phases(w, path, extra))
 		}
 	}
-	one(c.Name, c.Inline, path)
+	one(c.Name, c.Inline, c.Mix, path)
 	for i := range c.List {
-		one(c.List[i].Name, c.List[i].Inline, fmt.Sprintf("%s[%d]", path, i))
+		one(c.List[i].Name, c.List[i].Inline, c.List[i].Mix, fmt.Sprintf("%s[%d]", path, i))
+	}
+	return out, mixed
+}
+
+// phases returns the mixture as rheology takes it.
+func (m *mixture) phases(w *walker, path string, extra []rheology.Law) rheology.Mixture {
+	rule, _ := rheology.ParseMixing(m.Mix.Value) // the schema has checked the word
+	out := rheology.Mixture{Rule: rule}
+	for i := range m.Of {
+		p := rheology.Phase{Fraction: m.Of[i].Fraction.SI}
+		p.Laws, p.Mixtures = m.Of[i].Creep.laws(w, fmt.Sprintf("%s.of[%d].creep", path, i), extra)
+		out.Phases = append(out.Phases, p)
 	}
 	return out
 }

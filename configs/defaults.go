@@ -75,7 +75,11 @@ func (n *node) isZero() bool { return n != nil && isOnly(n, "0") }
 // layer, or of a base that is not a wall, depends on a temperature the column has.
 func thermalBuoyancy(root *node, layers []*node, warm bool) string {
 	expands := func(rock *node) bool {
-		e := rock.get("density").get("expansivity")
+		d := rock.get("density")
+		if d.get("modes") != nil || d.get("table") != nil {
+			return true
+		}
+		e := d.get("expansivity")
 		return e != nil && !e.isZero()
 	}
 	base := root.get("base")
@@ -133,10 +137,20 @@ func (f *filler) rock(l *node, path string, warm bool) {
 	if l.get("viscosity") != nil {
 		f.put(l, "stress-exponent", path+".stress-exponent", "1", false)
 	}
-	if d := l.get("density"); d.get("reference") != nil {
+	switch d := l.get("density"); {
+	case d.get("modes") != nil:
+		f.put(d, "by", path+".density.by", "volume", false)
+	case d.get("table") != nil:
+		f.put(d, "interpolation", path+".density.interpolation", "bilinear", false)
+	case d.get("reference") != nil:
 		f.put(d, "expansivity", path+".density.expansivity", "0 1/K", false)
 		f.put(d, "compressibility", path+".density.compressibility", "0 1/Pa", false)
 		f.put(d, "at", path+".density.at", "20 degC", false)
+	}
+	if fr := l.get("friction"); fr != nil && fr.kind == mapNode {
+		f.put(fr, "cohesion", path+".friction.cohesion", "0 Pa", false)
+		f.put(fr, "angle", path+".friction.angle", "0 deg", false)
+		f.put(fr, "pore-fluid-factor", path+".friction.pore-fluid-factor", "0", false)
 	}
 	if !warm {
 		return
@@ -166,7 +180,7 @@ func (f *filler) base(layers []*node) {
 	}
 	keys := []string{"density", "water", "grain-size", "conductivity", "heat-capacity"}
 	if base.get("viscosity") == nil && base.get("creep") == nil {
-		keys = append(keys, "viscosity", "creep", "stress-exponent", "viscosity-factor")
+		keys = append(keys, "viscosity", "creep", "stress-exponent", "viscosity-factor", "friction")
 	}
 	var boundary string
 	if b := base.get("boundary"); b != nil {

@@ -132,6 +132,8 @@ func (e *Experiment) resolve() (p race.Problem, wrong Mistakes) {
 	}
 	if len(e.walk.mistakes) == 0 {
 		p = e.build(e.walk)
+	} else {
+		e.lawNames(e.walk)
 	}
 	if len(e.walk.mistakes) == 0 {
 		return p, e.walk.hidden.sorted()
@@ -168,4 +170,14 @@ func (e *Experiment) Problem() (race.Problem, error) {
 		return race.Problem{}, w.mistakes.sorted()
 	}
 	return p, nil
+}
+
+// lawNames looks up the creep laws of a file that has other mistakes, so that a wrong
+// name is reported with them.
+func (e *Experiment) lawNames(w *walker) {
+	for i := range e.data.Layers {
+		if l := e.data.Layers[i].Layer; l != nil && l.Creep != nil {
+			l.Creep.laws(w, l.path+".creep", e.laws)
+		}
+	}
 }

@@ -1,6 +1,7 @@
 package configs
 
 import (
+	"errors"
 	"strings"
 	"testing"
 )
@@ -179,5 +180,14 @@ func TestManyMistakes(t *testing.T) {
 	m, ok := err.(Mistakes)
 	if !ok || len(m) != maxMistakes+1 || !strings.Contains(m[maxMistakes].What, "more than 200 mistakes") {
 		t.Fatalf("%d mistakes of type %T", len(m), err)
+	}
+}
+
+// A law that does not exist is reported with the file's other mistakes, not after them.
+func TestLawNamesWithOtherMistakes(t *testing.T) {
+	_, err := Read("a.yaml", strings.NewReader("surface: {boundary: rigid}\nbase: {boundary: rigid, temperature: 600 degC}\nlayers:\n  - {name: a, thickness: 10, density: 3300 kg/m3, creep: dry eclogyte Zhang 2007}\n"))
+	var m Mistakes
+	if !errors.As(err, &m) || len(m) != 2 || !strings.Contains(err.Error(), "has no unit") || !strings.Contains(err.Error(), "dry eclogite Zhang 2007") {
+		t.Errorf("%v", err)
 	}
 }

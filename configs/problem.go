@@ -59,6 +59,9 @@ func (e *Experiment) build(w *walker) race.Problem {
 
 func (z *zone) problem() excision.Zone {
 	out := excision.Zone{Name: z.Name.Value, Dip: z.Dip.SI, LayeringDip: z.LayeringDip.SI, From: z.From.SI, To: z.To.SI, SlipRate: z.SlipRate.SI, Width: z.Width.SI}
+	if z.To.n.from == fromDefault { // no end: the window is where it is looked at last
+		out.To = math.Inf(1)
+	}
 	for _, c := range z.Cuts {
 		out.Cuts = append(out.Cuts, c.Value)
 	}
@@ -95,7 +98,7 @@ func (e *Experiment) column(w *walker) column.Column {
 
 func (e *Experiment) rock(w *walker, r *rock) column.Rock {
 	out := column.Rock{
-		Density:      r.Density.model(),
+		Density:      e.density(w, r.Density),
 		Viscosity:    column.Viscosity{Factor: 1, Exponent: 1},
 		HeatCapacity: r.HeatCapacity.SI,
 		Source:       r.Source.Value, Notes: r.Notes.Value,
@@ -108,7 +111,8 @@ func (e *Experiment) rock(w *walker, r *rock) column.Rock {
 	}
 	switch v := r.Viscosity; {
 	case r.Creep != nil:
-		out.Viscosity.Creep = &rheology.Creep{Laws: r.Creep.laws(w, r.path+".creep", e.laws), Factor: 1}
+		out.Viscosity.Creep = &rheology.Creep{Factor: 1}
+		out.Viscosity.Creep.Laws, out.Viscosity.Creep.Mixtures = r.Creep.laws(w, r.path+".creep", e.laws)
 	case v != nil && v.Linear != nil:
 		out.Viscosity.Top, out.Viscosity.Bottom = v.Linear.Top.SI, v.Linear.Bottom.SI
 	case v != nil:
@@ -116,6 +120,12 @@ func (e *Experiment) rock(w *walker, r *rock) column.Rock {
 	}
 	if g := r.GrainSize; g != nil {
 		out.GrainSize = g.Value.SI
+		if g.Piezometer != nil { // the schema has checked the mineral
+			out.Piezometer, _ = rheology.FindPiezometer(g.Piezometer.Piezometer.Value)
+		}
+	}
+	if f := r.Friction; f != nil && r.Creep != nil {
+		out.Friction = &rheology.Friction{Cohesion: f.Cohesion.SI, Angle: f.Angle.SI, PoreFluid: f.PoreFluid.SI}
 	}
 	switch f := r.Water; {
 	case f == nil:
@@ -139,20 +149,6 @@ func (e *Experiment) rock(w *walker, r *rock) column.Rock {
 	return out
 }
 
-// model is the density as column takes it; nil where there is none.
-func (d *density) model() column.Density {
-	switch {
-	case d == nil:
-		return nil
-	case d.Linear != nil:
-		return column.Linear{Top: d.Linear.Top.SI, Bottom: d.Linear.Bottom.SI}
-	case d.State != nil:
-		s := d.State
-		return column.EquationOfState{Reference: s.Reference.SI, Expansivity: s.Expansivity.SI, Compressibility: s.Compressibility.SI, ReferenceTemperature: s.At.SI}
-	}
-	return column.Uniform(d.Value.SI)
-}
-
 // howWarm says how an experiment gets a temperature.
 const howWarm = "add base.temperature or base.heat-flow, or a geotherm"
 
@@ -160,7 +156,7 @@ const howWarm = "add base.temperature or base.heat-flow, or a geotherm"
 // give, or water and grain size its creep laws ask for.
 func (e *Experiment) temperatureNeeds(w *walker, r *rock, out *column.Rock, warm bool) {
 	if out.Density != nil && out.Density.NeedsTemperature() && !warm {
-		w.addf(r.at.get("density"), r.path+".density", "depends on temperature (expansivity) and the experiment has none; %s", howWarm)
+		w.addf(r.at.get("density"), r.path+".density", "depends on temperature and the experiment has none; %s", howWarm)
 	}
 	creep := out.Viscosity.Creep
 	if creep == nil {
@@ -177,9 +173,8 @@ func (e *Experiment) temperatureNeeds(w *walker, r *rock, out *column.Rock, warm
 		}
 		said[key] = true
 	}
-	for i := range creep.Laws {
-		l := &creep.Laws[i]
-		if l.M != 0 && !(out.GrainSize > 0) {
+	for _, l := range creep.AllLaws() {
+		if l.M != 0 && !(out.GrainSize > 0) && out.Piezometer == nil {
 			say("grain-size", "is missing; %s needs one, for example grain-size: 2 mm", l.Name)
 		}
 		if l.R == 0 || l.Water == out.WaterMeasure {

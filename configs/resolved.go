@@ -9,8 +9,10 @@ import (
 
 // Resolved returns the whole experiment for a result's provenance: every key with
 // its default, in SI with the unit in the key's name (thickness_m, temperature_K;
-// times in s since the start), the creep laws it uses with their constants, the
-// defaults taken, the edits, and name and SHA-256 of every extra catalogue. It is ready for JSON and holds no NaN or infinity.
+// times in s since the start), the creep laws and minerals it uses with their
+// constants and how those are known, the defaults taken, the edits, and name and SHA-256
+// of every table of densities and extra catalogue. It is ready for JSON and holds no NaN
+// or infinity.
 func (e *Experiment) Resolved() map[string]any {
 	_, tree := e.resolved(e.filled, schema)
 	out, _ := tree.(map[string]any)
@@ -22,6 +24,7 @@ func (e *Experiment) Resolved() map[string]any {
 	}
 	out["defaults"] = defaults
 	out["creep_laws"] = e.creepLaws()
+	out["minerals"], out["density_tables"] = e.densitySources()
 	catalogues := []any{}
 	for _, c := range e.reader.Catalogues {
 		catalogues = append(catalogues, map[string]any{"name": c.Name, "sha256": c.SHA256})
@@ -81,7 +84,7 @@ func (e *Experiment) creepLaws() []any {
 		if k == nil {
 			return
 		}
-		for _, l := range k.Laws {
+		for _, l := range k.AllLaws() {
 			if seen[l.Name] {
 				continue
 			}

@@ -3,6 +3,8 @@ package configs
 import (
 	"fmt"
 	"math"
+
+	"keelfall/column"
 )
 
 // rock is what a layer, the base or an intrusion is made of.
@@ -16,7 +18,7 @@ type rock struct {
 	Water          *water          `key:"water" doc:"for creep laws that need it"`
 	GrainSize      *grainSize      `key:"grain-size" doc:"for creep laws that need it"`
 	Factor         quantity        `key:"viscosity-factor" dim:"number" range:"[1e-6,1e6]" eg:"1" doc:"multiplies the viscosity; 1 if left out"`
-	Friction       *friction       `key:"friction" doc:"frictional yield"`
+	Friction       *friction       `key:"friction" doc:"frictional yield of creep laws; a viscosity given as a number takes none"`
 	Melt           *melt           `key:"melt" doc:"partial melt"`
 	Conductivity   *conductivity   `key:"conductivity" doc:"2.5 W/m/K if left out"`
 	HeatProduction *heatProduction `key:"heat-production" doc:"0 if left out"`
@@ -26,6 +28,9 @@ type rock struct {
 func (r *rock) check(w *walker) {
 	if r.StressExponent.given() && r.Creep != nil && r.Viscosity == nil {
 		w.addf(r.StressExponent.n, r.path+".stress-exponent", "belongs to a viscosity given as a number; creep laws bring their own")
+	}
+	if r.Friction != nil && r.Viscosity != nil && r.Creep == nil {
+		w.addf(r.Friction.at, r.path+".friction", "belongs to creep laws; a viscosity given as a number is used as it is")
 	}
 }
 
@@ -75,24 +80,40 @@ type densityState struct {
 
 type densityModes struct {
 	block
-	Modes shares `key:"modes,required" doc:"mineral modes, summing to 1"`
-	By    text   `key:"by" one:"volume|weight" doc:"what the modes are shares of"`
+	Modes shares `key:"modes,required" doc:"mineral modes, summing to 1: full names or approved symbols; the rock keeps its composition"`
+	By    text   `key:"by" one:"volume|weight" doc:"what the modes are shares of, volume at 25 degC and no pressure; volume if left out"`
 }
 
 func (m *densityModes) check(w *walker) {
+	if m.Modes.n == nil {
+		return
+	}
+	before := map[string]bool{}
+	for _, name := range m.Modes.Names {
+		known, err := column.FindMineral(name)
+		at, path := m.Modes.n.get(name), m.path+".modes."+shorten(name)
+		switch {
+		case err != nil:
+			w.add(at, path, err.Error())
+		case before[known.Name]:
+			w.addf(at, path, "%s stands twice among the modes", known.Name)
+		default:
+			before[known.Name] = true
+		}
+	}
 	var sum float64
 	for _, v := range m.Modes.Values {
 		sum += v
 	}
-	if m.Modes.n != nil && len(m.Modes.Values) == len(m.Modes.n.keys) && math.Abs(sum-1) > 0.01 {
+	if len(m.Modes.Values) == len(m.Modes.n.keys) && math.Abs(sum-1) > 0.01 {
 		w.addf(m.Modes.n, m.path+".modes", "sum to %.4g; need 1 (within 0.01)", sum)
 	}
 }
 
 type densityTable struct {
 	block
-	Table         text `key:"table,required" as:"file" doc:"CSV file of temperature, pressure and density"`
-	Interpolation text `key:"interpolation" one:"bilinear" doc:"between the table's points"`
+	Table         text `key:"table,required" as:"file" doc:"CSV file with the columns temperature_degC, pressure_GPa, density_kg_m3: every temperature with every pressure; nothing is extrapolated"`
+	Interpolation text `key:"interpolation" one:"bilinear" doc:"between the table's points; bilinear if left out"`
 }
 
 type densityReaction struct {
@@ -145,14 +166,20 @@ type grainSize struct {
 
 type piezometer struct {
 	block
-	Piezometer text `key:"piezometer,required" doc:"mineral whose grain size follows the stress"`
+	Piezometer text `key:"piezometer,required" one:"olivine" doc:"mineral whose grain size follows the stress: olivine (van der Wal et al. 1993, from memory)"`
 }
 
 type friction struct {
 	block
-	Cohesion  quantity `key:"cohesion" dim:"pressure" range:"[0 Pa,10 GPa]" eg:"20 MPa"`
-	Angle     quantity `key:"angle" dim:"angle" range:"[0 deg,90 deg)" doc:"of internal friction"`
-	PoreFluid quantity `key:"pore-fluid-factor" dim:"number" range:"[0,1]" eg:"0.4" doc:"pore pressure over lithostatic pressure"`
+	Cohesion  quantity `key:"cohesion" dim:"pressure" range:"[0 Pa,10 GPa]" eg:"20 MPa" doc:"0 Pa if left out"`
+	Angle     quantity `key:"angle" dim:"angle" range:"[0 deg,90 deg)" doc:"of internal friction; 0 deg if left out"`
+	PoreFluid quantity `key:"pore-fluid-factor" dim:"number" range:"[0,1]" eg:"0.4" doc:"pore pressure over lithostatic pressure; 0 if left out"`
+}
+
+func (f *friction) check(w *walker) {
+	if f.Cohesion.SI == 0 && (f.Angle.SI == 0 || f.PoreFluid.SI == 1) {
+		w.addf(f.at, f.path, "leaves the rock no strength; needs a cohesion, or an angle and a pore-fluid-factor below 1")
+	}
 }
 
 type melt struct {

@@ -1,6 +1,9 @@
 package rheology
 
-import "fmt"
+import (
+	"fmt"
+	"slices"
+)
 
 // volumeMatters is the pressure in Pa above which an activation volume that was not
 // determined is worth a word: 1 GPa times 10 cm³/mol is 10 kJ/mol.
@@ -33,16 +36,38 @@ func (l *Law) Cautions(at Conditions) []string {
 }
 
 // Cautions returns those of every law, and names two laws of one list that describe
-// the same mechanism of the same rock, whose rates should not be added.
+// the same mechanism of the same rock, whose rates should not be added, and a
+// piezometer that was recalled.
 func (c *Creep) Cautions(at Conditions) []string {
-	var out []string
-	for i := range c.Laws {
-		out = append(out, c.Laws[i].Cautions(at)...)
+	out := cautions(nil, c.Laws, c.Mixtures, at)
+	for _, l := range c.AllLaws() {
+		if l.M != 0 && c.Piezometer != nil {
+			if s := c.Piezometer.caution(); s != "" {
+				return append(out, s)
+			}
+		}
+	}
+	return out
+}
+
+func cautions(out []string, laws []Law, mixtures []Mixture, at Conditions) []string {
+	for i := range laws {
+		for _, s := range laws[i].Cautions(at) {
+			if !slices.Contains(out, s) { // a law may stand in several phases
+				out = append(out, s)
+			}
+		}
 		for j := range i {
-			a, b := &c.Laws[j], &c.Laws[i]
+			a, b := &laws[j], &laws[i]
 			if a.Material != "" && a.Material == b.Material && a.Mechanism == b.Mechanism {
 				out = append(out, fmt.Sprintf("%s and %s act in parallel but are the same mechanism of the same rock: counted twice", a.Name, b.Name))
 			}
+		}
+	}
+	for i := range mixtures {
+		for j := range mixtures[i].Phases {
+			p := &mixtures[i].Phases[j]
+			out = cautions(out, p.Laws, p.Mixtures, at)
 		}
 	}
 	return out

@@ -5,14 +5,14 @@ import (
 	"math"
 )
 
-// term is one mechanism at fixed conditions: ln ε = lnC + n ln τ.
-type term struct{ lnC, n float64 }
+// term is one mechanism at fixed conditions: ln ε = lnC + n ln τ; held as in mechanism.
+type term struct{ lnC, n, held float64 }
 
 // terms appends the mechanisms at T and P.
 func terms(to []term, ms []mechanism, T, P float64) []term {
 	for i := range ms {
 		m := &ms[i]
-		to = append(to, term{m.c - (m.e+P*m.v)/T, m.n})
+		to = append(to, term{m.c - (m.e+P*m.v)/T, m.n, m.held})
 	}
 	return to
 }
@@ -99,7 +99,7 @@ func lnRate(ts []term, lnTau, lowest float64) (float64, error) {
 	y := lnTau
 	for range newtonSteps {
 		lnE, n := lnSum(ts, y)
-		both := [2]term{{0, 1}, {ln2Eta + lnE - n*y, n}} // the dashpot's branch by its tangent
+		both := [2]term{{0, 1, 1}, {ln2Eta + lnE - n*y, n, n}} // the dashpot's branch by its tangent
 		ln, slope := lnSum(both[:], y)
 		dy := (lnTau - ln) / slope
 		y += dy

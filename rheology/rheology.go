@@ -13,7 +13,10 @@
 // test, see Test.Factor. The laws of the catalogue keep the laboratory's numbers and,
 // for each, whether it was read or recalled.
 //
-// Not covered yet: low-temperature plasticity, melt, frictional yield, mixtures.
+// Around the laws stand frictional yield (Friction), grain size that follows the stress
+// (Piezometer) and rocks of several phases (Mixture).
+//
+// Not covered yet: low-temperature plasticity, melt.
 package rheology
 
 import "fmt"
@@ -61,6 +64,7 @@ type Conditions struct {
 	Water     float64 // Pa or H/10⁶ Si, as WaterMeasure says; 0 where no law needs it
 
 	WaterMeasure WaterMeasure // what Water counts; a law of the other measure is an error
+	Sense        float64      // +1 extension, −1 shortening, 0 neither: for Friction
 }
 
 // Limits bound a creep viscosity, in Pa s. The highest acts as one more Newtonian
@@ -75,4 +79,7 @@ type Response struct {
 	Exponent  float64 // tangent exponent n = d ln ε_II/d ln τ_II
 	Capped    bool    // more than half the strain rate is taken by the upper limit
 	Floored   bool    // more than half the stress is carried by the lower limit
+	Yielding  bool    // friction decides: creep alone would bear more than the yield stress
+	Limited   bool    // the exponent of yield is at MaxExponent, before the lower limit's part
+	GrainSize float64 // m, where a Piezometer gives it, at the rock's creep stress; else 0
 }

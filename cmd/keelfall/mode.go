@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"errors"
 	"fmt"
 
 	"github.com/spf13/cobra"
@@ -20,6 +21,9 @@ func newModeCmd(s Streams) *cobra.Command {
 	var number int
 	cmd, _ := newPartCmd(s, "mode FILE", "The growing modes at one wavelength: what moves, who resists, what controls it",
 		func(_ context.Context, _ *options, p *race.Problem, st *state.State) (*part, error) {
+			if at == "" {
+				return nil, usageError{errors.New("keelfall mode needs --at, a wavelength, for example --at 60km")}
+			}
 			wavelengths, err := lengths(at)
 			if err != nil {
 				return nil, usageError{err}

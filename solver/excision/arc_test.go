@@ -102,17 +102,21 @@ func TestLowestFirst(t *testing.T) {
 	}
 }
 
-// A zone whose end was left to the window goes on after it; one with an end of its
-// own, later than the window, stops there.
+// A zone without an end goes on after the window; one with an end of its own, at the
+// window's or later, stops there.
 func TestEnds(t *testing.T) {
 	open := zone("pyroxenite")
-	open.To = 20 * myr
+	open.To = math.Inf(1)
 	if r := solve(t, setting(20), open); !math.IsInf(r.CutThroughTime, 1) || math.IsInf(r.LocalBeyond, 1) {
 		// pyroxenite alone never cuts the whole root through
 		t.Errorf("open end: cut through at %g Myr, share at %g", r.CutThroughTime/myr, r.LocalBeyond/myr)
 	}
 	whole := zone("granulite", "pyroxenite")
 	whole.To = 20 * myr
+	if r := solve(t, setting(20), whole); !math.IsInf(r.CutThroughTime, 1) {
+		t.Errorf("end at the window's: cut through at %g Myr, want never", r.CutThroughTime/myr)
+	}
+	whole.To = math.Inf(1)
 	if r := solve(t, setting(20), whole); math.Abs(r.CutThroughTime/myr/42-1) > 1e-9 {
 		t.Errorf("open end: cut through at %g Myr, want 42", r.CutThroughTime/myr)
 	}

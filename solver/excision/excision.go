@@ -31,7 +31,7 @@ type Zone struct {
 	Dip         float64  // rad, 0 < dip <= π/2
 	LayeringDip float64  // rad, towards the zone's dip direction
 	Cuts        []string // names of the layers it cuts out, from above downwards; the last, lowest one is cut first
-	From, To    float64  // s, active interval; To equal to the window says that no end was given
+	From, To    float64  // s, active interval; To is +Inf for a zone without an end
 	SlipRate    float64  // m/s, >= 0
 	Width       float64  // m, normal to the zone; 0 where not given
 }

@@ -33,7 +33,9 @@ func setting(window float64) excision.Setting {
 // A single zone, by hand: 1 mm/yr on a 30° zone takes 0.5 km/Myr, from the lowest of
 // its layers upwards, which a user names from above downwards.
 func TestByHand(t *testing.T) {
-	r, err := excision.Solve([]excision.Zone{zone("granulite", "pyroxenite")}, setting(60))
+	z := zone("granulite", "pyroxenite")
+	z.To = math.Inf(1)
+	r, err := excision.Solve([]excision.Zone{z}, setting(60))
 	if err != nil {
 		t.Fatal(err)
 	}

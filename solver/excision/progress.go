@@ -27,12 +27,7 @@ type rates struct {
 }
 
 func newProgress(zones []Zone, set Setting) *progress {
-	p := &progress{zones: slices.Clone(zones), set: set, index: map[string]int{}, arc: make([]float64, len(set.Layers))}
-	for i := range p.zones {
-		if p.zones[i].To == set.Window { // no end was given
-			p.zones[i].To = math.Inf(1)
-		}
-	}
+	p := &progress{zones: zones, set: set, index: map[string]int{}, arc: make([]float64, len(set.Layers))}
 	for i, l := range set.Layers {
 		p.index[l.Name] = i
 		p.left = append(p.left, l.Thickness)

@@ -1,6 +1,7 @@
 package race
 
 import (
+	"cmp"
 	"context"
 	"errors"
 	"fmt"
@@ -17,9 +18,12 @@ import (
 // ErrInput marks what is wrong with the experiment rather than with the computation.
 var ErrInput = errors.New("the experiment cannot be run")
 
-// Prepare returns the state of p's column at its strain rate.
+// Prepare returns the state of p's column at its strain rate; the state keeps a copy of
+// the column that knows the sense of the strain.
 func Prepare(p *Problem) (*state.State, error) {
-	s, err := state.New(&p.Column, p.StrainRate())
+	c := p.Column
+	c.Sense = float64(cmp.Compare(p.Strain.ExtensionRate, 0))
+	s, err := state.New(&c, p.StrainRate())
 	if err != nil {
 		return nil, fmt.Errorf("%w: %w", ErrInput, err)
 	}

@@ -106,9 +106,11 @@ func (s *State) GradientAt(layer int, z float64) float64 {
 	return l.Density.Gradient(T, P, min(max((z-h.Top)/l.Thickness, 0), 1)) / l.Thickness
 }
 
-// Kinks returns the depths in m inside a layer where the slope of a given geotherm
-// jumps; ln η is continuous there but its slope is not. The slice is the state's own.
-func (s *State) Kinks(layer int) []float64 { return s.heat.Layers[layer].Kinks }
+// Kinks returns the depths in m inside a layer where the slope of a given geotherm or
+// of a tabulated density jumps, or the exponent of frictional yield reaches its limit;
+// ln η and n are continuous there but a slope is not, and ∂ρ/∂T is not even continuous.
+// The slice is the state's own.
+func (s *State) Kinks(layer int) []float64 { return s.kinks[layer] }
 
 // Span returns the depths in m of a layer's top and bottom.
 func (s *State) Span(layer int) (top, bottom float64) {

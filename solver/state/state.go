@@ -32,6 +32,7 @@ type Point struct {
 	Exponent        float64 // tangent stress exponent
 	Stress          float64 // τ_II at the strain rate, Pa
 	Capped, Floored bool    // a viscosity limit carries more than half
+	Yielding        bool    // friction decides, not creep
 }
 
 // State is a consistent column. T is NaN-free: HasTemperature is false and T zero
@@ -50,6 +51,7 @@ type State struct {
 	Warnings       []string
 
 	heat  *heat.Profile
+	kinks [][]float64      // of a layer, increasing
 	flows []*rheology.Flow // a layer's laws with its factor, limits, grain size, water; nil for numbers; the half-space last
 }
 
@@ -88,7 +90,7 @@ func New(c *column.Column, strainRate float64) (*State, error) {
 	}
 	for i := range c.Layers {
 		l, nodes := &c.Layers[i], hp.Layers[i].Nodes
-		if s.flows[i], err = flow(&l.Rock, c.Limits); err != nil {
+		if s.flows[i], err = flow(&l.Rock, c); err != nil {
 			return nil, fmt.Errorf("state: %s: %w", l.Name, err)
 		}
 		ps := make([]Point, len(nodes))
@@ -106,17 +108,24 @@ func New(c *column.Column, strainRate float64) (*State, error) {
 	if err := s.jumps(); err != nil {
 		return nil, err
 	}
+	s.kinks = make([][]float64, len(c.Layers))
+	for i := range c.Layers {
+		s.kinks[i] = s.yieldKinks(i, kinks(&hp.Layers[i], c.Layers[i].Density))
+	}
 	s.warn()
 	return s, nil
 }
 
-// flow returns the rock's creep ready for its grain size and water; nil for a number.
-func flow(r *column.Rock, limits rheology.Limits) (*rheology.Flow, error) {
-	c := r.CreepWith(limits)
-	if c == nil {
+// flow returns the rock's creep ready for its grain size, its water and the sense in
+// which the column is strained; nil for a number.
+func flow(r *column.Rock, c *column.Column) (*rheology.Flow, error) {
+	creep := r.CreepWith(c.Limits)
+	if creep == nil {
 		return nil, nil
 	}
-	return c.For(r.Conditions(0, 0))
+	at := r.Conditions(0, 0)
+	at.Sense = c.Sense
+	return creep.For(at)
 }
 
 // point evaluates one rock.
@@ -125,13 +134,16 @@ func (s *State) point(r *column.Rock, f *rheology.Flow, x, z, T, P float64) (Poi
 	if !(p.Density > 0) || math.IsInf(p.Density, 1) {
 		return p, fmt.Errorf("density %g kg/m³ at T = %.4g K, P = %.4g Pa", p.Density, T, P)
 	}
+	if err := column.Covered(r.Density, T, P); err != nil {
+		return p, err
+	}
 	if f == nil {
 		p.Viscosity, p.Exponent = r.Viscosity.At(x)
 		p.Stress = 2 * p.Viscosity * s.StrainRate
 		return p, nil
 	}
 	a, err := f.Respond(s.StrainRate, T, P)
-	p.Viscosity, p.Exponent, p.Stress, p.Capped, p.Floored = a.Viscosity, a.Exponent, a.Stress, a.Capped, a.Floored
+	p.Viscosity, p.Exponent, p.Stress, p.Capped, p.Floored, p.Yielding = a.Viscosity, a.Exponent, a.Stress, a.Capped, a.Floored, a.Yielding
 	return p, err
 }
 
@@ -145,11 +157,12 @@ func (s *State) base() error {
 	switch c.Base.Boundary {
 	case column.HalfSpace:
 		n := len(c.Layers)
-		if s.flows[n], err = flow(&c.Base.Rock, c.Limits); err == nil {
+		if s.flows[n], err = flow(&c.Base.Rock, c); err == nil {
 			s.Base, err = s.point(&c.Base.Rock, s.flows[n], 0, b.Depth, b.T, b.P)
 		}
 	case column.Inviscid:
 		s.Base.Density = c.Base.Density.At(b.T, b.P, 0)
+		err = column.Covered(c.Base.Density, b.T, b.P)
 	}
 	if err != nil {
 		return fmt.Errorf("state: base at %.0f m: %w", b.Depth, err)

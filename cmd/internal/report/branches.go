@@ -65,17 +65,39 @@ func BranchLabels(s *state.State, all []growth.Branch) []string {
 	return labels
 }
 
-// BranchesText lists the branches: where each grows and where it is fastest.
+// BranchesText lists the branches: each stretch of wavelengths over which the same
+// thing moves, and where it is fastest.
 func BranchesText(s *state.State, all []growth.Branch) string {
 	pg := &page{}
+	depths := depthsOf(s)
 	pg.section("BRANCHES")
-	pg.line("%-3s %-30s %16s  %14s  %14s", "", "what moves, where it is fastest", "from-to km", "fastest km", "e-folding Myr")
-	labels := BranchLabels(s, all)
+	pg.line("%-3s %-30s %16s  %14s  %14s", "", "what moves", "from-to km", "fastest km", "e-folding Myr")
 	for i, b := range all {
-		best := fastestOf(b)
-		first, last := b.Modes[0], b.Modes[len(b.Modes)-1]
-		pg.line("%-3d %-30s %16s  %14s  %14s", i+1, labels[i],
-			sig(first.Wavelength/km, 3)+"-"+sig(last.Wavelength/km, 3), sig(best.Wavelength/km, 3), sig(efold(best.Growth)/Myr, 3))
+		for from := 0; from < len(b.Modes); {
+			label := b.Modes[from].Label(RootBase(s), depths)
+			to, best := from, b.Modes[from]
+			for to+1 < len(b.Modes) && b.Modes[to+1].Label(RootBase(s), depths) == label {
+				to++
+				if b.Modes[to].Growth > best.Growth {
+					best = b.Modes[to]
+				}
+			}
+			number := ""
+			if from == 0 {
+				number = fmt.Sprint(i + 1)
+			}
+			pg.line("%-3s %-30s %16s  %14s  %14s", number, label,
+				stretch(b.Modes[from].Wavelength, b.Modes[to].Wavelength), sig(best.Wavelength/km, 3), sig(efold(best.Growth)/Myr, 3))
+			from = to + 1
+		}
 	}
 	return pg.b.String()
+}
+
+// stretch says a range of wavelengths in km.
+func stretch(a, b float64) string {
+	if a == b {
+		return sig(a/km, 3)
+	}
+	return sig(a/km, 3) + "-" + sig(b/km, 3)
 }

@@ -81,8 +81,8 @@ func creepCell(c *rheology.Creep) string {
 		return "given"
 	}
 	var names []string
-	for i := range c.Laws {
-		if n := brief(&c.Laws[i]); !slices.Contains(names, n) {
+	for _, l := range c.AllLaws() {
+		if n := brief(&l); !slices.Contains(names, n) {
 			names = append(names, n)
 		}
 	}

@@ -59,6 +59,9 @@ func controls(pg *page, s *state.State, m *growth.Mode, shift *growth.Shift) {
 	if len(all) == 0 {
 		return
 	}
+	if math.Abs(float64(all[0].Rate)) < 5e-3 {
+		return
+	}
 	pg.section("CONTROLS")
 	pg.say("What a change of one layer does, all else held (exact derivatives; viscosities, temperatures and density jumps as they are):")
 	last := ""
@@ -66,14 +69,22 @@ func controls(pg *page, s *state.State, m *growth.Mode, shift *growth.Shift) {
 		last = "wavelength"
 	}
 	pg.line("%-28s %-10s %-11s %9s %11s", "", "", "", "rate", last)
+	base := false
 	for i, c := range all {
 		if i == 10 || math.Abs(float64(c.Rate)) < 5e-3 {
 			break
 		}
+		base = base || c.Layer == "half-space"
 		moved := ""
 		if shift != nil && !math.IsNaN(float64(c.Wavelength)) {
 			moved = fmt.Sprintf("%+.1f %%", 100*float64(c.Wavelength))
 		}
+		if math.Abs(float64(c.Rate)) > 0.3 { // the derivative is exact, the step is not small
+			moved += "  (for small changes only)"
+		}
 		pg.line("%-28s %-10s %-11s %+7.1f %% %11s", cut(c.Layer, 28), c.What, c.Change, 100*float64(c.Rate), moved)
+	}
+	if base {
+		pg.say("The half-space counts by itself; where the file leaves its rock out, it follows the last layer.")
 	}
 }

@@ -46,6 +46,8 @@ func ColumnTable(s *state.State) Table {
 				temp = p.T - zero
 			}
 			switch {
+			case p.Yielding && !p.Floored:
+				limit = "friction"
 			case p.Capped:
 				limit = "highest"
 			case p.Floored:

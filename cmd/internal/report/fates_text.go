@@ -58,7 +58,11 @@ func excisionText(p *page, r *race.Result) {
 		return
 	}
 	for _, z := range pb.Zones {
-		s := fmt.Sprintf("%s, dip %.0f deg, slip %s mm/yr, %s to %s", z.Name, z.Dip*180/math.Pi, short(z.SlipRate*1e3*Year), short(z.From/Myr), myr(z.To))
+		active := short(z.From/Myr) + " to " + myr(z.To)
+		if math.IsInf(z.To, 1) {
+			active = "from " + short(z.From/Myr) + " Myr on"
+		}
+		s := fmt.Sprintf("%s, dip %.0f deg, slip %s mm/yr, %s", z.Name, z.Dip*180/math.Pi, short(z.SlipRate*1e3*Year), active)
 		if e := z.StrainRate(); e > 0 {
 			s += fmt.Sprintf(", strain rate %.0e 1/s", e)
 		}

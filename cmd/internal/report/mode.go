@@ -123,7 +123,17 @@ func ModesPage(p *race.Problem, s *state.State, wavelength float64, modes []*gro
 	}
 	m := modes[which]
 	pg.section(fmt.Sprintf("MODE %d", which+1))
-	pg.line("%10s  %-24s  %12s  %12s  %12s", "depth km", "contact", "moves m/m", "gravity %", "strain %")
+	pg.say("How far each contact moves, the furthest 1; the work that gravity and the background strain do there, in %% of the dissipation:")
+	pg.line("%10s  %-24s  %12s  %12s  %12s", "depth km", "contact", "moves", "gravity %", "strain %")
+	most := 0.0
+	for _, x := range m.Displacement {
+		if math.Abs(x) > math.Abs(most) {
+			most = x
+		}
+	}
+	if most == 0 {
+		most = 1
+	}
 	for i := range s.Jumps {
 		name := "surface"
 		switch {
@@ -132,7 +142,7 @@ func ModesPage(p *race.Problem, s *state.State, wavelength float64, modes []*gro
 		case i > 0:
 			name = s.Column.Layers[i-1].Name + " on " + s.Column.Layers[i].Name
 		}
-		pg.line("%10s  %-24s  %12.3f  %12s  %12s", sig(depths[i]/km, 4), cut(name, 24), m.Displacement[i], percentAt(m.WorkShare, i), percentAt(m.StrainShare, i))
+		pg.line("%10s  %-24s  %12.3f  %12s  %12s", sig(depths[i]/km, 4), cut(name, 24), math.Round(1000*m.Displacement[i]/most)/1000+0, percentAt(m.WorkShare, i), percentAt(m.StrainShare, i))
 	}
 	if w := shares(s, m); w != "" {
 		pg.say("Resistance: %s.", w)
@@ -146,7 +156,7 @@ func ModesPage(p *race.Problem, s *state.State, wavelength float64, modes []*gro
 			sum += v
 		}
 		if math.Abs(sum) > 5e-4 {
-			pg.say("Work done on %s: %.1f %% of the dissipation.", part.what, 100*sum)
+			pg.say("Work done by gravity on %s: %.1f %% of the dissipation.", part.what, 100*sum)
 		}
 	}
 	controls(pg, s, m, nil)
@@ -155,7 +165,7 @@ func ModesPage(p *race.Problem, s *state.State, wavelength float64, modes []*gro
 
 func percentAt(x []float64, i int) string {
 	if i < len(x) {
-		return fmt.Sprintf("%.1f", 100*x[i])
+		return fmt.Sprintf("%.1f", math.Round(1000*x[i])/10+0)
 	}
 	return "-"
 }

@@ -76,11 +76,16 @@ func answer(p *page, r *race.Result) {
 		if f.Default {
 			given = ", a default that nobody has measured"
 		}
-		p.say("The number that decides it: %s%s. At %s instead of %s the root %s.", f.Label, given, value(f, f.To), value(f, f.From), becomes(f.Outcome))
+		to, from := values(f)
+		p.say("The number that decides it: %s%s. At %s instead of %s the root %s.", f.Label, given, to, from, becomes(f.Outcome))
 	} else if len(v.Flips) > 0 {
 		p.say("No single number within the bounds searched changes the verdict.")
 	}
 	margins(p, r)
+	if sp := r.Spectrum; sp.Mode != nil && r.Problem.ThermalBuoyancy != "none" && sp.Fastest.Growth > 3/r.Problem.Drip.Window &&
+		sp.Mode.Label(RootBase(r.State), depthsOf(r.State)) == "thermal" {
+		p.say("But heat alone overturns this column: an e-folding time of %s, which the drip leaves out.", myr(1/sp.Fastest.Growth))
+	}
 	p.say("Whether that is decided by your data cannot be said: the experiment gives no ranges.")
 }
 
@@ -120,7 +125,11 @@ func margins(p *page, r *race.Result) {
 		if v.MarginLog10Viscosity < 0 {
 			way = "weaker"
 		}
-		words = append(words, fmt.Sprintf("a root %.2f log units %s %s", math.Abs(v.MarginLog10Viscosity), way, becomes(v.MarginViscosityOutcome)))
+		size := fmt.Sprintf("%.2f log units", math.Abs(v.MarginLog10Viscosity))
+		if math.Abs(v.MarginLog10Viscosity) < 0.005 {
+			size = "less than 0.01 log units"
+		}
+		words = append(words, fmt.Sprintf("a root %s %s %s", size, way, becomes(v.MarginViscosityOutcome)))
 	}
 	if len(words) > 0 {
 		p.say("Margins: %s.", strings.Join(words, "; "))
@@ -137,12 +146,26 @@ func value(f race.Flip, x float64) string {
 	case "K":
 		return fmt.Sprintf("%.0f degC", x-zero)
 	case "kg/m3":
-		return fmt.Sprintf("%.4g kg/m3", x)
+		return fmt.Sprintf("%.4g kg/m3", x+0) // no minus zero
 	case "1/s":
 		return fmt.Sprintf("%.2g 1/s", x)
 	}
 	y, unit := trade(x, f.Unit)
 	return short(y) + " " + unit
+}
+
+// values says a flip's two values, with as many digits as tell them apart.
+func values(f race.Flip) (to, from string) {
+	to, from = value(f, f.To), value(f, f.From)
+	for n := 4; to == from && n < 10; n++ {
+		y, unit := trade(f.To, f.Unit)
+		x, _ := trade(f.From, f.Unit)
+		if f.Unit == "x" {
+			unit = "×"
+		}
+		to, from = sig(y, n)+" "+unit, sig(x, n)+" "+unit
+	}
+	return to, from
 }
 
 func flipsText(p *page, r *race.Result) {
@@ -157,6 +180,9 @@ func flipsText(p *page, r *race.Result) {
 			to, then = value(f, f.To), f.Outcome
 		}
 		now := value(f, f.From)
+		if f.Found {
+			to, now = values(f)
+		}
 		if f.Default {
 			now += "*"
 		}

@@ -1,9 +1,11 @@
 package report
 
 import (
+	"fmt"
 	"regexp"
 	"strings"
 
+	"keelfall/column"
 	"keelfall/rheology"
 	"keelfall/solver/race"
 )
@@ -57,10 +59,46 @@ func Sources(p *race.Problem) []SourceJSON {
 	if len(p.Zones) > 0 {
 		s = append(s, SourceJSON{"omission", "common practice", "omission, heave and throw of a zone from its dip and slip: plane geometry; arc mean h × heave/(B + heave): derived"})
 	}
+	s = append(s, flowSources(p)...)
 	for _, l := range lawsOf(p) {
 		s = append(s, SourceJSON{"creep-" + slug(l.Name), lawStatus(&l), l.Name + ": " + l.Source})
 	}
 	return append(s, SourceJSON{"gas-constant", "published", "R = 8.31446261815324 J/(mol K), exact since the SI of 2019"})
+}
+
+// flowSources lists what stands around the creep laws: friction, piezometers, mixtures.
+func flowSources(p *race.Problem) []SourceJSON {
+	var s []SourceJSON
+	seen := map[string]bool{}
+	add := func(id, status, text string) {
+		if !seen[id] {
+			seen[id] = true
+			s = append(s, SourceJSON{id, status, text})
+		}
+	}
+	rock := func(r *column.Rock) {
+		if r.Viscosity.Creep == nil {
+			return
+		}
+		if r.Friction != nil {
+			add("friction", "derived", "Mohr–Coulomb yield under the lithostatic pressure, from the Mohr circle; pore-fluid factor of Hubbert & Rubey 1959; smooth cap of exponent 8: a choice")
+		}
+		if z := r.Piezometer; z != nil {
+			status := "published"
+			if z.Status == "memory" {
+				status = "from memory"
+			}
+			add("piezometer-"+slug(z.Mineral), status, fmt.Sprintf("%s: d = %g mm (σ_d/MPa)^-%g", z.Source, z.B*1e3, z.P))
+		}
+		for _, m := range r.Viscosity.Creep.Mixtures {
+			add("mixture-"+m.Rule.String(), "common practice", m.Rule.String()+" mixing of phases (Reuss 1929, Voigt 1889 and the geometric mean between)")
+		}
+	}
+	for i := range p.Column.Layers {
+		rock(&p.Column.Layers[i].Rock)
+	}
+	rock(&p.Column.Base.Rock)
+	return s
 }
 
 // lawsOf returns the creep laws in use, each once, from the surface down.
@@ -71,7 +109,7 @@ func lawsOf(p *race.Problem) []rheology.Law {
 		if c == nil {
 			return
 		}
-		for _, l := range c.Laws {
+		for _, l := range c.AllLaws() {
 			if !seen[l.Name] {
 				seen[l.Name] = true
 				laws = append(laws, l)
