@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"strings"
 
+	"keelfall/column"
 	"keelfall/solver/race"
 )
 
@@ -30,8 +31,9 @@ func Methods(r *race.Result, p ProvenanceJSON) string {
 		w("The column has no temperature: no density or viscosity depends on it.")
 	}
 	w("The density jump at a contact is taken at the contact's own pressure and temperature.\n")
+	minerals(w, pb)
 	if laws := lawsOf(pb); len(laws) > 0 {
-		w("Creep: ε_II = A τ_II^n d^−m f^r exp[−(E + PV)/RT], laws of one rock acting at one stress, at a strain rate of %.3g 1/s (second invariant).", pb.Strain.ReferenceRate)
+		w("Creep: ε_II = A τ_II^n d^−m f^r exp[−(E + PV)/RT], laws of one rock acting at one stress, at a strain rate of %.3g 1/s (second invariant).", pb.StrainRate())
 		w("The upper viscosity limit acts as one more Newtonian mechanism at the same stress, the lower as a dashpot at the same strain rate.\n")
 		w("| law | n | m | r | E kJ/mol | V cm³/mol | test | numbers |")
 		w("|---|---|---|---|---|---|---|---|")
@@ -80,4 +82,20 @@ func Methods(r *race.Result, p ProvenanceJSON) string {
 		w("* [%s] %s (%s)", s.ID, s.Text, s.Status)
 	}
 	return b.String()
+}
+
+// minerals says which end-members make each density, by mass.
+func minerals(w func(string, ...any), p *race.Problem) {
+	for i := range p.Column.Layers {
+		l := &p.Column.Layers[i]
+		m, ok := l.Density.(*column.Modes)
+		if !ok {
+			continue
+		}
+		var words []string
+		for _, part := range m.Parts() {
+			words = append(words, fmt.Sprintf("%.1f %% %s", 100*part.Mass, part.Mineral.Name))
+		}
+		w("Density of %s from its modes, by mass %s: volumes of the end-members add up at each pressure and temperature [holland1998].\n", l.Name, join(words))
+	}
 }

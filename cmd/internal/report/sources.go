@@ -59,11 +59,40 @@ func Sources(p *race.Problem) []SourceJSON {
 	if len(p.Zones) > 0 {
 		s = append(s, SourceJSON{"omission", "common practice", "omission, heave and throw of a zone from its dip and slip: plane geometry; arc mean h × heave/(B + heave): derived"})
 	}
+	s = append(s, mineralSources(p)...)
 	s = append(s, flowSources(p)...)
 	for _, l := range lawsOf(p) {
 		s = append(s, SourceJSON{"creep-" + slug(l.Name), lawStatus(&l), l.Name + ": " + l.Source})
 	}
 	return append(s, SourceJSON{"gas-constant", "published", "R = 8.31446261815324 J/(mol K), exact since the SI of 2019"})
+}
+
+// mineralSources lists the end-members whose modes make a density, in one entry a
+// source.
+func mineralSources(p *race.Problem) []SourceJSON {
+	var names []string
+	seen := map[string]bool{}
+	note := func(d column.Density) {
+		m, ok := d.(*column.Modes)
+		if !ok {
+			return
+		}
+		for _, part := range m.Parts() {
+			if n := part.Mineral.Name; !seen[n] {
+				seen[n] = true
+				names = append(names, n)
+			}
+		}
+	}
+	for i := range p.Column.Layers {
+		note(p.Column.Layers[i].Density)
+	}
+	note(p.Column.Base.Density)
+	if len(names) == 0 {
+		return nil
+	}
+	return []SourceJSON{{"holland1998", "from memory",
+		"Holland & Powell 1998, J. metamorphic Geol. 16, 309: volumes, expansion and bulk moduli of " + join(names) + ", as recalled, number by number in the mineral table"}}
 }
 
 // flowSources lists what stands around the creep laws: friction, piezometers, mixtures.
