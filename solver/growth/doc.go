@@ -40,11 +40,11 @@
 // impedance Z of all that lies below each depth, t = −Z v (a half-space starts with
 // 2k√(η_S η_N), exactly); one sweep downwards gives the compliance C of the whole
 // column at each contact, and by reciprocity A. Everything in a triple but powers of kh
-// is linear in the nodal viscosities, so a mesh serves an octave of wavenumbers.
+// is linear in the nodal viscosities, so a mesh serves a band of wavenumbers.
 //
 // The mesh rule bounds the change of ln η and of kh per element; what lies many
 // wavelengths from every contact is replaced by two half-spaces. The error is estimated
-// at the ends of each octave by halving every element, which lowers it by 2¹⁶.
+// at the ends of each band by halving every element, which lowers it by 2¹⁶.
 //
 // Where nothing strains the column, A is similar to a symmetric matrix and only its
 // largest eigenvalue is computed; elsewhere all are, by balanced QR.

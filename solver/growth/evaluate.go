@@ -38,8 +38,8 @@ func Evaluate(ctx context.Context, c *Column, wavelengths []float64, o Options) 
 	slices.SortStableFunc(order, func(i, j int) int { return cmp.Compare(wavelengths[i], wavelengths[j]) })
 	starts := []int{0} // of each band in order
 	for i := 1; i < len(order); i++ {
-		a, _ := bandOf(2 * math.Pi / wavelengths[order[i-1]])
-		if b, _ := bandOf(2 * math.Pi / wavelengths[order[i]]); a != b {
+		a, _ := first.bandOf(2 * math.Pi / wavelengths[order[i-1]])
+		if b, _ := first.bandOf(2 * math.Pi / wavelengths[order[i]]); a != b {
 			starts = append(starts, i)
 		}
 	}

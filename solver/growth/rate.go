@@ -45,16 +45,21 @@ const (
 	sweepRounding = 4e-12
 )
 
-// bandOf returns the band of wavenumbers that k belongs to: fixed octaves, so that a
-// rate does not depend on which wavelengths were asked before.
-func bandOf(k float64) (low, high float64) {
-	i := math.Floor(math.Log2(k))
-	return math.Exp2(i), math.Exp2(i + 1)
+// bandOf returns the band of wavenumbers that k belongs to: fixed bands, an octave and a
+// half wide (an octave where heat diffuses, whose matrices grow with the mesh), so that
+// a rate does not depend on which wavelengths were asked before.
+func (s *Solver) bandOf(k float64) (low, high float64) {
+	width := 1.5
+	if s.c.Diffusion != nil {
+		width = 1
+	}
+	i := math.Floor(math.Log2(k) / width)
+	return math.Exp2(width * i), math.Exp2(width * (i + 1))
 }
 
 // band meshes the band of k and estimates its error at both ends.
 func (s *Solver) band(k float64) error {
-	low, high := bandOf(k)
+	low, high := s.bandOf(k)
 	r, parts, enough := s.rule, 1, s.tol
 	if s.c.Diffusion != nil {
 		enough = math.Max(s.tol, heatTolerance)
