@@ -18,7 +18,7 @@ func TestMain(m *testing.M) {
 	testscript.Main(m, map[string]func(){"keelfall": main})
 }
 
-// The scripts in testdata read like the manual; each is a session of its own.
+// The scripts in testdata read like the manual; each starts in a folder of its own.
 func TestScripts(t *testing.T) {
 	testscript.Run(t, testscript.Params{Dir: "testdata", Setup: func(e *testscript.Env) error {
 		e.Setenv("XDG_CONFIG_HOME", e.WorkDir+"/config") // no settings of the person who tests
