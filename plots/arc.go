@@ -40,11 +40,20 @@ func (l arcLimit) arcBand(p *panel) {
 
 func (l arcLimit) arcLine(p *panel) { p.vline(l.arc, stroke(darkGrey, thin, dashed)) }
 
-// arcLabel names the limit that the arc sets.
+// arcLabel names the limit that the arc sets: the grey ground beyond it, at its top or
+// foot, or, where that has no room, the line itself from the other side.
 func (l arcLimit) arcLabel(p *panel) {
-	if l.arc > p.x.lo && l.arc < p.x.hi {
-		at := vg.Point{X: p.atX(l.arc), Y: p.box.Max.Y - 3}
-		p.place(darkGrey, p.box, []spot{{at.Add(vg.Point{X: 3}), text.XLeft, text.YTop}, {at.Sub(vg.Point{X: 3}), text.XRight, text.YTop}},
-			l.beyond, strings.Replace(l.beyond, " the", "\nthe", 1), l.limitIs)
+	if !(l.arc > p.x.lo && l.arc < p.x.hi) {
+		return
 	}
+	x, top, foot := p.atX(l.arc), p.box.Max.Y-3, p.box.Min.Y+3
+	inside := []spot{{vg.Point{X: x + 3, Y: top}, text.XLeft, text.YTop}, {vg.Point{X: x + 3, Y: foot}, text.XLeft, text.YBottom}}
+	before := []spot{{vg.Point{X: x - 3, Y: top}, text.XRight, text.YTop}, {vg.Point{X: x - 3, Y: foot}, text.XRight, text.YBottom}}
+	for _, words := range []string{l.beyond, strings.Replace(l.beyond, " the", "\nthe", 1)} {
+		if _, crossed := p.best(words, p.box, inside); crossed == 0 {
+			p.place(darkGrey, p.box, inside, words)
+			return
+		}
+	}
+	p.place(darkGrey, p.box, before, l.limitIs)
 }

@@ -16,7 +16,7 @@ type flow struct {
 
 // newFlow makes a flow at k on its own mesh.
 func (s *Solver) newFlow(k float64) *flow {
-	t := s.copy() // the solver's mesh and matrices stay as they are
+	t := s.with(new(workspace)) // the solver's mesh and matrices stay as they are
 	t.nodal = true
 	f := &flow{s: t, m: &mesh{}, k: k}
 	low, high, r := k, k, t.rule

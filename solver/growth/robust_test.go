@@ -189,4 +189,7 @@ func TestRobustHeated(t *testing.T) {
 		}
 	}
 	t.Logf("%d of %d columns have an estimated error above 1e-3", poor, n)
+	if poor > n/10 {
+		t.Errorf("%d of %d columns are poorly resolved", poor, n)
+	}
 }

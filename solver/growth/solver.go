@@ -77,20 +77,19 @@ func (s *Solver) release() {
 
 // twin returns a solver of the same column with storage of its own.
 func (s *Solver) twin() *Solver {
-	t := s.copy()
-	t.workspace = takeWorkspace()
-	return t
+	return s.with(takeWorkspace())
 }
 
-// copy returns a solver that may mesh and extend the column for itself.
-func (s *Solver) copy() *Solver {
+// with returns a solver of the same column that writes to w, and may mesh and extend
+// the column for itself.
+func (s *Solver) with(w *workspace) *Solver {
 	t := *s
+	t.workspace = w
 	if s.below {
 		c := *s.c
 		c.Layers = slices.Clone(c.Layers)
 		t.c, t.depths, t.segments = &c, slices.Clone(s.depths), slices.Clone(s.segments)
 	}
-	t.workspace = new(workspace)
 	return &t
 }
 
@@ -116,7 +115,7 @@ func (c *Column) extended() *Column {
 
 // stretch makes the added layer 8/k thick and cuts it where heat needs elements: short
 // ones at its top, where temperature diffuses over less than the column's depth, each
-// four times as long as the one above; half as long where refined.
+// four times as long as the one above, and each in so many parts.
 func (s *Solver) stretch(k float64, parts int) {
 	if !s.below {
 		return
@@ -183,11 +182,10 @@ func newSolver(c *Column, tol float64, w *workspace) (*Solver, error) {
 			}
 		}
 		s.segments = append(s.segments, segment{layer: i, top: a, bottom: bottom, lower: true})
-		for j := range s.segments {
-			if g := &s.segments[j]; g.layer == i {
-				g.survey(l.Viscosity)
-			}
-		}
+	}
+	for i := range s.segments {
+		g := &s.segments[i]
+		g.survey(c.Layers[g.layer].Viscosity)
 	}
 	s.nodal = s.fields
 	s.forces = make([]force, len(c.Layers)+1)

@@ -25,7 +25,7 @@ func (s *Solver) System(wavelength float64) (*System, error) {
 	if s.c.Diffusion != nil {
 		return nil, errors.New("growth: the evolution matrix with diffusing temperature is not offered")
 	}
-	t := s.copy()
+	t := s.with(new(workspace))
 	t.active = make([]bool, len(s.active))
 	t.interfaces = 0
 	for i := range t.active {

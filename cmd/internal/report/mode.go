@@ -54,7 +54,7 @@ type profileJSON struct {
 	Normal []number `json:"normal_stress_Pa_per_m"`
 }
 
-// at returns x[i], no value where it is not there.
+// valueAt returns x[i], no value where it is not there.
 func valueAt(x []float64, i int) number {
 	if i < len(x) {
 		return number(x[i])
@@ -97,7 +97,7 @@ func depthsOf(s *state.State) []float64 {
 	return d
 }
 
-// rate says a growth rate, with its oscillation where it has one.
+// rateWords says a growth rate, with its oscillation where it has one.
 func rateWords(m *growth.Mode) string {
 	w := fmt.Sprintf("%s 1/Myr", sig(m.Growth*Myr, 4))
 	if m.Growth > 0 {
