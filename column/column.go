@@ -25,6 +25,7 @@ const (
 type Density interface {
 	At(T, P, x float64) float64        // ρ, kg/m³
 	PerKelvin(T, P, x float64) float64 // (∂ρ/∂T)_P, kg/m³/K
+	PerPascal(T, P, x float64) float64 // (∂ρ/∂P)_T, kg/m³/Pa
 	Gradient(T, P, x float64) float64  // compositional (∂ρ/∂x) at fixed P and T, kg/m³
 	NeedsTemperature() bool            // whether At depends on T
 }
@@ -66,6 +67,7 @@ type Rock struct {
 	WaterMeasure   rheology.WaterMeasure
 	Friction       *rheology.Friction   // of creep laws only; nil: no yield
 	Piezometer     *rheology.Piezometer // grain size from the stress in place of GrainSize; nil: none
+	Melt           *Melt                // weakens creep; its effect on Density is there already (Molten); nil: none
 	Source, Notes  string
 }
 

@@ -42,6 +42,9 @@ func (u Uniform) At(_, _, _ float64) float64 { return float64(u) }
 // PerKelvin is zero: a plain number has no thermal buoyancy.
 func (u Uniform) PerKelvin(_, _, _ float64) float64 { return 0 }
 
+// PerPascal is zero: a plain number is the density at depth.
+func (u Uniform) PerPascal(_, _, _ float64) float64 { return 0 }
+
 // Gradient is zero.
 func (u Uniform) Gradient(_, _, _ float64) float64 { return 0 }
 
@@ -53,6 +56,9 @@ func (l Linear) At(_, _, x float64) float64 { return l.Top + (l.Bottom-l.Top)*x 
 
 // PerKelvin is zero.
 func (l Linear) PerKelvin(_, _, _ float64) float64 { return 0 }
+
+// PerPascal is zero.
+func (l Linear) PerPascal(_, _, _ float64) float64 { return 0 }
 
 // Gradient returns Bottom − Top, kg/m³ over the layer.
 func (l Linear) Gradient(_, _, _ float64) float64 { return l.Bottom - l.Top }
@@ -68,6 +74,12 @@ func (e EquationOfState) At(T, P, _ float64) float64 {
 // PerKelvin returns (∂ρ/∂T)_P = −Reference Expansivity (1 + Compressibility P).
 func (e EquationOfState) PerKelvin(_, P, _ float64) float64 {
 	return -e.Reference * e.Expansivity * (1 + e.Compressibility*P)
+}
+
+// PerPascal returns (∂ρ/∂P)_T = Reference [1 − Expansivity (T − ReferenceTemperature)]
+// Compressibility.
+func (e EquationOfState) PerPascal(T, _, _ float64) float64 {
+	return e.Reference * (1 - e.Expansivity*(T-e.ReferenceTemperature)) * e.Compressibility
 }
 
 // Gradient is zero: one composition.
@@ -134,8 +146,8 @@ func (r *Rock) Conditions(T, P float64) rheology.Conditions {
 }
 
 // CreepWith returns the rock's creep laws with its own viscosity factor multiplied in,
-// the column's limits in place of theirs, and its friction and piezometer; nil where its
-// viscosity is a number.
+// the column's limits in place of theirs, and its friction, piezometer and melt; nil where
+// its viscosity is a number.
 func (r *Rock) CreepWith(limits rheology.Limits) *rheology.Creep {
 	if r.Viscosity.Creep == nil {
 		return nil
@@ -151,6 +163,10 @@ func (r *Rock) CreepWith(limits rheology.Limits) *rheology.Creep {
 	}
 	if r.Piezometer != nil {
 		c.Piezometer = r.Piezometer
+	}
+	if m := r.Melt; m != nil {
+		c.Melt = func(T, P float64) float64 { phi, _ := m.At(T, P); return phi }
+		c.Weakening = m.Weakening
 	}
 	return &c
 }

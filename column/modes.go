@@ -80,26 +80,33 @@ func (m *Modes) Parts() []Part { return slices.Clone(m.parts) }
 
 // At returns the density in kg/m³ at T in K and P in Pa.
 func (m *Modes) At(T, P, _ float64) float64 {
-	rho, _ := m.state(T, P)
+	rho, _, _ := m.state(T, P)
 	return rho
 }
 
 // PerKelvin returns (∂ρ/∂T)_P in kg/m³/K.
 func (m *Modes) PerKelvin(T, P, _ float64) float64 {
-	_, perKelvin := m.state(T, P)
+	_, perKelvin, _ := m.state(T, P)
 	return perKelvin
 }
 
-func (m *Modes) state(T, P float64) (rho, perKelvin float64) {
-	var volume, grows float64 // of a kilogram, and with T
+// PerPascal returns (∂ρ/∂P)_T = ρ² Σ w_i/(K_i ρ_i) in kg/m³/Pa.
+func (m *Modes) PerPascal(T, P, _ float64) float64 {
+	_, _, perPascal := m.state(T, P)
+	return perPascal
+}
+
+func (m *Modes) state(T, P float64) (rho, perKelvin, perPascal float64) {
+	var volume, grows, shrinks float64 // of a kilogram, with T and with P
 	for i := range m.parts {
 		p := &m.parts[i]
-		v, a, _ := p.Mineral.state(T, P)
+		v, a, k := p.Mineral.state(T, P)
 		v *= p.Mass / p.Mineral.MolarMass
 		volume += v
 		grows += a * v
+		shrinks += v / k
 	}
-	return 1 / volume, -grows / (volume * volume)
+	return 1 / volume, -grows / (volume * volume), shrinks / (volume * volume)
 }
 
 // Gradient is zero: one composition.
@@ -116,20 +123,19 @@ func (m *Modes) Validate() error {
 	return nil
 }
 
-// Cautions says which minerals rest on numbers that were recalled and not confirmed,
+// Cautions says whether minerals rest on numbers that were recalled and not confirmed
 // and, for quartz, on a choice.
 func (m *Modes) Cautions() []string {
-	var recalled, out []string
+	var out []string
+	recalled := false
 	for _, p := range m.parts {
-		if p.Mineral.Status.FromMemory() {
-			recalled = append(recalled, p.Mineral.Name)
-		}
+		recalled = recalled || p.Mineral.Status.FromMemory()
 		if p.Mineral.Status.A0 == "choice" {
-			out = append(out, p.Mineral.Name+": its thermal expansion, with the alpha-beta transition smeared out, is a choice; the mineral's density may be off by 2 % above 500 degC")
+			out = append(out, p.Mineral.Name+": its thermal expansion, with the alpha-beta transition smeared out, is a choice; the mineral's density may be off by 2 % from 500 to 1000 degC, and by more above")
 		}
 	}
-	if recalled != nil {
-		out = append(out, "densities of "+strings.Join(recalled, ", ")+" rest on numbers of Holland & Powell 1998 recalled from memory, not confirmed in print")
+	if recalled {
+		out = append(out, "densities from mineral modes rest on volumes and moduli of Holland & Powell 1998 recalled from memory, not confirmed in print")
 	}
 	return out
 }

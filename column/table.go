@@ -139,11 +139,29 @@ func (t *Table) PerKelvin(T, P, _ float64) float64 {
 	return (t.along(i+1, j, v) - t.along(i, j, v)) / (t.t[i+1] - t.t[i])
 }
 
-// Kinks returns the temperatures in K at which (∂ρ/∂T)_P jumps and the pressures in
-// Pa at which its slope does: the grid's own, but for the edge. The slices are the
-// caller's.
-func (t *Table) Kinks() (kelvin, pascal []float64) {
-	return slices.Clone(t.t[1 : len(t.t)-1]), slices.Clone(t.p[1 : len(t.p)-1])
+// PerPascal returns (∂ρ/∂P)_T in kg/m³/Pa of the bilinear form, from above at a pressure
+// of the grid; 0 beyond the table's pressures.
+func (t *Table) PerPascal(T, P, _ float64) float64 {
+	j, _, out := cell(t.p, P)
+	if out {
+		return 0
+	}
+	i, u, _ := cell(t.t, T)
+	row := func(i int) float64 { return t.rho[i*len(t.p)+j+1] - t.rho[i*len(t.p)+j] }
+	return (row(i)*(1-u) + row(i+1)*u) / (t.p[j+1] - t.p[j])
+}
+
+// Kinks are the grid's own temperatures, at which (∂ρ/∂T)_P jumps, and pressures, at
+// which its slope does; the edge is none.
+func (t *Table) Kinks() []Kink {
+	var out []Kink
+	for _, at := range t.t[1 : len(t.t)-1] {
+		out = append(out, func(T, _ float64) float64 { return T - at })
+	}
+	for _, at := range t.p[1 : len(t.p)-1] {
+		out = append(out, func(_, P float64) float64 { return P - at })
+	}
+	return out
 }
 
 // Gradient is zero.

@@ -62,28 +62,18 @@ func (c *Column) Validate() error {
 
 // rock checks one rock; viscous says whether its viscosity is used.
 func (c *Column) rock(r *Rock, viscous bool) error {
-	if r.Density == nil {
-		return fmt.Errorf("no density")
+	if err := validDensity(r.Density); err != nil {
+		return err
 	}
 	if r.Density.NeedsTemperature() && !c.HasTemperature() {
 		return fmt.Errorf("its density depends on temperature and the column has none")
 	}
-	switch d := r.Density.(type) {
-	case Uniform:
-		if !positive(float64(d)) {
-			return fmt.Errorf("density %g kg/m³, must be > 0", float64(d))
-		}
-	case Linear:
-		if !positive(d.Top) || !positive(d.Bottom) {
-			return fmt.Errorf("density %g to %g kg/m³, must be > 0", d.Top, d.Bottom)
-		}
-	case EquationOfState:
-		if !positive(d.Reference) || !(d.Compressibility >= 0) || math.IsNaN(d.Expansivity+d.ReferenceTemperature) {
-			return fmt.Errorf("density: reference %g kg/m³, expansivity %g 1/K, compressibility %g 1/Pa, at %g K", d.Reference, d.Expansivity, d.Compressibility, d.ReferenceTemperature)
-		}
-	case interface{ Validate() error }:
-		if err := d.Validate(); err != nil {
+	if m := r.Melt; m != nil {
+		if err := m.Validate(); err != nil {
 			return err
+		}
+		if m.NeedsTemperature() && !c.HasTemperature() {
+			return fmt.Errorf("its solidus needs a temperature and the column has none")
 		}
 	}
 	if !viscous {

@@ -74,13 +74,15 @@ func (n *node) isZero() bool { return n != nil && isOnly(n, "0") }
 // thermalBuoyancy is the default of buoyancy.thermal: diffusive where the density of a
 // layer, or of a base that is not a wall, depends on a temperature the column has.
 func thermalBuoyancy(root *node, layers []*node, warm bool) string {
-	expands := func(rock *node) bool {
-		d := rock.get("density")
-		if d.get("modes") != nil || d.get("table") != nil {
-			return true
-		}
+	var warms func(d *node) bool
+	warms = func(d *node) bool {
 		e := d.get("expansivity")
-		return e != nil && !e.isZero()
+		return d.get("modes") != nil || d.get("table") != nil || e != nil && !e.isZero() ||
+			d.get("protolith") != nil && (warms(d.get("protolith")) || warms(d.get("product")))
+	}
+	expands := func(rock *node) bool {
+		m := rock.get("melt")
+		return m.get("solidus") != nil && m.get("density") != nil || warms(rock.get("density"))
 	}
 	base := root.get("base")
 	b := base.get("boundary")
@@ -137,16 +139,7 @@ func (f *filler) rock(l *node, path string, warm bool) {
 	if l.get("viscosity") != nil {
 		f.put(l, "stress-exponent", path+".stress-exponent", "1", false)
 	}
-	switch d := l.get("density"); {
-	case d.get("modes") != nil:
-		f.put(d, "by", path+".density.by", "volume", false)
-	case d.get("table") != nil:
-		f.put(d, "interpolation", path+".density.interpolation", "bilinear", false)
-	case d.get("reference") != nil:
-		f.put(d, "expansivity", path+".density.expansivity", "0 1/K", false)
-		f.put(d, "compressibility", path+".density.compressibility", "0 1/Pa", false)
-		f.put(d, "at", path+".density.at", "20 degC", false)
-	}
+	f.density(l.get("density"), path+".density")
 	if fr := l.get("friction"); fr != nil && fr.kind == mapNode {
 		f.put(fr, "cohesion", path+".friction.cohesion", "0 Pa", false)
 		f.put(fr, "angle", path+".friction.angle", "0 deg", false)
@@ -167,6 +160,28 @@ func (f *filler) rock(l *node, path string, warm bool) {
 	f.put(l, "heat-capacity", path+".heat-capacity", "1000 J/kg/K", false)
 }
 
+// density adds what a density leaves out, and its parts.
+func (f *filler) density(d *node, path string) {
+	switch {
+	case d.get("modes") != nil:
+		f.put(d, "by", path+".by", "volume", false)
+	case d.get("table") != nil:
+		f.put(d, "interpolation", path+".interpolation", "bilinear", false)
+	case d.get("reference") != nil:
+		f.put(d, "expansivity", path+".expansivity", "0 1/K", false)
+		f.put(d, "compressibility", path+".compressibility", "0 1/Pa", false)
+		f.put(d, "at", path+".at", "20 degC", false)
+	case d.get("protolith") != nil:
+		f.density(d.get("protolith"), path+".protolith")
+		f.density(d.get("product"), path+".product")
+		f.put(d, "extent", path+".extent", "0", false)
+		f.put(d, "cap", path+".cap", "1", false)
+		if s := d.get("stable"); s != nil && s.kind == mapNode {
+			f.put(s, "slope", path+".stable.slope", "0 Pa/K", false)
+		}
+	}
+}
+
 // base takes the rock keys that are left out from the last layer, at its bottom. The
 // rock is completed under every boundary, and listed where it has a meaning.
 func (f *filler) base(layers []*node) {
@@ -181,6 +196,9 @@ func (f *filler) base(layers []*node) {
 	keys := []string{"density", "water", "grain-size", "conductivity", "heat-capacity"}
 	if base.get("viscosity") == nil && base.get("creep") == nil {
 		keys = append(keys, "viscosity", "creep", "stress-exponent", "viscosity-factor", "friction")
+		if base.get("density") == nil {
+			keys = append(keys, "melt")
+		}
 	}
 	var boundary string
 	if b := base.get("boundary"); b != nil {
@@ -191,11 +209,9 @@ func (f *filler) base(layers []*node) {
 		if n == nil || base.get(key) != nil {
 			continue
 		}
-		if bottom := n.get("bottom"); bottom != nil {
-			n = bottom
-		}
-		base.put(key, n.clone().origin(fromDefault))
-		if boundary == "half-space" || boundary == "inviscid" && key == "density" {
+		n = bottomOf(n).origin(fromDefault)
+		base.put(key, n)
+		if boundary == "half-space" || boundary == "inviscid" && (key == "density" || key == "melt") {
 			value := "as " + entryKey(len(layers)-1, last) + " at its bottom"
 			if n.kind == scalarNode {
 				value = n.text + " (" + value + ")"
@@ -208,6 +224,21 @@ func (f *filler) base(layers []*node) {
 	if boundary != "half-space" && boundary != "inviscid" {
 		f.taken = f.taken[:listed]
 	}
+}
+
+// bottomOf copies a layer's value as it is at the layer's bottom: of what grades, there
+// or in a part, the bottom.
+func bottomOf(n *node) *node {
+	if bottom := n.get("bottom"); bottom != nil {
+		return bottom.clone()
+	}
+	n = n.clone()
+	for _, part := range []string{"protolith", "product"} {
+		if p := n.get(part); p != nil {
+			n.put(part, bottomOf(p))
+		}
+	}
+	return n
 }
 
 // zones adds the interval a shear zone moves in.

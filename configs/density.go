@@ -8,6 +8,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"slices"
 	"strings"
 
 	"keelfall/column"
@@ -43,6 +44,8 @@ func (e *Experiment) density(w *walker, d *density) column.Density {
 			return nil
 		}
 		return t
+	case d.Reaction != nil:
+		return e.reaction(w, d.Reaction)
 	}
 	return column.Uniform(d.Value.SI)
 }
@@ -112,7 +115,29 @@ func (e *Experiment) densityFile(name string) (*column.Table, error) {
 	case err != nil:
 		return nil, fmt.Errorf("%s: %w", name, err)
 	}
+	for k, axis := range []func(column.TableRow) float64{func(r column.TableRow) float64 { return r.T }, func(r column.TableRow) float64 { return r.P }} {
+		if i := turns(rows, axis); i >= 0 {
+			return nil, fmt.Errorf("%s:%d: %s is out of order; needs a grid whose temperatures, and whose pressures, only rise or only fall on their way down the file", name, lines[i], densityColumns[k])
+		}
+	}
 	return t, nil
+}
+
+// turns returns the first row whose value of the axis is new and lies on the wrong side
+// of those before it; -1 where they rise, or fall, all the way.
+func turns(rows []column.TableRow, axis func(column.TableRow) float64) int {
+	var met []float64
+	for i, r := range rows {
+		x, n := axis(r), len(met)
+		switch {
+		case slices.Contains(met, x):
+			continue
+		case n >= 2 && (x > met[n-1]) != (met[1] > met[0]):
+			return i
+		}
+		met = append(met, x)
+	}
+	return -1
 }
 
 // densitySources lists the minerals in use with how their numbers are known, each
@@ -120,20 +145,22 @@ func (e *Experiment) densityFile(name string) (*column.Table, error) {
 func (e *Experiment) densitySources() (minerals, tables []any) {
 	minerals, tables = []any{}, []any{}
 	seen := map[string]bool{}
-	add := func(r *rock) {
-		if r.Density == nil {
-			return
-		}
-		switch d := e.density(&walker{}, r.Density).(type) {
-		case *column.Modes:
-			for _, p := range d.Parts() {
+	var add func(d *density)
+	add = func(d *density) {
+		switch {
+		case d == nil:
+		case d.Reaction != nil:
+			add(d.Reaction.Protolith)
+			add(d.Reaction.Product)
+		case d.Modes != nil:
+			for _, p := range e.density(&walker{}, d).(*column.Modes).Parts() {
 				if m := p.Mineral; !seen[m.Name] {
 					seen[m.Name] = true
 					minerals = append(minerals, mineral(m))
 				}
 			}
-		case *column.Table:
-			name := r.Density.Table.Table.Value
+		case d.Table != nil:
+			name := d.Table.Table.Value
 			if b, ok := e.files[name]; ok && !seen["table "+name] {
 				seen["table "+name] = true
 				sum := sha256.Sum256(b)
@@ -143,10 +170,10 @@ func (e *Experiment) densitySources() (minerals, tables []any) {
 	}
 	for i := range e.data.Layers {
 		if l := e.data.Layers[i].Layer; l != nil {
-			add(&l.rock)
+			add(l.rock.Density)
 		}
 	}
-	add(&e.data.Base.rock)
+	add(e.data.Base.rock.Density)
 	return minerals, tables
 }
 

@@ -44,6 +44,22 @@ func putAt(n *node, parts []string, v, filled *node) error {
 		here := orTop(strings.Join(parts[:i], "."))
 		switch n.kind {
 		case listNode:
+			of, err := leftOut(n, part, parts[i+1:])
+			if err != nil {
+				return fmt.Errorf("%s: %w", here, err)
+			}
+			for _, j := range of {
+				var complete *node
+				if filled != nil && filled.kind == listNode && j < len(filled.items) {
+					complete = filled.items[j]
+				}
+				if err := putAt(n.items[j], parts[i+1:], v.clone(), complete); err != nil {
+					return fmt.Errorf("%s: %w", entryKey(j, n.items[j]), err)
+				}
+			}
+			if of != nil {
+				return nil
+			}
 			j, err := entry(n, part)
 			if err != nil {
 				return fmt.Errorf("%s: %w", here, err)
@@ -84,7 +100,19 @@ func removeAt(n *node, parts []string) error {
 		at := -1
 		switch n.kind {
 		case listNode:
-			j, err := entry(n, part)
+			of, err := leftOut(n, part, parts[i+1:])
+			for _, j := range of {
+				if err = removeAt(n.items[j], parts[i+1:]); err != nil {
+					break
+				}
+			}
+			if of != nil && err == nil {
+				return nil
+			}
+			j := 0
+			if err == nil {
+				j, err = entry(n, part)
+			}
 			if err != nil {
 				return fmt.Errorf("%s: %w", orTop(strings.Join(parts[:i], ".")), err)
 			}

@@ -30,6 +30,8 @@ type Experiment struct {
 	walk   *walker
 	data   experiment
 	taken  []race.Default
+	unread Mistakes // of measured sections
+	stray  Mistakes // keys that stood in the entry of a section and belong to its rows
 }
 
 // Reader reads experiments. The zero value knows the built-in creep laws; Catalogues
@@ -102,15 +104,17 @@ func (e *Experiment) Set(edits ...string) (*Experiment, error) {
 
 func (e *Experiment) edited(edits []string) (*Experiment, error) {
 	var wrong Mistakes
+	e.sections() // edits name the layers that rows make, or put another entry in the place of a section with mistakes
 	for _, s := range edits {
 		if err := edit(e.tree, s); err != nil {
 			wrong = append(wrong, Mistake{File: e.Name, Set: s, What: err.Error()})
 		}
 	}
 	if wrong != nil {
-		return nil, wrong
+		return nil, append(e.unread, wrong...) // a layer may be unknown because its section could not be read
 	}
 	e.Edits = append(slices.Clone(e.Edits), edits...)
+	e.sections()
 	if _, m := e.resolve(); len(m) > 0 {
 		return nil, m
 	}
@@ -124,9 +128,11 @@ var schema = compile(reflect.TypeFor[experiment]())
 func (e *Experiment) resolve() (p race.Problem, wrong Mistakes) {
 	e.filled = e.tree.clone()
 	e.taken = fill(e.filled)
+	weigh(e.filled)
 	e.data = experiment{}
 	e.walk = decode(e.Name, e.filled, schema, &e.data)
 	e.Remarks = e.walk.blocks
+	e.walk.mistakes = append(e.walk.mistakes, e.unread...)
 	if n := e.filled.get("layers"); n != nil {
 		e.crossCheck(e.walk)
 	}

@@ -33,7 +33,7 @@ func mustProblem(t *testing.T, e *Experiment) race.Problem {
 }
 
 func TestExamples(t *testing.T) {
-	if len(ExampleNames()) != 3 {
+	if len(ExampleNames()) != 5 {
 		t.Fatal(ExampleNames())
 	}
 	for _, name := range ExampleNames() {
@@ -44,13 +44,16 @@ func TestExamples(t *testing.T) {
 		if !strings.Contains(strings.ToLower(text), "invented") {
 			t.Errorf("%s does not say that it is invented", name)
 		}
-		p := mustProblem(t, mustRead(t, name+".yaml", text))
+		p := mustProblem(t, builtIn(t, name))
 		if _, _, ok := p.Column.RootSpan(); !ok {
 			t.Errorf("%s has no root", name)
 		}
 		if err := p.Column.Validate(); err != nil {
 			t.Error(err)
 		}
+	}
+	if text, err := Example("morvane-section.csv"); err != nil || !strings.Contains(text, "INVENTED") || len(ExampleReads("Morvane arc")) != 1 || ExampleReads("tarnvik") != nil {
+		t.Error(text, err)
 	}
 	for _, name := range []string{"Tarnvik arc", " OSMUND ", "equal-layers.yaml", ""} {
 		if _, err := Example(name); err != nil {
@@ -60,6 +63,20 @@ func TestExamples(t *testing.T) {
 	if _, err := Example("tarnvick"); err == nil || !strings.Contains(err.Error(), "did you mean tarnvik?") {
 		t.Error(err)
 	}
+}
+
+// builtIn opens a built-in experiment, with the files it reads beside it.
+func builtIn(t *testing.T, name string, edits ...string) *Experiment {
+	t.Helper()
+	var files []string
+	for _, file := range append([]string{name + ".yaml"}, ExampleReads(name)...) {
+		text, err := Example(file)
+		if err != nil {
+			t.Fatal(err)
+		}
+		files = append(files, file, text)
+	}
+	return mustOpen(t, inFolder(t, files...), edits...)
 }
 
 // TestFormats: one experiment in three formats is one problem.
@@ -92,9 +109,6 @@ func TestFormats(t *testing.T) {
 func TestReference(t *testing.T) {
 	const no = ": not in this version of keelfall"
 	want := []string{
-		":35: layers[2].section" + no,
-		":45: layers[3] (root).density.protolith" + no,
-		":58: layers[3] (root).melt" + no,
 		":67: events" + no,
 		":76: drip.softening: self is not in this version of keelfall; only none is",
 		":82: excision.zones[1] (upper-detachment).share" + no,

@@ -50,8 +50,7 @@ func TestGeothermFile(t *testing.T) {
 
 func TestResolved(t *testing.T) {
 	for _, name := range ExampleNames() {
-		text, _ := Example(name)
-		e := mustRead(t, name+".yaml", text, "drip.amplitude=1 km")
+		e := builtIn(t, name, "drip.amplitude=1 km")
 		b, err := json.Marshal(e.Resolved())
 		if err != nil {
 			t.Fatal(err)
@@ -61,7 +60,7 @@ func TestResolved(t *testing.T) {
 			t.Error("the same experiment resolves differently")
 		}
 		for _, part := range []string{`"thickness_m":10000`, `"amplitude_m":1000`, `"gravity_m_s2":9.81`, `"edits":["drip.amplitude=1 km"]`, `"key":"viscosity-limits.lowest"`} {
-			if name != "tarnvik" && !strings.Contains(string(b), part) {
+			if (name == "osmund" || name == "equal-layers" || !strings.Contains(part, "thickness")) && name != "tarnvik" && !strings.Contains(string(b), part) {
 				t.Errorf("%s: %s is not in %s", name, part, b)
 			}
 		}

@@ -42,11 +42,14 @@ const (
 type node struct {
 	kind   nodeKind
 	line   int    // of the key, or of the entry in a list; 0 where from is set
+	file   string // of a measured section, where the line is one of that
 	from   string // the --set text it came from, or fromDefault
 	text   string // of a scalar, as written
 	scalar scalarKind
 	keys   []string
 	items  []*node
+	rows   *measured // of a layer that rows of a measured section made
+	copied bool      // from a section's entry to one of its layers: a mistake in it is told once
 }
 
 const fromDefault = "default"
@@ -125,7 +128,7 @@ func shorten(s string) string {
 
 // Mistake is one thing wrong in an experiment or settings file.
 type Mistake struct {
-	File string // as given by the caller
+	File string // as given by the caller, or a measured section's
 	Line int    // from 1; 0 where no line can be named
 	Set  string // the --set text that holds the mistake; empty for the file itself
 	Path string // of the key, for example layers[2] (root).thickness; indices count from 0
@@ -148,8 +151,9 @@ func (m Mistake) String() string {
 	return b.String() + m.What
 }
 
-// Mistakes are all that is wrong with a file, sorted by line. It is the error that
-// Open and Read return for a file they could read but not accept.
+// Mistakes are all that is wrong with a file and the measured sections it names, sorted
+// by file and line. It is the error that Open and Read return for a file they could read
+// but not accept.
 type Mistakes []Mistake
 
 func (m Mistakes) Error() string {
@@ -160,10 +164,13 @@ func (m Mistakes) Error() string {
 	return strings.Join(lines, "\n")
 }
 
-// sorted orders mistakes by line, then --set text, path and message: the same bytes
-// always give the same messages.
+// sorted orders mistakes by file and line, then --set text, path and message: the same
+// bytes always give the same messages.
 func (m Mistakes) sorted() Mistakes {
 	slices.SortStableFunc(m, func(a, b Mistake) int {
+		if a.File != b.File {
+			return strings.Compare(a.File, b.File)
+		}
 		if a.Line != b.Line {
 			return a.Line - b.Line
 		}

@@ -12,13 +12,6 @@ const notInThisVersion = "not in this version of keelfall"
 var notYet = map[string]string{
 	"drip.softening": "none",
 
-	"layers.*.section":           "",
-	"layers.*.density.protolith": "",
-	"layers.*.melt":              "",
-
-	"base.density.protolith": "",
-	"base.melt":              "",
-
 	"excision.zones.*.share":           "",
 	"excision.zones.*.pressure-gap":    "",
 	"excision.zones.*.force":           "",

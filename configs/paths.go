@@ -34,10 +34,16 @@ func resolve(root *node, schema *spec, path string) (target, error) {
 			if t.node == nil || t.node.kind != listNode {
 				return target{}, fmt.Errorf("%s: %s is not in the experiment", path, here)
 			}
-			j, err := entry(t.node, part)
+			of, err := leftOut(t.node, part, parts[i+1:])
+			if err == nil && of == nil {
+				var j int
+				j, err = entry(t.node, part)
+				of = []int{j}
+			}
 			if err != nil {
 				return target{}, fmt.Errorf("%s: %w", path, err)
 			}
+			j := of[0]
 			t = target{s.item, append(t.steps, step{index: j}), t.node.items[j]}
 			continue
 		}

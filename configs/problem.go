@@ -118,6 +118,12 @@ func (e *Experiment) rock(w *walker, r *rock) column.Rock {
 	case v != nil:
 		out.Viscosity.Top, out.Viscosity.Bottom = v.Value.SI, v.Value.SI
 	}
+	if r.Melt != nil {
+		out.Melt = r.Melt.column()
+		if out.Density != nil && out.Melt.Density > 0 {
+			out.Density = column.Molten{Solid: out.Density, Melt: out.Melt}
+		}
+	}
 	if g := r.GrainSize; g != nil {
 		out.GrainSize = g.Value.SI
 		if g.Piezometer != nil { // the schema has checked the mineral
@@ -155,7 +161,14 @@ const howWarm = "add base.temperature or base.heat-flow, or a geotherm"
 // temperatureNeeds reports a rock that needs a temperature the experiment does not
 // give, or water and grain size its creep laws ask for.
 func (e *Experiment) temperatureNeeds(w *walker, r *rock, out *column.Rock, warm bool) {
-	if out.Density != nil && out.Density.NeedsTemperature() && !warm {
+	solid := out.Density
+	if m, ok := solid.(column.Molten); ok {
+		solid = m.Solid
+	}
+	if out.Melt.NeedsTemperature() && !warm {
+		w.addf(r.at.get("melt"), r.path+".melt", "has a solidus, which needs a temperature, and the experiment has none; %s", howWarm)
+	}
+	if solid != nil && solid.NeedsTemperature() && !warm {
 		w.addf(r.at.get("density"), r.path+".density", "depends on temperature and the experiment has none; %s", howWarm)
 	}
 	creep := out.Viscosity.Creep

@@ -10,9 +10,9 @@ import (
 // Resolved returns the whole experiment for a result's provenance: every key with
 // its default, in SI with the unit in the key's name (thickness_m, temperature_K;
 // times in s since the start), the creep laws and minerals it uses with their
-// constants and how those are known, the defaults taken, the edits, and name and SHA-256
-// of every table of densities and extra catalogue. It is ready for JSON and holds no NaN
-// or infinity.
+// constants and how those are known, the defaults taken, the edits, name and SHA-256 of
+// every table of densities, measured section and extra catalogue, and how the rows of the
+// sections scatter. It is ready for JSON and holds no NaN or infinity.
 func (e *Experiment) Resolved() map[string]any {
 	_, tree := e.resolved(e.filled, schema)
 	out, _ := tree.(map[string]any)
@@ -25,6 +25,7 @@ func (e *Experiment) Resolved() map[string]any {
 	out["defaults"] = defaults
 	out["creep_laws"] = e.creepLaws()
 	out["minerals"], out["density_tables"] = e.densitySources()
+	out["sections"], out["section_scatter"] = e.sectionSources()
 	catalogues := []any{}
 	for _, c := range e.reader.Catalogues {
 		catalogues = append(catalogues, map[string]any{"name": c.Name, "sha256": c.SHA256})

@@ -32,6 +32,9 @@ func (r *rock) check(w *walker) {
 	if r.Friction != nil && r.Viscosity != nil && r.Creep == nil {
 		w.addf(r.Friction.at, r.path+".friction", "belongs to creep laws; a viscosity given as a number is used as it is")
 	}
+	if r.Melt != nil && r.Melt.Weakening.SI != 0 && r.Viscosity != nil && r.Creep == nil {
+		w.addf(r.Melt.Weakening.n, r.Melt.path+".weakening", "belongs to creep laws; a viscosity given as a number is used as it is")
+	}
 }
 
 type layerEntry struct {
@@ -50,8 +53,8 @@ type layer struct {
 
 type section struct {
 	rock
-	Section text `key:"section,required" as:"file" doc:"CSV file whose rows become layers"`
-	Root    flag `key:"root" doc:"part of the root whose fate is asked"`
+	Section text `key:"section,required" as:"file" doc:"CSV file whose rows, from the top down, become layers: name; thickness_km, or top_km and bottom_km below the section's own top, or top_pressure_GPa and bottom_pressure_GPa (a thickness by ΔP = ρ g h with the row's density); density_kg_m3 and density_error_kg_m3 (one standard deviation), or mode_MINERAL by volume; viscosity_Pa_s, heat_production_uW_m3, conductivity_W_m_K, heat_capacity_J_kg_K, grain_size_mm, root, source, notes, in any unit; temperature_degC and pressure_GPa, kept with the results. Rows of one name follow one another and are one layer, its numbers their means weighted by thickness (conductivity harmonic, viscosity and grain size geometric). The other keys of this entry fill what a layer's rows leave out; where both give a key, the rows win"`
+	Root    flag `key:"root" doc:"all rows are part of the root whose fate is asked, but for those that say otherwise"`
 }
 
 type density struct {
@@ -118,25 +121,25 @@ type densityTable struct {
 
 type densityReaction struct {
 	block
-	Protolith *density      `key:"protolith,required" doc:"rock before the reaction"`
-	Product   *density      `key:"product,required" doc:"rock after it"`
-	Extent    quantity      `key:"extent" dim:"number" range:"[0,1]" doc:"reacted share at the start"`
-	Cap       quantity      `key:"cap" dim:"number" range:"[0,1]" doc:"the reacted share never passes this"`
-	Stable    *stability    `key:"stable" doc:"where the product is stable"`
-	Rate      *reactionRate `key:"rate" doc:"of the reaction"`
+	Protolith *density      `key:"protolith,required" doc:"rock before the reaction; no reaction itself"`
+	Product   *density      `key:"product,required" doc:"rock after it; no reaction itself"`
+	Extent    quantity      `key:"extent" dim:"number" range:"[0,1]" doc:"reacted share of the mass at the start; 0 if left out"`
+	Cap       quantity      `key:"cap" dim:"number" range:"[0,1]" doc:"the reacted share of the mass never passes this; 1 if left out"`
+	Stable    *stability    `key:"stable" doc:"where the product is stable; everywhere if left out"`
+	Rate      *reactionRate `key:"rate" doc:"of the reaction, first order in what is left up to cap; none if left out"`
 }
 
 type stability struct {
 	block
 	Above quantity `key:"above,required" dim:"pressure" range:"[0 Pa,100 GPa]" eg:"1.0 GPa" doc:"pressure above which the product is stable, at the temperature at"`
-	At    quantity `key:"at" dim:"temperature" range:"[0 K,5000 K]" doc:"temperature of above"`
-	Slope quantity `key:"slope" dim:"pressure-per-kelvin" doc:"of the boundary"`
+	At    quantity `key:"at" dim:"temperature" range:"[0 K,5000 K]" doc:"temperature of above; needed with a slope"`
+	Slope quantity `key:"slope" dim:"pressure-per-kelvin" range:"[-1e9 Pa/K,1e9 Pa/K]" doc:"of the boundary; 0 Pa/K if left out"`
 }
 
 type reactionRate struct {
 	block
-	Prefactor        quantity `key:"prefactor,required" dim:"strain-rate" range:"[0 1/s,)" eg:"2e-5 1/s"`
-	ActivationEnergy quantity `key:"activation-energy,required" dim:"molar-energy" range:"[0 J/mol,)"`
+	Prefactor        quantity `key:"prefactor,required" dim:"strain-rate" range:"[0 1/s,)" eg:"2e-5 1/s" doc:"of exp(-E/RT)"`
+	ActivationEnergy quantity `key:"activation-energy,required" dim:"molar-energy" range:"[0 J/mol,)" doc:"E"`
 }
 
 type viscosity struct {
@@ -184,12 +187,12 @@ func (f *friction) check(w *walker) {
 
 type melt struct {
 	block
-	Fraction   quantity   `key:"fraction" dim:"number" range:"[0,1]" doc:"given melt fraction"`
-	Solidus    *meltCurve `key:"solidus" doc:"where melting begins"`
+	Fraction   quantity   `key:"fraction" dim:"number" range:"[0,1]" doc:"given share of the volume that is melt, in place of solidus and liquidus"`
+	Solidus    *meltCurve `key:"solidus" doc:"where melting begins; the melt fraction rises linearly with temperature from here to the liquidus"`
 	Liquidus   *meltCurve `key:"liquidus" doc:"where it ends"`
-	LatentHeat quantity   `key:"latent-heat" dim:"latent-heat" range:"[0 J/kg,1e7 J/kg]"`
-	Density    quantity   `key:"density" dim:"density" range:"(0 kg/m3,20000 kg/m3]" doc:"of the melt"`
-	Weakening  quantity   `key:"weakening" dim:"number" range:"[0,1000]" eg:"30" doc:"a in exp(a x melt fraction), of the strain rate"`
+	LatentHeat quantity   `key:"latent-heat" dim:"latent-heat" range:"[0 J/kg,1e7 J/kg]" doc:"without effect in a steady geotherm"`
+	Density    quantity   `key:"density" dim:"density" range:"(0 kg/m3,20000 kg/m3]" doc:"of the melt; if left out, melt leaves the rock's density as it is"`
+	Weakening  quantity   `key:"weakening" dim:"number" range:"[0,1000]" eg:"30" doc:"a in exp(a x melt fraction), of the strain rate of creep laws; 0 if left out"`
 }
 
 type meltCurve struct {
@@ -201,7 +204,7 @@ type meltCurve struct {
 type meltSlope struct {
 	block
 	Surface quantity `key:"surface,required" dim:"temperature" range:"[0 K,5000 K]" doc:"at zero pressure"`
-	Slope   quantity `key:"slope,required" dim:"kelvin-per-pressure"`
+	Slope   quantity `key:"slope,required" dim:"kelvin-per-pressure" range:"[-1e-5 K/Pa,1e-5 K/Pa]" doc:"the curve is surface + slope x pressure"`
 }
 
 type conductivity struct {

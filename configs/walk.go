@@ -1,6 +1,7 @@
 package configs
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"reflect"
@@ -43,11 +44,17 @@ func (w *walker) add(n *node, path, what string) {
 		return
 	}
 	m := Mistake{File: w.file, Path: path, What: what, Line: n.line}
+	if n.file != "" {
+		m.File = n.file
+	}
 	if n.from != "" && n.from != fromDefault {
 		m.Set = n.from
 	}
 	if n.from == fromDefault { // a copy of what stands, and is reported, elsewhere
 		w.hidden = append(w.hidden, m)
+		return
+	}
+	if n.copied && w.mistakes.told(m) {
 		return
 	}
 	if len(w.mistakes) == maxMistakes {
@@ -153,7 +160,10 @@ func (w *walker) list(n *node, s *spec, path, generic string, out reflect.Value)
 		}
 		if first, ok := seen[name.text]; ok {
 			where := ""
-			if first.line > 0 {
+			switch {
+			case first.line > 0 && first.file != name.file:
+				where = fmt.Sprintf(" (%s:%d)", cmp.Or(first.file, w.file), first.line)
+			case first.line > 0:
 				where = fmt.Sprintf(" (line %d)", first.line)
 			}
 			w.addf(name, entryPath(path, i, item)+".name", "%s is the name of an earlier entry too%s; names are unique in their list", name.show(), where)

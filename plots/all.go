@@ -8,8 +8,8 @@ import (
 	"keelfall/solver/race"
 )
 
-// All returns every figure that a result has the data for, in order: column, spectrum,
-// mode, fates. width is ColumnWidth where 0. It fails where a part is there and cannot
+// All returns every figure that a result has the data for, in order: column (and, where
+// width is a column's, strength), spectrum, mode, fates. width is ColumnWidth where 0. It fails where a part is there and cannot
 // be drawn.
 func All(res *race.Result, width vg.Length) ([]Figure, error) {
 	if res == nil || res.Problem == nil {
@@ -23,9 +23,11 @@ func All(res *race.Result, width vg.Length) ([]Figure, error) {
 		return err
 	}
 	if res.State != nil {
-		if err := add(Column(res.State, width)); err != nil {
+		figures, err := Columns(res.State, width)
+		if err != nil {
 			return nil, err
 		}
+		out = append(out, figures...)
 	}
 	sp, dr := res.Spectrum, res.Drip
 	if (sp != nil && len(sp.Rates) > 0) || (dr != nil && anyFinite(dr.Curve.Time)) {

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 
 	"gonum.org/v1/plot/vg"
 
@@ -15,8 +16,9 @@ import (
 // contact stands twice, upper side first.
 type profile struct {
 	depth, pressure, density, temperature, viscosity []float64
+	stress                                           []float64 // differential, MPa
 	layer                                            []int
-	capped, floored                                  []bool
+	capped, floored, yielding                        []bool
 }
 
 // newProfile collects a state's points and checks that they can be drawn.
@@ -35,6 +37,8 @@ func newProfile(st *state.State) (*profile, error) {
 			p.layer = append(p.layer, i)
 			p.capped = append(p.capped, q.Capped)
 			p.floored = append(p.floored, q.Floored)
+			p.yielding = append(p.yielding, q.Yielding && !q.Floored)
+			p.stress = append(p.stress, 2*q.Stress/mpa)
 		}
 	}
 	for _, e := range []error{finite("depth", p.depth...), finite("pressure", p.pressure...), finite("density", p.density...),
@@ -52,55 +56,79 @@ func newProfile(st *state.State) (*profile, error) {
 		if v <= 0 {
 			return nil, fmt.Errorf("plots: viscosity: %g Pa s at %g km cannot be drawn on a log axis", v, p.depth[i])
 		}
+		if q := p.stress[i]; st.StrainRate > 0 && !(q > 0 && q <= math.MaxFloat64) {
+			return nil, fmt.Errorf("plots: differential stress: %g MPa at %g km cannot be drawn", q, p.depth[i])
+		}
 	}
 	return p, nil
 }
 
-// Column draws a column's density, temperature (where it has one) and viscosity
-// against depth, side by side on one depth axis, with pressure at right. The root is
-// tinted; rock denser than the rock below it is filled and the difference written.
-// width is ColumnWidth where 0.
+// Column draws a column's density, temperature (where it has one), viscosity and, where
+// width has room for a fourth panel, differential stress against depth, side by side on
+// one depth axis, with pressure at right. The root is tinted; rock denser than the rock
+// below it is filled and the difference written. width is ColumnWidth where 0.
 func Column(st *state.State, width vg.Length) (Figure, error) {
 	width, err := pageWidth(width)
 	if err != nil {
 		return Figure{}, err
 	}
-	if st == nil || st.Column == nil {
-		return Figure{}, fmt.Errorf("plots: there is no column to draw")
-	}
-	layers, err := newStrata(st.Column)
+	f, err := newColumnFigure(st)
 	if err != nil {
 		return Figure{}, err
 	}
-	if err := sameLength("layers of the column and its state", len(st.Column.Layers), len(st.Layers)); err != nil {
-		return Figure{}, err
+	f.panels = append(f.panels, columnPanel{"density", f.density})
+	if st.HasTemperature {
+		f.panels = append(f.panels, columnPanel{"temperature", f.temperature})
 	}
-	prof, err := newProfile(st)
-	if err != nil {
-		return Figure{}, err
+	f.panels = append(f.panels, columnPanel{"viscosity", f.viscosity})
+	if width >= fourPanels && st.StrainRate > 0 {
+		f.panels = append(f.panels, columnPanel{"differential stress 2 τ_II", f.stress})
 	}
-	f := columnFigure{st: st, layers: layers, prof: prof}
 	return Figure{Name: "column", Caption: f.caption(), Width: width, Height: 95 * vg.Millimeter, draw: f.draw}, nil
 }
 
+// columnFigure is a figure of panels on the column's depth axis.
 type columnFigure struct {
 	st     *state.State
 	layers *strata
 	prof   *profile
+	panels []columnPanel
+}
+
+// columnPanel draws one quantity against depth.
+type columnPanel struct {
+	name string
+	draw func(*panel)
+}
+
+// newColumnFigure checks a state; the panels are still to be chosen.
+func newColumnFigure(st *state.State) (columnFigure, error) {
+	if st == nil || st.Column == nil {
+		return columnFigure{}, fmt.Errorf("plots: there is no column to draw")
+	}
+	layers, err := newStrata(st.Column)
+	if err != nil {
+		return columnFigure{}, err
+	}
+	if err := sameLength("layers of the column and its state", len(st.Column.Layers), len(st.Layers)); err != nil {
+		return columnFigure{}, err
+	}
+	prof, err := newProfile(st)
+	return columnFigure{st: st, layers: layers, prof: prof}, err
+}
+
+// drawsStress reports whether stress is among the panels.
+func (f columnFigure) drawsStress() bool {
+	return strings.HasPrefix(f.panels[len(f.panels)-1].name, "differential")
 }
 
 func (f columnFigure) caption() string {
-	what := "density (a), temperature (b) and viscosity (c)"
-	if !f.st.HasTemperature {
-		what = "density (a) and viscosity (b)"
+	var names []string
+	for i, p := range f.panels {
+		names = append(names, fmt.Sprintf("%s (%c)", p.name, 'a'+i))
 	}
-	s := "The column: " + what + " against depth; pressure at right."
-	for _, l := range f.layers.all {
-		if l.root {
-			s += " The root is tinted."
-			break
-		}
-	}
+	last := len(names) - 1
+	s := "The column: " + strings.Join(names[:last], ", ") + " and " + names[last] + " against depth; pressure at right."
 	if heavy := f.heavy(); len(heavy) > 0 {
 		s += " Filled: rock denser than the rock below it"
 		if first, last, ok := f.st.Column.RootSpan(); ok && first < last && slices.ContainsFunc(heavy, func(i int) bool { return i >= first && i <= last }) {
@@ -109,12 +137,40 @@ func (f columnFigure) caption() string {
 		s += "."
 	}
 	if f.st.StrainRate > 0 {
-		s += fmt.Sprintf(" Viscosity of creep at a strain rate of %s 1/s.", plain(number(f.st.StrainRate, 3)))
+		what := "Viscosity of creep"
+		if f.drawsStress() {
+			what = "Viscosity and stress"
+		}
+		s += fmt.Sprintf(" %s at a strain rate of %s 1/s.", what, plain(number(f.st.StrainRate, 3)))
+	}
+	return s + f.remarks()
+}
+
+// remarks says in a caption what the marks mean and what is left out.
+func (f columnFigure) remarks() string {
+	var s string
+	if _, _, ok := f.st.Column.RootSpan(); ok {
+		s = " The root is tinted."
+	}
+	if f.drawsStress() {
+		if _, ok := f.pull(); ok {
+			s += " Dashed down the root: the stress of its weight, its excess density times gravity and thickness."
+		}
 	}
 	if slices.Contains(f.prof.capped, true) || slices.Contains(f.prof.floored, true) {
-		s += " Grey along the viscosity: held at a limit."
+		s += " Grey along a curve: held at a viscosity limit."
+	}
+	if slices.Contains(f.prof.yielding, true) {
+		s += " Blue along a curve: friction decides, not creep."
+	} else if f.drawsStress() && f.creeps() {
+		s += " No rock yields by friction."
 	}
 	return s + f.layers.remark()
+}
+
+// creeps reports whether a rock flows by a creep law.
+func (f columnFigure) creeps() bool {
+	return slices.ContainsFunc(f.st.Column.Layers, func(l column.Layer) bool { return l.Viscosity.Creep != nil })
 }
 
 // excess is by how much a layer is denser at its base than the rock below it, in kg/m³:
@@ -159,10 +215,7 @@ func (f columnFigure) draw(s *sheet) {
 	probe := &panel{sheet: s, box: box, y: f.layers.depth()}
 	depths := linearTicks(probe.y, probe.yFits)
 	pressures := f.pressureTicks(probe)
-	n := 2
-	if f.st.HasTemperature {
-		n = 3
-	}
+	n := len(f.panels)
 	left := s.Min.X + yAxisWidth(depths) + 2
 	strip := f.layers.stripWidth(s.Max.X - s.Min.X)
 	right := s.Max.X - yAxisWidth(pressures) - 2
@@ -177,17 +230,15 @@ func (f columnFigure) draw(s *sheet) {
 	names.frame()
 	names.vertical("Depth (km)", depths, false)
 
-	draws := []func(*panel){f.density, f.viscosity}
-	if n == 3 {
-		draws = []func(*panel){f.density, f.temperature, f.viscosity}
-	}
-	for i, draw := range draws {
+	for i, part := range f.panels {
 		p := &panel{sheet: s, box: box, y: probe.y, overhang: 1}
 		p.box.Min.X = left + strip + vg.Length(i)*(wide+gap)
 		p.box.Max.X = p.box.Min.X + wide
-		draw(p)
+		part.draw(p)
 		p.frame()
-		p.letter("(" + string(rune('a'+i)) + ")")
+		if n > 1 {
+			p.letter("(" + string(rune('a'+i)) + ")")
+		}
 		if i == n-1 {
 			p.vertical("Pressure (GPa)", pressures, true)
 		}

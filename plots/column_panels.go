@@ -1,6 +1,7 @@
 package plots
 
 import (
+	"image/color"
 	"math"
 	"sort"
 
@@ -130,17 +131,28 @@ func (f columnFigure) viscosity(p *panel) {
 	p.x = padded(lo, hi, 0.08)
 	f.layers.shade(p)
 	p.horizontal("Viscosity\n(log_{10} Pa s)", linearTicks(p.x, p.xFits), false)
-	named := f.limit(p, logs, f.prof.capped)
-	low := f.limit(p, logs, f.prof.floored)
+	name := f.limits(p, logs)
 	x, z := f.extended(logs, base)
 	p.line("viscosity", x, z, stroke(black, 1.1, solid))
-	named("upper limit", "upper\nlimit")
-	low("lower limit", "lower\nlimit")
+	name()
 }
 
-// limit marks the stretches held at a viscosity limit and returns what names the
-// longest of them once the curve is drawn.
-func (f columnFigure) limit(p *panel, logs []float64, held []bool) func(wordings ...string) {
+// limits marks what holds a curve in place of creep and returns what names it once the
+// curve is drawn.
+func (f columnFigure) limits(p *panel, values []float64) func() {
+	friction := f.limit(p, values, f.prof.yielding, frictionTint)
+	high := f.limit(p, values, f.prof.capped, lineGrey)
+	low := f.limit(p, values, f.prof.floored, lineGrey)
+	return func() {
+		friction("friction")
+		high("upper limit", "upper\nlimit")
+		low("lower limit", "lower\nlimit")
+	}
+}
+
+// limit marks the stretches of a curve that are held and returns what names the longest
+// of them once the curve is drawn.
+func (f columnFigure) limit(p *panel, values []float64, held []bool, c color.Color) func(wordings ...string) {
 	from, longest := 0, -1
 	for i := 0; i < len(held); i++ {
 		if !held[i] {
@@ -152,9 +164,9 @@ func (f columnFigure) limit(p *panel, logs []float64, held []bool) func(wordings
 		}
 		var pts []vg.Point
 		for k := i; k <= j; k++ {
-			pts = append(pts, p.pt(logs[k], f.prof.depth[k]))
+			pts = append(pts, p.pt(values[k], f.prof.depth[k]))
 		}
-		p.StrokeLines(stroke(lineGrey, 5, solid), p.clip().ClipLinesXY(pts)...)
+		p.ribbon(pts, 2.5, c)
 		if j-i > longest {
 			from, longest = i, j-i
 		}
@@ -163,6 +175,25 @@ func (f columnFigure) limit(p *panel, logs []float64, held []bool) func(wordings
 	if longest < 0 {
 		return func(...string) {}
 	}
-	mid := p.pt(logs[from+longest/2], (f.prof.depth[from]+f.prof.depth[from+longest])/2)
+	mid := p.pt(values[from+longest/2], (f.prof.depth[from]+f.prof.depth[from+longest])/2)
 	return func(wordings ...string) { p.place(darkGrey, p.box, nearby(mid, p.box, 34), wordings...) }
+}
+
+// ribbon fills what lies within d of a line on the page, cut at the frame; labels keep
+// off it.
+func (p *panel) ribbon(pts []vg.Point, d vg.Length, c color.Color) {
+	n := len(pts)
+	outline := make([]vg.Point, 2*n)
+	for i := range pts {
+		along := pts[min(i+1, n-1)].Sub(pts[max(i-1, 0)])
+		length := vg.Length(math.Hypot(float64(along.X), float64(along.Y)))
+		if length == 0 { // a single point: across the page
+			along, length = vg.Point{Y: 1}, 1
+		}
+		side := vg.Point{X: -along.Y, Y: along.X}.Scale(d / length)
+		outline[i], outline[2*n-1-i] = pts[i].Add(side), pts[i].Sub(side)
+	}
+	cut := p.clip().ClipPolygonXY(outline)
+	p.polygon(cut, c)
+	p.lines = append(p.lines, cut)
 }

@@ -56,14 +56,14 @@ func madeUpState(rocks []rock) *state.State {
 			rho := r.rho - 40*x
 			eta := math.Pow(10, r.top+(r.bottom-r.top)*x)
 			l.Points = append(l.Points, state.Point{Depth: d, T: zeroCelsius + 1400*(1-math.Exp(-d/50e3)), P: pr + r.rho*9.81*x*h,
-				Density: rho, Viscosity: math.Min(eta, 5e23), Exponent: 3.5, Capped: eta > 5e23})
+				Density: rho, Viscosity: math.Min(eta, 5e23), Exponent: 3.5, Capped: eta > 5e23, Stress: 2 * math.Min(eta, 5e23) * st.StrainRate})
 		}
 		st.Layers = append(st.Layers, l)
 		st.Jumps = append(st.Jumps, r.rho-above)
 		above = r.rho - 40
 		z, pr = z+h, pr+r.rho*9.81*h
 	}
-	st.Base = state.Point{Depth: z, T: zeroCelsius + 1300, P: pr, Density: 3270, Viscosity: 2e20}
+	st.Base = state.Point{Depth: z, T: zeroCelsius + 1300, P: pr, Density: 3270, Viscosity: 2e20, Stress: 2 * 2e20 * st.StrainRate}
 	st.Jumps = append(st.Jumps, 3270-above)
 	return st
 }

@@ -10,6 +10,7 @@ import (
 // Units of the axes in SI.
 const (
 	km  = 1e3
+	mpa = 1e6
 	gpa = 1e9
 	myr = 1e6 * 365.25 * 86400 // a million Julian years, in s
 )

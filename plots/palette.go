@@ -45,6 +45,8 @@ var (
 	baseGrey  = color.NRGBA{R: 237, G: 237, B: 237, A: 255}
 	rootTint  = tint(orange, 0.3)
 	heavyTint = tint(vermillion, 0.55)
+
+	frictionTint = tint(blue, 0.6)
 )
 
 // Dashes, told apart in grey.

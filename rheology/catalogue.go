@@ -53,8 +53,23 @@ var fields = []field{
 	{"water_measure", false, func(l *Law, s string) (err error) { l.Water, err = parseMeasure(s); return }},
 	{"activation_energy_kJ_mol", true, number(func(l *Law) *float64 { return &l.E }, 1e3, 1)},
 	{"activation_volume_cm3_mol", false, number(func(l *Law) *float64 { return &l.V }, 1, 1e6)},
+	{"peierls_stress_MPa", false, number(func(l *Law) *float64 { return &l.Peierls.Stress }, 1e6, 1)},
+	{"peierls_p", false, number(func(l *Law) *float64 { return &l.Peierls.P }, 1, 1)},
+	{"peierls_q", false, number(func(l *Law) *float64 { return &l.Peierls.Q }, 1, 1)},
+	{"peierls_pressure_factor_per_GPa", false, number(func(l *Law) *float64 { return &l.Peierls.PerPa }, 1, 1e9)},
+	{"least_stress_MPa", false, number(func(l *Law) *float64 { return &l.Peierls.Least }, 1e6, 1)},
 	{"melt_exponent", false, text(func(l *Law) *string { return &l.Melt })},
 	{"uncertainty", false, text(func(l *Law) *string { return &l.Uncertainty })},
+	{"error_log10_prefactor", false, number(func(l *Law) *float64 { return &l.Errors.LnA }, math.Ln10, 1)},
+	{"error_prefactor_MPa_um", false, nil}, // readLaw
+	{"error_stress_exponent", false, number(func(l *Law) *float64 { return &l.Errors.N }, 1, 1)},
+	{"error_water_exponent", false, number(func(l *Law) *float64 { return &l.Errors.R }, 1, 1)},
+	{"error_activation_energy_kJ_mol", false, number(func(l *Law) *float64 { return &l.Errors.E }, 1e3, 1)},
+	{"error_activation_volume_cm3_mol", false, number(func(l *Law) *float64 { return &l.Errors.V }, 1, 1e6)},
+	{"tested_temperature_degC", false, interval(func(l *Law) *Interval { return &l.Tested.T }, 1, 273.15)},
+	{"tested_pressure_MPa", false, interval(func(l *Law) *Interval { return &l.Tested.P }, 1e6, 0)},
+	{"tested_stress_MPa", false, interval(func(l *Law) *Interval { return &l.Tested.Stress }, 1e6, 0)},
+	{"status_tested", false, text(func(l *Law) *string { return &l.Tested.Status })},
 	{"status_test", false, text(func(l *Law) *string { return &l.Status.Test })},
 	{"status_prefactor", false, text(func(l *Law) *string { return &l.Status.A })},
 	{"status_stress_exponent", false, text(func(l *Law) *string { return &l.Status.N })},
@@ -62,6 +77,7 @@ var fields = []field{
 	{"status_water_exponent", false, text(func(l *Law) *string { return &l.Status.R })},
 	{"status_activation_energy", false, text(func(l *Law) *string { return &l.Status.E })},
 	{"status_activation_volume", false, text(func(l *Law) *string { return &l.Status.V })},
+	{"status_peierls", false, text(func(l *Law) *string { return &l.Status.Peierls })},
 	{"confidence", false, text(func(l *Law) *string { return &l.Confidence })},
 	{"source", false, text(func(l *Law) *string { return &l.Source })},
 	{"url", false, text(func(l *Law) *string { return &l.URL })},
@@ -111,6 +127,11 @@ func parseMeasure(s string) (WaterMeasure, error) {
 // fugacity in MPa, grain size in µm, a content in H/10⁶ Si, kJ/mol, cm³/mol. A
 // prefactor may be written 10^12.7. The laws come back in invariant SI form, sorted
 // by name without regard to case; names must be unique in that sense.
+//
+// A law of low-temperature plasticity has peierls_stress_MPa, peierls_p and peierls_q
+// (Peierls), its stresses as the test measures them. An error of the prefactor is given
+// in its own unit or of its log10, not both. A tested_… range is "1027 to 1427", "300",
+// ">120" or "<560". Columns that are not there are empty.
 //
 // An error carries the line: "laws, line 7: stress_exponent: …". An activation volume
 // left empty or marked "not determined" is 0 with VolumeDetermined false.
@@ -179,13 +200,17 @@ func readHeader(header []string) ([]field, error) {
 }
 
 func readLaw(cols []field, rec []string) (Law, error) {
-	var l Law
+	var l, absolute Law
 	for i, s := range rec {
 		s = strings.TrimSpace(s)
 		if s == "" && cols[i].required {
 			return l, fmt.Errorf("%s is empty", cols[i].name)
 		}
-		if err := cols[i].set(&l, s); err != nil {
+		set, to := cols[i].set, &l
+		if set == nil { // an error of A itself, whatever the order of the columns
+			set, to = number(func(l *Law) *float64 { return &l.Errors.LnA }, 1, 1), &absolute
+		}
+		if err := set(to, s); err != nil {
 			return l, fmt.Errorf("%s: %w", cols[i].name, err)
 		}
 		if cols[i].name == "activation_volume_cm3_mol" {
@@ -195,6 +220,14 @@ func readLaw(cols []field, rec []string) (Law, error) {
 	if strings.HasPrefix(l.Status.V, "not determined") {
 		l.VolumeDetermined = false
 	}
+	if e := absolute.Errors.LnA; e != 0 {
+		if l.Errors.LnA != 0 {
+			return l, fmt.Errorf("rheology: %s: an error of the prefactor and one of its logarithm; give one", l.Name)
+		}
+		l.Errors.LnA = e / l.LaboratoryA
+	}
+	l.Peierls.Stress /= l.Test.Stress()
+	l.Peierls.Least /= l.Test.Stress()
 	l.A = InvariantPrefactor(l.LaboratoryA, &l)
 	return l, l.Validate()
 }

@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"encoding/csv"
 	"fmt"
+	"math"
 	"os"
 	"slices"
 	"strings"
@@ -53,19 +54,44 @@ func TestCautions(t *testing.T) {
 		{"dry Columbia diabase Mackwell 1998", 1.5e9, "used above 1 GPa"},
 		{"dry olivine dislocation Hirth 2003", 0.5e9, ""},
 		{"dry olivine dislocation Hirth 2003", 1.5e9, "a choice, 14 cm³/mol"},
-		{"dry eclogite Zhang 2007", 3e9, ""},
+		{"dry eclogite Zhang 2007", 3e9, "used at 727 degC; its experiments were at 1027 to 1427 degC"},
 		{"wet amphibolite Hacker 1990", 0.5e9, "low confidence"},
 		{"wet quartzite Paterson 1990", 0.5e9, "recalled from memory, to be checked"},
 		{"wet quartz below 560 MPa Lusk 2021", 0.3e9, "test geometry is assumed"},
 	} {
 		l := find(t, c.law)
-		got := strings.Join(l.Cautions(rheology.Conditions{T: 1000, P: c.P}), "; ")
+		got := l.Caution([]rheology.Use{{T: 1000, P: c.P}})
 		if c.want == "" && got != "" || !strings.Contains(got, c.want) || got != "" && !strings.HasPrefix(got, c.law) {
 			t.Errorf("%s at %g Pa: %q, want %q", c.law, c.P, got, c.want)
 		}
 	}
+	// One line a law, with the range it was used over; stresses are differential, √3 τ_II.
+	MPa := 1e6 / math.Sqrt(3)
+	for _, c := range []struct {
+		law  string
+		used []rheology.Use
+		want string
+	}{
+		{"dry anorthite dislocation Rybacki 2000", []rheology.Use{{T: 973.15, P: 4e8, Stress: 50 * MPa}, {T: 1173.15, P: 9e8, Stress: 10 * MPa}},
+			"used at 700 to 900 degC, 0.4 to 0.9 GPa, 10 to 50 MPa of stress; its experiments were at 867 to 1207 degC, at 0.3 GPa, above 120 MPa of stress"},
+		{"dry anorthite dislocation Rybacki 2000", []rheology.Use{{T: 1200, P: 4e8, Stress: 150 * MPa}}, ""},
+		{"dry anorthite dislocation Rybacki 2000", []rheology.Use{{T: 1200, P: 4e8}}, ""},
+		{"dry anorthite dislocation Rybacki 2000", nil, ""},
+		{"wet quartz below 560 MPa Lusk 2021", []rheology.Use{{T: 900, P: 0}, {T: 900, P: 6e8}},
+			"its test geometry is assumed to be axial compression; used at 0 to 0.6 GPa; its experiments were at 0 to 0.56 GPa"},
+		{goetze, []rheology.Use{{T: 900, P: 5e8, Stress: 100 * MPa}}, "used at 100 MPa of stress; its experiments were above 200 MPa of stress (recalled from memory)"},
+	} {
+		l := find(t, c.law)
+		if want := c.law + ": " + c.want; l.Caution(c.used) != want && (c.want != "" || l.Caution(c.used) != "") {
+			t.Errorf("got  %s\nwant %s", l.Caution(c.used), want)
+		}
+	}
+	both := rheology.Creep{Laws: []rheology.Law{find(t, goetze), find(t, "dry olivine dislocation Hirth 2003")}}
+	if got := both.Cautions([]rheology.Use{{T: 1500, P: 9e8, Stress: 1e6}}); got != nil {
+		t.Errorf("a law that is kept out of low stresses: %q", got)
+	}
 	twice := rheology.Creep{Laws: []rheology.Law{find(t, "dry anorthite dislocation Rybacki 2000"), find(t, "dry anorthite dislocation Rybacki 2006")}}
-	if got := strings.Join(twice.Cautions(rheology.Conditions{T: 1000}), "; "); !strings.Contains(got, "counted twice") {
+	if got := strings.Join(twice.Cautions(nil), "; "); !strings.Contains(got, "counted twice") {
 		t.Errorf("two laws of one mechanism: %q", got)
 	}
 }

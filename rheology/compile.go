@@ -7,8 +7,12 @@ import (
 
 // mechanism is one law for one rock: ln ε = c − (e + P v)/T + n ln τ. Where the grain
 // size follows the stress, d ∝ τ^−p, n is the law's exponent plus m p; held is the
-// exponent at a grain size that is held.
-type mechanism struct{ c, e, v, n, held float64 }
+// exponent at a grain size that is held. A barrier of low-temperature plasticity makes
+// the activation part depend on stress.
+type mechanism struct {
+	c, e, v, n, held float64
+	barrier          barrier
+}
 
 // node is a group, whose mechanisms and mixes act at one stress, or a mix, whose groups
 // act at one strain rate. Nodes stand in preorder, the whole rock first.
@@ -61,6 +65,13 @@ func (c *Creep) compile(ms []mechanism, nodes []node, at *Conditions) (Flow, err
 	f := Flow{ms: ms[:k.nm], nodes: nodes[:k.nn], limits: c.Limits, piezo: c.Piezometer}
 	for i := range f.ms {
 		f.follows = f.follows || f.ms[i].n != f.ms[i].held
+		f.bent = f.bent || f.ms[i].barrier.p != 0
+	}
+	if c.Melt != nil && c.Weakening != 0 {
+		if !(c.Weakening > 0) || math.IsInf(c.Weakening, 1) {
+			return Flow{}, fmt.Errorf("rheology: weakening by melt %g, must be >= 0", c.Weakening)
+		}
+		f.melt, f.weakening = c.Melt, c.Weakening
 	}
 	if c.Friction != nil {
 		if err := c.Friction.Validate(); err != nil {
@@ -193,9 +204,9 @@ func (k *compiler) law(to *mechanism, l *Law) error {
 		p += l.R * math.Log(k.at.Water)
 	}
 	p -= l.N * k.lnFactor // the stress, hence η, is that factor higher
-	if math.IsNaN(p) || math.IsInf(p, 0) || !(l.N > 0) {
+	if math.IsNaN(p) || math.IsInf(p, 0) || !(l.N > 0 || l.N == 0 && l.Peierls.Least > 0) {
 		return fmt.Errorf("rheology: %s: A = %g, n = %g, grain size %g m, water %g give no strain rate", l.Name, l.A, l.N, k.at.GrainSize, k.at.Water)
 	}
-	*to = mechanism{p, l.E / GasConstant, l.V / GasConstant, n, l.N}
+	*to = mechanism{p, l.E / GasConstant, l.V / GasConstant, n, l.N, l.barrier(k.lnFactor)}
 	return nil
 }

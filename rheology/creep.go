@@ -6,7 +6,7 @@ import (
 )
 
 // Creep is a rock's creep laws and mixtures, acting in parallel at one stress: their
-// strain rates add. Factor multiplies the viscosity that follows (at its grain size),
+// strain rates add, those of low-temperature plasticity among them. Factor multiplies the viscosity that follows (at its grain size),
 // before the limits; 0 means 1. A list that counts one mechanism of one rock twice is
 // too weak by up to a factor two: Cautions says so.
 type Creep struct {
@@ -16,6 +16,14 @@ type Creep struct {
 	Limits     Limits
 	Friction   *Friction   // caps the stress of creep, upper limit included; nil: no yield
 	Piezometer *Piezometer // the grain size follows the stress; nil: it is given
+
+	// Melt is the volume fraction φ of melt at T in K and P in Pa, 0 to 1; nil: none. It
+	// multiplies every rate of creep by exp(α φ), α = Weakening, and neither limits nor
+	// friction. Source of the form: Hirth & Kohlstedt 2003, from memory, where α is 25 to
+	// 30 for diffusion and 30 to 45 for dislocation creep of olivine; it holds to about a
+	// quarter of melt (common practice, no source), which Cautions watches.
+	Melt      func(T, P float64) float64
+	Weakening float64 // α, >= 0; 0: melt does not weaken
 }
 
 // NeedsError says what a law needs and the rock does not give.
@@ -34,6 +42,9 @@ type Flow struct {
 	limits     Limits
 	piezo      *Piezometer
 	follows    bool // a law's grain size follows the stress
+	bent       bool // there is low-temperature plasticity
+	melt       func(T, P float64) float64
+	weakening  float64
 	frictional bool
 	yield      float64 // Pa, at P = 0
 	yieldPerPa float64
@@ -55,9 +66,10 @@ func (c *Creep) For(at Conditions) (*Flow, error) {
 //	ε = Σ ε_i(τ_c),  τ = (τ_c^−8 + τ_y^−8)^(−1/8) + 2 η_lowest ε,  n = d ln ε/d ln τ
 //
 // with Mixture's rules in place of the sum where there are mixtures, and τ_c for the
-// bracket where there is no Friction. The upper limit is one more ε_i = τ_c/(2 η_highest)
+// bracket where there is no Friction; n = Σ n_i ε_i/Σ ε_i. The upper limit is one more ε_i = τ_c/(2 η_highest)
 // of the whole rock; the lower one also bounds a rock that yields. The exponent of yield,
-// n_c (τ_c/τ)^8, is limited to MaxExponent, a kink in n alone: η stays smooth.
+// n_c (τ_c/τ)^8, is limited to MaxExponent, a kink in n alone: η stays smooth. Cold rock
+// in low-temperature plasticity may have a larger n_c, which is left as it is.
 //
 // Where a Piezometer gives the grain size, stress and grain size agree with each other:
 // d ∝ τ^−p makes ε_i ∝ τ^(n + m p), so no second iteration is needed. The exponent is
@@ -65,8 +77,11 @@ func (c *Creep) For(at Conditions) (*Flow, error) {
 // grow. The stress is thus that of a rock long deformed at eII, and n is smaller than
 // the slope between two such rocks.
 //
-// The stress is good to 1e-12. It works in logarithms, for rates of 1e-40 to 1 per
-// second and 250 to 2500 K; a result beyond the range of a float64 is an error, as are a
+// Melt weakens at the T and P it is evaluated at; a fraction outside 0 to 1 is an error.
+//
+// The stress is good to 1e-12, with low-temperature plasticity to 1e-10 (Peierls says
+// where not). It works in logarithms, for rates of 1e-40 to 1 per second and 250 to
+// 2500 K; a result beyond the range of a float64 is an error, as are a
 // temperature <= 0 and a missing grain size or water value (NeedsError). It does not
 // allocate for up to seven laws. Derived from the laws' definition; mechanisms at one
 // stress add rates.

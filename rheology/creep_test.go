@@ -174,8 +174,16 @@ func TestExponentIsTheMean(t *testing.T) {
 			if err != nil { // too slow for a float64: its share is zero
 				continue
 			}
+			n := l.N
+			if l.Plastic() { // its own exponent, which a test of its own compares
+				r, err := one.Respond(e, at)
+				if err != nil {
+					t.Fatal(err)
+				}
+				n = r.Exponent
+			}
 			rate += e
-			weighted += l.N * e
+			weighted += n * e
 		}
 		if !close(r.Exponent, weighted/rate, 1e-11) {
 			t.Fatalf("n = %.15g, the mean is %.15g", r.Exponent, weighted/rate)
@@ -282,17 +290,4 @@ func ExampleCreep_Respond() {
 	r, err := creep.Respond(1e-15, rheology.Conditions{T: 1573.15, P: 2e9})
 	fmt.Printf("%.1e Pa s, n = %.1f, %v\n", r.Viscosity, r.Exponent, err)
 	// Output: 1.1e+20 Pa s, n = 3.5, <nil>
-}
-
-func BenchmarkRespond(b *testing.B) {
-	c := rheology.Creep{
-		Laws:   []rheology.Law{find(b, "dry olivine dislocation Hirth 2003"), find(b, "dry olivine diffusion Hirth 2003")},
-		Limits: rheology.Limits{Lowest: 1e18, Highest: 1e24},
-	}
-	at := rheology.Conditions{T: 1300, P: 2e9, GrainSize: 1e-3}
-	for b.Loop() {
-		if _, err := c.Respond(1e-15, at); err != nil {
-			b.Fatal(err)
-		}
-	}
 }

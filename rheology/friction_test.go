@@ -103,7 +103,7 @@ func TestPiezometer(t *testing.T) {
 		t.Errorf("%+v with its grain size given: %+v, %v", r, held, err)
 	}
 	c.Piezometer = p
-	if s := c.Cautions(at); len(s) == 0 || !strings.Contains(s[len(s)-1], "van der Wal et al. 1993") {
+	if s := c.Cautions([]rheology.Use{{T: at.T, P: at.P}}); len(s) == 0 || !strings.Contains(s[len(s)-1], "van der Wal et al. 1993") {
 		t.Errorf("cautions %q do not say that the piezometer was recalled", s)
 	}
 	if _, err := rheology.FindPiezometer("quartz"); err == nil || !strings.Contains(err.Error(), "known are olivine") {

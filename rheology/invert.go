@@ -5,16 +5,31 @@ import (
 	"math"
 )
 
-// term is one mechanism at fixed conditions: ln ε = lnC + n ln τ; held as in mechanism.
-type term struct{ lnC, n, held float64 }
+// term is one mechanism at fixed conditions: ln ε = lnC + n ln τ, plus the bend of
+// low-temperature plasticity; held as in mechanism.
+type term struct {
+	lnC, n, held float64
+	bend         bend
+}
 
-// terms appends the mechanisms at T and P.
-func terms(to []term, ms []mechanism, T, P float64) []term {
-	for i := range ms {
-		m := &ms[i]
-		to = append(to, term{m.c - (m.e+P*m.v)/T, m.n, m.held})
+// terms returns the mechanisms at T and P, in buf, which is zero, where it is long enough.
+func terms(buf []term, ms []mechanism, T, P float64) []term {
+	if len(buf) < len(ms) {
+		buf = make([]term, len(ms))
 	}
-	return to
+	buf = buf[:len(ms)]
+	for i := range ms {
+		m, t := &ms[i], &buf[i]
+		h := (m.e + P*m.v) / T
+		t.lnC, t.n, t.held = m.c-h, m.n, m.held
+		if b := &m.barrier; b.p != 0 {
+			t.lnC, t.bend = m.c, bend{h, b.p, b.q, b.x, b.least}
+			if b.perPa != 0 {
+				t.bend.x += math.Log1p(b.perPa * P)
+			}
+		}
+	}
+	return buf
 }
 
 // rates is the sum S of ε_i/exp(shift) at x = ln τ, the first four derivatives of ln S
@@ -45,7 +60,8 @@ func sum(ts []term, x, shift float64) rates {
 const newtonSteps = 100
 
 // lnStress returns x = ln τ at which the mechanisms together give ln ε, the slope
-// d ln ε/d ln τ there and the last term's share of the rate.
+// d ln ε/d ln τ there and the last term's share of the rate. bentStress does the work
+// where a term bends; otherwise
 //
 // y(x) = ln Σ ε_i − ln ε is convex and rising, so Newton's method cannot fail: from
 // any start its second step is at or above the root and the next fall onto it. The
@@ -54,6 +70,9 @@ const newtonSteps = 100
 func lnStress(ts []term, lnE float64) (x, slope, last float64, err error) {
 	x = math.Inf(1)
 	for i := range ts {
+		if ts[i].bend.p != 0 {
+			return bentStress(ts, lnE)
+		}
 		x = min(x, (lnE-ts[i].lnC)/ts[i].n)
 	}
 	if len(ts) == 1 {
@@ -81,6 +100,10 @@ func lnStress(ts []term, lnE float64) (x, slope, last float64, err error) {
 func lnSum(ts []term, x float64) (ln, slope float64) {
 	top := math.Inf(-1)
 	for i := range ts {
+		if ts[i].bend.p != 0 {
+			r := add(ts, x)
+			return r.ln, r.d1
+		}
 		top = max(top, ts[i].lnC+ts[i].n*x)
 	}
 	r := sum(ts, x, top)
@@ -88,7 +111,7 @@ func lnSum(ts []term, x float64) (ln, slope float64) {
 }
 
 // lnRate returns ln ε at the stress exp(lnTau), of which the lowest viscosity, where
-// there is one, carries 2 η ε: Newton in y = ln τ_c on τ_c + 2 η ε(τ_c) = τ, again a
+// there is one, carries 2 η ε, for terms that do not bend: Newton in y = ln τ_c on τ_c + 2 η ε(τ_c) = τ, again a
 // convex sum, from a start at or above the root.
 func lnRate(ts []term, lnTau, lowest float64) (float64, error) {
 	if lowest <= 0 {
@@ -99,7 +122,7 @@ func lnRate(ts []term, lnTau, lowest float64) (float64, error) {
 	y := lnTau
 	for range newtonSteps {
 		lnE, n := lnSum(ts, y)
-		both := [2]term{{0, 1, 1}, {ln2Eta + lnE - n*y, n, n}} // the dashpot's branch by its tangent
+		both := [2]term{{n: 1}, {lnC: ln2Eta + lnE - n*y, n: n}} // the dashpot's branch by its tangent
 		ln, slope := lnSum(both[:], y)
 		dy := (lnTau - ln) / slope
 		y += dy

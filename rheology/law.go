@@ -62,13 +62,13 @@ func (t Test) Factor(n float64) float64 {
 // Status says where each parameter of a law comes from: seen (read on a public
 // page), memory (recalled, not confirmed), choice (a usual choice, not one measured
 // value), absent in law (0), not determined (0 assumed), or given (typed by the user).
-type Status struct{ A, N, M, R, E, V, Test string }
+type Status struct{ A, N, M, R, E, V, Peierls, Test string }
 
 // Law is one creep law in invariant SI form,
 //
-//	ε_II = A τ_II^n d^-m f^r exp(-(E + P V)/(R T)).
+//	ε_II = A τ_II^n d^-m f^r exp(-(E + P V)/(R T)),
 //
-// Valid where its experiments were; anything else is extrapolation, and Cautions
+// or, where Peierls is set, of low-temperature plasticity. Valid where its experiments were; anything else is extrapolation, and Cautions
 // says what is known about that.
 type Law struct {
 	Name       string // as in a paper's table, e.g. "wet quartzite Gleason 1995"
@@ -77,12 +77,16 @@ type Law struct {
 	Mechanism  string // dislocation, diffusion, …
 
 	A     float64      // invariant SI: Pa^-n s⁻¹ m^m, times Pa^-r for a fugacity, (H/10⁶ Si)^-r for a content
-	N     float64      // stress exponent, > 0
+	N     float64      // stress exponent, > 0; 0 allowed with Peierls.Least
 	M     float64      // grain-size exponent, >= 0
 	R     float64      // water exponent, >= 0
 	E     float64      // activation energy, J/mol
 	V     float64      // activation volume, m³/mol; 0 where not determined
 	Water WaterMeasure // how the law counts water; NoWater where R is 0
+
+	Peierls Peierls // of low-temperature plasticity; zero in a law of another mechanism
+	Errors  Errors  // published
+	Tested  Tested  // where the experiments were
 
 	VolumeDetermined bool    // false: V = 0 is a placeholder, not a measurement
 	Test             Test    // geometry of the experiments A was converted from
@@ -101,7 +105,7 @@ func (l *Law) Validate() error {
 		what string
 		x    float64
 		zero bool
-	}{{"prefactor", l.A, false}, {"stress exponent", l.N, false}, {"grain exponent", l.M, true}, {"water exponent", l.R, true}, {"activation energy", l.E, true}} {
+	}{{"prefactor", l.A, false}, {"stress exponent", l.N, l.Peierls != Peierls{}}, {"grain exponent", l.M, true}, {"water exponent", l.R, true}, {"activation energy", l.E, true}} {
 		if math.IsNaN(p.x) || math.IsInf(p.x, 0) || p.x < 0 || p.x == 0 && !p.zero {
 			return fmt.Errorf("rheology: %s: %s %g", l.Name, p.what, p.x)
 		}
@@ -112,5 +116,10 @@ func (l *Law) Validate() error {
 	if (l.R != 0) != (l.Water != NoWater) {
 		return fmt.Errorf("rheology: %s: water exponent %g with water measure %s", l.Name, l.R, l.Water)
 	}
-	return nil
+	for i, e := range l.Errors.list() {
+		if !(e >= 0) || math.IsInf(e, 1) {
+			return fmt.Errorf("rheology: %s: error %g of its %s, must be >= 0", l.Name, e, errorNames[i])
+		}
+	}
+	return l.plasticity()
 }

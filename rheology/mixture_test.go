@@ -104,9 +104,9 @@ func TestExponentAgainstDifferencesMixed(t *testing.T) {
 			t.Fatal(err)
 		}
 		n := 2 * h / math.Log(up.Stress/down.Stress)
-		if mid.Exponent == rheology.MaxExponent {
-			if n < rheology.MaxExponent*(1-1e-6) {
-				t.Fatalf("limited to 100, by differences %.10g", n)
+		if mid.Limited {
+			if mid.Exponent < rheology.MaxExponent || n < mid.Exponent*(1-1e-6) {
+				t.Fatalf("limited to %.10g, by differences %.10g", mid.Exponent, n)
 			}
 			return
 		}
@@ -126,6 +126,9 @@ func TestBounds(t *testing.T) {
 		c.Limits = rheology.Limits{}
 		f := rapid.Float64Range(0, 1).Draw(t, "fraction")
 		laws := []rheology.Law{c.Laws[0], c.Laws[len(c.Laws)-1]}
+		if laws[0].Plastic() || laws[1].Plastic() {
+			t.Skip("the potentials below are those of power laws")
+		}
 		if same := rapid.Bool().Draw(t, "one exponent"); same {
 			laws[1] = laws[0]
 			laws[1].A *= math.Exp(rapid.Float64Range(-20, 20).Draw(t, "ln contrast"))

@@ -14,11 +14,14 @@ func (f *Flow) Respond(eII, T, P float64) (Response, error) {
 		return Response{}, err
 	}
 	var buf [many]term
-	t := tree{terms(buf[:0], f.ms, T, P), f.nodes, f.follows}
+	t := tree{terms(buf[:], f.ms, T, P), f.nodes, f.follows}
+	err := f.soften(t.ts, T, P)
+	if err != nil {
+		return Response{}, err
+	}
 	y := math.Log(eII)
 	var c point
 	var last float64 // the last mechanism's share of the rate
-	var err error
 	if len(f.nodes) == 1 {
 		c.x, c.n, last, err = lnStress(t.ts, y)
 		if c.held = c.n; f.follows {
@@ -31,8 +34,8 @@ func (f *Flow) Respond(eII, T, P float64) (Response, error) {
 	if err != nil || math.IsNaN(c.x) {
 		return Response{}, fmt.Errorf("rheology: no stress found for %g 1/s at T = %g K, P = %g Pa", eII, T, P)
 	}
-	tau, n, yields := f.capped(&c, P)
-	r := Response{Stress: tau, Exponent: n, Yielding: yields, Limited: f.frictional && n == MaxExponent, Capped: f.limits.Highest > 0 && last > 0.5 && !yields}
+	tau, n, yields, limited := f.capped(&c, P)
+	r := Response{Stress: tau, Exponent: n, Yielding: yields, Limited: limited, Capped: f.limits.Highest > 0 && last > 0.5 && !yields}
 	if f.follows {
 		r.GrainSize = f.piezo.GrainSize(math.Exp(c.x))
 	}
@@ -49,16 +52,40 @@ func (f *Flow) Respond(eII, T, P float64) (Response, error) {
 	return r, nil
 }
 
-// capped returns the stress of creep under friction, its exponent and whether friction
-// decides. c.n becomes the slope of that stress along the curve, without a limit.
-func (f *Flow) capped(c *point, P float64) (tau, n float64, yields bool) {
+// soften multiplies the rates of creep by exp(αφ); the upper limit is not creep.
+func (f *Flow) soften(ts []term, T, P float64) error {
+	if f.melt == nil {
+		return nil
+	}
+	phi := f.melt(T, P)
+	if !(phi >= 0 && phi <= 1) {
+		return fmt.Errorf("rheology: melt fraction %g at T = %g K, P = %g Pa, must be 0 to 1", phi, T, P)
+	}
+	limit := -1
+	if f.limits.Highest > 0 {
+		limit = f.nodes[0].b - 1
+	}
+	for i := range ts {
+		if i != limit {
+			ts[i].lnC += f.weakening * phi
+		}
+	}
+	return nil
+}
+
+// capped returns the stress of creep under friction, its exponent, whether friction
+// decides and whether the exponent is limited. c.n becomes the slope of that stress along
+// the curve, without a limit.
+func (f *Flow) capped(c *point, P float64) (tau, n float64, yields, limited bool) {
 	if !f.frictional {
-		return math.Exp(c.x), c.held, false
+		return math.Exp(c.x), c.held, false, false
 	}
 	lnY := math.Log(f.yield + f.yieldPerPa*P)
 	tau, gain := yieldAt(c.x, lnY)
 	c.n *= gain
-	return tau, min(c.held*gain, MaxExponent), c.x > lnY
+	n = c.held * gain
+	most := max(MaxExponent, c.held) // creep may be more non-linear by itself
+	return tau, min(n, most), c.x > lnY, n >= most && gain > 1
 }
 
 // StrainRate is Creep.StrainRate at the flow's grain size, water and sense.
@@ -70,10 +97,13 @@ func (f *Flow) StrainRate(tau, T, P float64) (float64, error) {
 		return 0, err
 	}
 	var buf [many]term
-	t := tree{terms(buf[:0], f.ms, T, P), f.nodes, f.follows}
+	t := tree{terms(buf[:], f.ms, T, P), f.nodes, f.follows}
+	err := f.soften(t.ts, T, P)
+	if err != nil {
+		return 0, err
+	}
 	var y float64
-	var err error
-	if len(f.nodes) == 1 && !f.frictional {
+	if len(f.nodes) == 1 && !f.frictional && !f.bent {
 		y, err = lnRate(t.ts, math.Log(tau), f.limits.Lowest)
 	} else {
 		y, err = f.lnRate(&t, tau, P)
@@ -112,7 +142,7 @@ func (f *Flow) lnRate(t *tree, tau, P float64) (float64, error) {
 	var s search
 	for s.begin(); s.more(); y += s.dx {
 		c := t.groupAt(0, y)
-		stress, _, _ := f.capped(&c, P)
+		stress, _, _, _ := f.capped(&c, P)
 		dash := 2 * low * math.Exp(y)
 		if sum := stress + dash; s.try(y, math.Log(sum)-x, (stress/c.n+dash)/sum) {
 			return y + s.dx, nil

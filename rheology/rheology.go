@@ -4,8 +4,9 @@
 // Every law is kept in invariant SI form,
 //
 //	ε_II = A τ_II^n d^-m f^r exp(-(E + P V)/(R T)),
+//	ε_II = A τ_II^n d^-m f^r exp(-(E + P V)/(R T) (1 - (τ_II/τ_P)^p)^q)
 //
-// with ε_II² = ½ ε:ε in 1/s, τ_II² = ½ τ:τ in Pa, d the grain size in m, f the
+// for low-temperature plasticity (Peierls), with ε_II² = ½ ε:ε in 1/s, τ_II² = ½ τ:τ in Pa, d the grain size in m, f the
 // water fugacity in Pa or the water content in H per 10⁶ Si, P the lithostatic
 // pressure in Pa. The secant viscosity is η = τ_II/(2 ε_II) in Pa s.
 // Laws of one rock act in parallel: one stress, rates added. A published rate

@@ -149,25 +149,28 @@ func (t *tree) next(i int) int { return t.nodes[i].end }
 func heldMean(ts []term, x float64) float64 {
 	top := math.Inf(-1)
 	for i := range ts {
-		top = max(top, ts[i].lnC+ts[i].n*x)
+		ln, _, _, _ := ts[i].rate(x)
+		top = max(top, ln)
 	}
 	var s, m float64
 	for i := range ts {
-		w := math.Exp(ts[i].lnC + ts[i].n*x - top)
+		ln, slope, _, _ := ts[i].rate(x)
+		w := math.Exp(ln - top)
 		s += w
-		m += w * ts[i].held
+		m += w * (ts[i].held + slope - ts[i].n)
 	}
 	return m / s
 }
 
 // search is Newton's method for a rising function of one variable; it bisects where a
-// step would leave what is known to hold the root.
+// step would leave what is known to hold the root, or is more than half the last one
+// there: about a sharp bend, steps from either side may land on the other for ever.
 type search struct {
-	low, high, dx float64
-	steps         int
+	low, high, dx, before float64
+	steps                 int
 }
 
-func (s *search) begin() { *s = search{low: math.Inf(-1), high: math.Inf(1)} }
+func (s *search) begin() { *s = search{low: math.Inf(-1), high: math.Inf(1), before: math.Inf(1)} }
 
 func (s *search) more() bool { s.steps++; return s.steps <= newtonSteps }
 
@@ -187,8 +190,10 @@ func (s *search) try(x, f, slope float64) bool {
 		s.dx = 0
 		return true
 	}
-	if to := x + s.dx; !(to > s.low && to < s.high) {
+	both := s.high-s.low < math.Inf(1)
+	if to := x + s.dx; !(to > s.low && to < s.high) || both && math.Abs(s.dx) > s.before/2 {
 		s.dx = (s.low+s.high)/2 - x // one of the bounds is x itself, the other was met before
 	}
+	s.before = math.Abs(s.dx)
 	return false
 }

@@ -87,6 +87,34 @@ func TestREADMEExperiment(t *testing.T) {
 	}
 }
 
+// The measured section that README.md shows is read: its first two rows are one layer.
+func TestREADMESection(t *testing.T) {
+	b, err := os.ReadFile("../../README.md")
+	if err != nil {
+		t.Fatal(err)
+	}
+	_, rest, ok := strings.Cut(string(b), "\n    name,")
+	rows, _, closed := strings.Cut(rest, "\n\n")
+	_, entry, named := strings.Cut(string(b), "`- {section: ")
+	entry, _, ends := strings.Cut(entry, "`")
+	if !ok || !closed || !named || !ends {
+		t.Fatal("README shows no section")
+	}
+	t.Setenv("XDG_CONFIG_HOME", t.TempDir())
+	t.Chdir(t.TempDir())
+	text := "base: {temperature: 1300 degC}\nlayers:\n  - {section: " + strings.ReplaceAll(entry, "\n", " ") + "\n" +
+		"  - {name: mantle, thickness: 30 km, density: 3270 kg/m3, viscosity: 1e20 Pa s}\n"
+	for name, content := range map[string]string{"s.yaml": text, "north-ridge.csv": "name," + rows + "\n"} {
+		if err := os.WriteFile(name, []byte(content), 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+	var out, errs bytes.Buffer
+	if status := Main(context.Background(), []string{"column", "s.yaml"}, Streams{&out, &errs}); status != exitDone || !strings.Contains(out.String(), "granulite             0-5.2") {
+		t.Errorf("exit status %d: %s%s", status, errs.String(), out.String())
+	}
+}
+
 // A place that cannot be written to is known before anything is computed, and an
 // interrupted run leaves no folder behind, not even one above its own.
 func TestPlaceComesFirst(t *testing.T) {

@@ -45,7 +45,7 @@ func newModeCmd(s Streams) *cobra.Command {
 			m := modes[number-1]
 			return &part{name: "mode", text: report.ModesPage(p, st, wavelengths[0], modes, number-1),
 				value: report.Modes(st, wavelengths[0], modes, race.Warnings(p, st)), table: report.ModeTable(st, m),
-				figure:   func(w vg.Length) (plots.Figure, error) { return plots.Mode(st.Column, m, w) },
+				figures:  one(func(w vg.Length) (plots.Figure, error) { return plots.Mode(st.Column, m, w) }),
 				warnings: race.Warnings(p, st)}, nil
 		})
 	cmd.Flags().StringVar(&at, "at", "", "the wavelength, for example 60km")

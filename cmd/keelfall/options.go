@@ -10,6 +10,7 @@ import (
 	"strings"
 
 	"github.com/spf13/cobra"
+	"github.com/spf13/pflag"
 
 	"keelfall/cmd/internal/report"
 	"keelfall/configs"
@@ -37,34 +38,43 @@ func (o *options) flags(cmd *cobra.Command) {
 	o.cmd = cmd
 	f := cmd.Flags()
 	f.StringArrayVar(&o.Set, "set", nil, "change the experiment, path=value; names in lists: layers.root.thickness=12km; an empty value removes the key")
+	o.formatFlag(f)
+	o.folderFlags(f)
+	f.Int("workers", 0, "how many at once; 0: as many as there are cores")
+	o.settingsFlags(f)
+}
+
+// formatFlag adds the format of what is printed.
+func (o *options) formatFlag(f *pflag.FlagSet) {
 	f.StringVar(&o.Format, "format", "text", "text, json or csv")
+}
+
+// folderFlags add what a folder is filled with.
+func (o *options) folderFlags(f *pflag.FlagSet) {
 	f.String("out", "", "folder to write figures and tables into")
 	f.String("figures", "", "formats of figures: png,svg,pdf")
-	f.Int("workers", 0, "how many at once; 0: as many as there are cores")
 	f.Float64Var(&o.Width, "width", 85, "width of figures in mm: 85 is a journal column, 180 a page")
+}
+
+// settingsFlags add the user's own catalogues and settings.
+func (o *options) settingsFlags(f *pflag.FlagSet) {
 	f.String("catalogues", "", "CSV files of further creep laws, separated by commas")
 	f.StringVar(&o.settingsFile, "settings", "", "file of settings (default keelfall/settings.yaml in the user's configuration folder)")
 }
 
 // load reads settings and experiment.
 func (o *options) load() (*configs.Experiment, *race.Problem, error) {
-	if !slices.Contains([]string{"text", "json", "csv"}, o.Format) {
-		return nil, nil, usageError{fmt.Errorf("--format %s is not known; needs text, json or csv", o.Format)}
-	}
-	if !(o.Width >= 80 && o.Width <= 400) {
-		return nil, nil, usageError{fmt.Errorf("--width %g; needs 80 to 400 mm", o.Width)}
+	if err := o.check(); err != nil {
+		return nil, nil, err
 	}
 	if err := o.settings(); err != nil {
 		return nil, nil, usageError{err}
 	}
-	reader := configs.Reader{}
-	for _, path := range o.Settings.Catalogues {
-		c, err := configs.ReadCatalogue(path)
-		if err != nil {
-			return nil, nil, usageError{err}
-		}
-		reader.Catalogues = append(reader.Catalogues, c)
+	own, err := o.catalogues()
+	if err != nil {
+		return nil, nil, err
 	}
+	reader := configs.Reader{Catalogues: own}
 	if o.File == "" {
 		text, err := configs.Example(defaultExample)
 		if err != nil {
@@ -81,6 +91,30 @@ func (o *options) load() (*configs.Experiment, *race.Problem, error) {
 		return nil, nil, inputError(err)
 	}
 	return o.problem(e)
+}
+
+// check refuses a format or a width that cannot be printed.
+func (o *options) check() error {
+	if !slices.Contains([]string{"text", "json", "csv"}, o.Format) {
+		return usageError{fmt.Errorf("--format %s is not known; needs text, json or csv", o.Format)}
+	}
+	if !(o.Width >= 80 && o.Width <= 400) {
+		return usageError{fmt.Errorf("--width %g; needs 80 to 400 mm", o.Width)}
+	}
+	return nil
+}
+
+// catalogues reads the user's own creep laws.
+func (o *options) catalogues() ([]configs.Catalogue, error) {
+	var own []configs.Catalogue
+	for _, path := range o.Settings.Catalogues {
+		c, err := configs.ReadCatalogue(path)
+		if err != nil {
+			return nil, usageError{err}
+		}
+		own = append(own, c)
+	}
+	return own, nil
 }
 
 // settings loads the settings. A file in the user's configuration folder that cannot

@@ -24,8 +24,17 @@ type part struct {
 	text     string
 	value    any
 	table    report.Table
-	figure   func(width vg.Length) (plots.Figure, error)
+	more     []report.Table // written beside it into a folder
+	figures  func(width vg.Length) ([]plots.Figure, error)
 	warnings []string
+}
+
+// one makes the figures of a part that has a single one.
+func one(draw func(vg.Length) (plots.Figure, error)) func(vg.Length) ([]plots.Figure, error) {
+	return func(w vg.Length) ([]plots.Figure, error) {
+		f, err := draw(w)
+		return []plots.Figure{f}, err
+	}
 }
 
 // newPartCmd makes a command that computes one part of an experiment.
@@ -77,25 +86,16 @@ func (o *options) fill(folder *report.Folder, r *part) error {
 	if err := w.json(r.name+".json", r.value); err != nil {
 		return err
 	}
-	w.add(r.table.Name+".csv", r.table.Encode())
-	if r.figure != nil {
-		f, err := r.figure(vg.Length(o.Width) * vg.Millimeter)
-		if err != nil {
+	for _, t := range append([]report.Table{r.table}, r.more...) {
+		w.add(t.Name+".csv", t.Encode())
+	}
+	if r.figures != nil {
+		var err error
+		if w.figures, err = r.figures(vg.Length(o.Width) * vg.Millimeter); err != nil {
 			return err
 		}
-		w.figures = append(w.figures, f)
 	}
 	return o.write(o.Settings.Out, folder, w)
-}
-
-func newColumnCmd(s Streams) *cobra.Command {
-	cmd, _ := newPartCmd(s, "column FILE", "Temperature, pressure, density and viscosity against depth",
-		func(_ context.Context, _ *options, p *race.Problem, st *state.State) (*part, error) {
-			return &part{name: "column", text: report.ColumnPage(p, st), value: report.Column(p, st), table: report.ColumnTable(st),
-				figure:   func(w vg.Length) (plots.Figure, error) { return plots.Column(st, w) },
-				warnings: race.Warnings(p, st)}, nil
-		})
-	return cmd
 }
 
 func newSpectrumCmd(s Streams) *cobra.Command {
@@ -123,9 +123,9 @@ func newSpectrumCmd(s Streams) *cobra.Command {
 				rates = exact
 			}
 			out := &part{name: "spectrum", text: report.SpectrumPage(p, st, sp, exact), table: report.SpectrumTable(rates),
-				figure: func(w vg.Length) (plots.Figure, error) {
+				figures: one(func(w vg.Length) (plots.Figure, error) {
 					return plots.Spectrum(sp, nil, plots.SettingOf(p), w)
-				},
+				}),
 				warnings: report.SpectrumWarnings(p, st, sp)}
 			value := report.Spectrum(p, st, sp, exact)
 			if follow {
@@ -136,9 +136,9 @@ func newSpectrumCmd(s Streams) *cobra.Command {
 				value.Branches = report.Branches(st, all)
 				out.text += report.BranchesText(st, all)
 				out.table = report.BranchesTable(st, all)
-				out.figure = func(w vg.Length) (plots.Figure, error) {
+				out.figures = one(func(w vg.Length) (plots.Figure, error) {
 					return plots.Branches(all, report.BranchLabels(st, all), plots.SettingOf(p), w)
-				}
+				})
 			}
 			out.value = value
 			return out, nil
@@ -192,9 +192,9 @@ func newDripCmd(s Streams) *cobra.Command {
 				return nil, err
 			}
 			return &part{name: "drip", text: report.DripPage(p, r), value: report.Drip(p, st, r.Drip), table: report.DripTable(r),
-				figure: func(w vg.Length) (plots.Figure, error) {
+				figures: one(func(w vg.Length) (plots.Figure, error) {
 					return plots.Spectrum(nil, r.Drip, plots.SettingOf(p), w)
-				},
+				}),
 				warnings: report.DripWarnings(p, st, r.Drip)}, nil
 		})
 	return cmd
@@ -211,7 +211,7 @@ func newExciseCmd(s Streams) *cobra.Command {
 			out := &part{name: "excise", text: report.ExcisionPage(p, r), value: report.Excision(p, st, r.Excision), table: report.ExcisionTable(r),
 				warnings: report.ExcisionWarnings(p, st, r.Excision)}
 			if len(p.Zones) > 0 {
-				out.figure = func(w vg.Length) (plots.Figure, error) { return plots.Fates(r, w) }
+				out.figures = one(func(w vg.Length) (plots.Figure, error) { return plots.Fates(r, w) })
 			}
 			return out, nil
 		})

@@ -8,7 +8,6 @@ import (
 
 	"keelfall/cmd/internal/report"
 	"keelfall/configs"
-	"keelfall/rheology"
 )
 
 func newExampleCmd(s Streams) *cobra.Command {
@@ -26,8 +25,13 @@ func newExampleCmd(s Streams) *cobra.Command {
 			if err != nil {
 				return usageError{err}
 			}
-			_, err = fmt.Fprint(s.Out, text)
-			return err
+			if _, err = fmt.Fprint(s.Out, text); err != nil {
+				return err
+			}
+			for _, file := range configs.ExampleReads(name) {
+				fmt.Fprintf(s.Err, "%s reads the file %s; \"keelfall example %s\" prints it\n", name, file, file)
+			}
+			return nil
 		},
 	}
 }
@@ -62,24 +66,4 @@ func newSchemaCmd(s Streams) *cobra.Command {
 			return err
 		},
 	}
-}
-
-func newLawsCmd(s Streams) *cobra.Command {
-	o := &options{Streams: s}
-	cmd := &cobra.Command{
-		Use: "laws [NAME]", Short: "Lists the creep laws, or shows one with its sources", Args: args(cobra.MaximumNArgs(1)),
-		RunE: func(_ *cobra.Command, a []string) error {
-			laws := rheology.Laws()
-			if len(a) > 0 {
-				l, err := rheology.Find(a[0])
-				if err != nil {
-					return usageError{err}
-				}
-				return o.print(report.LawPage(&l), report.Laws([]rheology.Law{l}), report.LawsTable([]rheology.Law{l}))
-			}
-			return o.print(report.LawsPage(laws), report.Laws(laws), report.LawsTable(laws))
-		},
-	}
-	cmd.Flags().StringVar(&o.Format, "format", "text", "text, json or csv")
-	return cmd
 }

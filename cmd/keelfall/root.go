@@ -93,7 +93,7 @@ leaves out.`,
 	root.SetFlagErrorFunc(func(_ *cobra.Command, err error) error { return usageError{err} })
 	root.SuggestionsMinimumDistance = 2
 	root.AddCommand(newRunCmd(s, run), newExampleCmd(s), newCheckCmd(s), newColumnCmd(s), newSpectrumCmd(s), newModeCmd(s),
-		newDripCmd(s), newExciseCmd(s), newLawsCmd(s), newSchemaCmd(s), newVerifyCmd(s))
+		newDripCmd(s), newExciseCmd(s), newLawsCmd(s), newMineralsCmd(s), newSchemaCmd(s), newVerifyCmd(s))
 	return root
 }
 

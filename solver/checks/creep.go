@@ -73,6 +73,8 @@ func creepChecks() []Check {
 			}
 			return p.GrainSize(100e6 / math.Sqrt(3)), nil
 		})
+	plasticChecks(add)
+	lawChecks(add)
 	return list
 }
 
@@ -121,7 +123,7 @@ func outOfOrder() (float64, error) {
 	laws := rheology.Laws()
 	for i := range laws {
 		for j := range i {
-			if laws[i].N != laws[j].N || laws[i].Water == rheology.WaterContent || laws[j].Water == rheology.WaterContent {
+			if laws[i].N != laws[j].N || laws[i].Plastic() || laws[j].Plastic() || laws[i].Water == rheology.WaterContent || laws[j].Water == rheology.WaterContent {
 				continue
 			}
 			pairs++
@@ -147,9 +149,9 @@ func outOfOrder() (float64, error) {
 
 // catalogued is ε_II of a law of the catalogue at τ_II.
 func catalogued(name string, tau float64, at rheology.Conditions) (float64, error) {
-	law, err := rheology.Find(name)
+	c, err := creepOf(name)
 	if err != nil {
 		return 0, err
 	}
-	return (&rheology.Creep{Laws: []rheology.Law{law}}).StrainRate(tau, at)
+	return c.StrainRate(tau, at)
 }

@@ -116,7 +116,7 @@ func diffusion(s *state.State) *growth.Diffusion {
 	if c.Base.Boundary == column.HalfSpace {
 		r, b := &c.Base.Rock, s.Base
 		d.HalfSpace = growth.Thermal{PerKelvin: constant(r.Density.PerKelvin(b.T, b.P, 0)), Excess: constant(0),
-			Conductivity: constant(r.Conductivity.Value(b.T, b.P)), Capacity: constant(b.Density * r.HeatCapacity)}
+			Conductivity: constant(r.Conductivity.Value(b.T, b.P)), Capacity: constant(b.Density * r.ApparentHeatCapacity(b.T, b.P))}
 	}
 	return d
 }
@@ -134,9 +134,9 @@ func heatOf(s *state.State, layer int) growth.Thermal {
 			T, P, x, _ := at(z)
 			return l.Density.PerKelvin(T, P, x)
 		},
-		Excess: func(z float64) float64 { // dT₀/dz − α g T₀/c_p, α = −(∂ρ/∂T)/ρ
+		Excess: func(z float64) float64 { // dT₀/dz less the adiabat's, α g T₀/c_p without melt
 			T, P, x, slope := at(z)
-			return slope + l.Density.PerKelvin(T, P, x)/l.Density.At(T, P, x)*s.Column.Gravity*T/l.HeatCapacity
+			return slope - l.Adiabat(T, P, x)*l.Density.At(T, P, x)*s.Column.Gravity
 		},
 		Conductivity: func(z float64) float64 {
 			T, P, _, _ := at(z)
@@ -144,7 +144,7 @@ func heatOf(s *state.State, layer int) growth.Thermal {
 		},
 		Capacity: func(z float64) float64 {
 			T, P, x, _ := at(z)
-			return l.Density.At(T, P, x) * l.HeatCapacity
+			return l.Density.At(T, P, x) * l.ApparentHeatCapacity(T, P)
 		},
 	}
 }

@@ -236,10 +236,5 @@ func (r raised) At(T, P, x float64) float64 { return r.Density.At(T, P, x) + r.m
 // Covers is the range of the density that is raised.
 func (r raised) Covers(T, P float64) error { return column.Covered(r.Density, T, P) }
 
-// Kinks are those of the density that is raised, where it has any.
-func (r raised) Kinks() (kelvin, pascal []float64) {
-	if k, ok := r.Density.(interface{ Kinks() ([]float64, []float64) }); ok {
-		return k.Kinks()
-	}
-	return nil, nil
-}
+// Kinks are those of the density that is raised.
+func (r raised) Kinks() []column.Kink { return column.Kinks(r.Density) }

@@ -106,9 +106,28 @@ func (s *State) GradientAt(layer int, z float64) float64 {
 	return l.Density.Gradient(T, P, min(max((z-h.Top)/l.Thickness, 0), 1)) / l.Thickness
 }
 
+// DepthOf returns the depth in m at which the lithostatic pressure is that in Pa, to
+// round-off of the state's own interpolation; ok is false where the column does not
+// reach it.
+func (s *State) DepthOf(pressure float64) (depth float64, ok bool) {
+	for i := range s.heat.Layers {
+		h := &s.heat.Layers[i]
+		if _, top, _ := h.At(h.Top); !(pressure >= top) {
+			return 0, false
+		} else if pressure == top {
+			return h.Top, true
+		}
+		if _, bottom, _ := h.At(h.Bottom); pressure <= bottom {
+			return bisect(h.Top, h.Bottom, func(z float64) bool { _, P, _ := h.At(z); return P < pressure }), true
+		}
+	}
+	return 0, false
+}
+
 // Kinks returns the depths in m inside a layer where the slope of a given geotherm or
-// of a tabulated density jumps, or the exponent of frictional yield reaches its limit;
-// ln η and n are continuous there but a slope is not, and ∂ρ/∂T is not even continuous.
+// of a tabulated density jumps, melting begins or ends, or the exponent of frictional
+// yield reaches its limit; ln η and n are continuous there but a slope is not, and ∂ρ/∂T
+// is not even continuous.
 // The slice is the state's own.
 func (s *State) Kinks(layer int) []float64 { return s.kinks[layer] }
 

@@ -7,37 +7,27 @@ import (
 	"keelfall/solver/heat"
 )
 
-// kinked is a density whose derivative by temperature jumps at some temperatures and
-// whose slope jumps at some pressures: a table.
-type kinked interface {
-	Kinks() (kelvin, pascal []float64)
-}
-
 // apart is how close, relative to the layer, two kinks or a kink and the layer's edge
 // may come: what is closer is one.
 const apart = 1e-6
 
 // kinks returns the depths inside a layer, increasing, at which quadrature has to stop:
-// those of a given geotherm, and where the column passes a kink of the density. Without
-// them the growth solver's elements straddle jumps of ∂ρ/∂T, and its rates are off by
-// a per cent where its own estimate, which knows smooth layers, says 1e-11.
-func kinks(h *heat.Layer, d column.Density) []float64 {
-	k, ok := d.(kinked)
-	if !ok {
+// those of a given geotherm, and where the column passes a kink of the density or, for
+// what melt does to viscosity, the solidus and liquidus. Without them the growth solver's
+// elements straddle jumps of ∂ρ/∂T, and its rates are off by a per cent where its own
+// estimate, which knows smooth layers, says 1e-11. A column that passes a kink and comes
+// back between two nodes, 250 m apart at most, is taken not to pass it.
+func kinks(h *heat.Layer, r *column.Rock) []float64 {
+	functions := append(column.Kinks(r.Density), r.Melt.Kinks()...)
+	if len(functions) == 0 {
 		return h.Kinks
 	}
 	all := slices.Clone(h.Kinks)
-	kelvin, pascal := k.Kinks()
-	for j := 1; j < len(h.Nodes); j++ {
-		a, b := h.Nodes[j-1], h.Nodes[j]
-		for _, T := range kelvin {
-			if (a.T < T) != (b.T < T) {
-				all = append(all, bisect(a.Depth, b.Depth, func(z float64) bool { t, _, _ := h.At(z); return (t < T) == (a.T < T) }))
-			}
-		}
-		for _, P := range pascal {
-			if (a.P < P) != (b.P < P) {
-				all = append(all, bisect(a.Depth, b.Depth, func(z float64) bool { _, p, _ := h.At(z); return (p < P) == (a.P < P) }))
+	for _, f := range functions {
+		for j := 1; j < len(h.Nodes); j++ {
+			a, b := h.Nodes[j-1], h.Nodes[j]
+			if below := f(a.T, a.P) < 0; (f(b.T, b.P) < 0) != below {
+				all = append(all, bisect(a.Depth, b.Depth, func(z float64) bool { T, P, _ := h.At(z); return (f(T, P) < 0) == below }))
 			}
 		}
 	}

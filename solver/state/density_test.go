@@ -90,7 +90,7 @@ func TestModesWarn(t *testing.T) {
 	c := tabulated(t, 1473.15)
 	c.Layers[0].Density, c.Base.Density = m, m
 	s := build(t, c, 0)
-	if w := strings.Join(s.Warnings, "\n"); len(s.Warnings) != 1 || !strings.Contains(w, "densities of enstatite, forsterite rest on") || !strings.Contains(w, "(in mantle, the base)") {
+	if w := strings.Join(s.Warnings, "\n"); len(s.Warnings) != 1 || !strings.Contains(w, "densities from mineral modes rest on") || !strings.Contains(w, "(in mantle, the base)") {
 		t.Error(w)
 	}
 	if s.Jumps[1] != 0 || s.GradientAt(0, 3e4) != 0 { // one composition

@@ -110,7 +110,7 @@ func New(c *column.Column, strainRate float64) (*State, error) {
 	}
 	s.kinks = make([][]float64, len(c.Layers))
 	for i := range c.Layers {
-		s.kinks[i] = s.yieldKinks(i, kinks(&hp.Layers[i], c.Layers[i].Density))
+		s.kinks[i] = s.yieldKinks(i, kinks(&hp.Layers[i], &c.Layers[i].Rock))
 	}
 	s.warn()
 	return s, nil
@@ -135,6 +135,9 @@ func (s *State) point(r *column.Rock, f *rheology.Flow, x, z, T, P float64) (Poi
 		return p, fmt.Errorf("density %g kg/m³ at T = %.4g K, P = %.4g Pa", p.Density, T, P)
 	}
 	if err := column.Covered(r.Density, T, P); err != nil {
+		return p, err
+	}
+	if err := r.Melt.Covers(P); err != nil {
 		return p, err
 	}
 	if f == nil {

@@ -14,8 +14,9 @@ func (s *State) warn() {
 	c := s.Column
 	var texts []string
 	rocks := map[string][]string{}
-	note := func(name string, laws *rheology.Creep, r *column.Rock, deepest Point) {
-		for _, t := range laws.Cautions(r.Conditions(deepest.T, deepest.P)) {
+	note := func(name string, laws *rheology.Creep, ps []Point) {
+		laws.Melt = nil // s.melt says where there is too much
+		for _, t := range laws.Cautions(used(ps)) {
 			if rocks[t] == nil {
 				texts = append(texts, t)
 			}
@@ -34,12 +35,11 @@ func (s *State) warn() {
 	}
 	for i := range c.Layers {
 		if laws := c.Layers[i].CreepWith(c.Limits); laws != nil {
-			ps := s.Layers[i].Points
-			note(c.Layers[i].Name, laws, &c.Layers[i].Rock, ps[len(ps)-1])
+			note(c.Layers[i].Name, laws, s.Layers[i].Points)
 		}
 	}
 	if c.Base.Boundary == column.HalfSpace && c.Base.Viscosity.Creep != nil {
-		note("the half-space", c.Base.CreepWith(c.Limits), &c.Base.Rock, s.Base)
+		note("the half-space", c.Base.CreepWith(c.Limits), []Point{s.Base})
 	}
 	for i := range c.Layers {
 		caution(c.Layers[i].Density, c.Layers[i].Name)
@@ -52,8 +52,23 @@ func (s *State) warn() {
 	}
 	for i := range c.Layers {
 		s.limits(c.Layers[i].Name, s.Layers[i].Points)
+		s.melt(c.Layers[i].Name, &c.Layers[i].Rock, s.Layers[i].Points)
 	}
 	s.limits("the half-space", []Point{s.Base})
+	if b := c.Base.Boundary; b == column.HalfSpace || b == column.Inviscid {
+		s.melt("the base", &c.Base.Rock, []Point{s.Base})
+	}
+}
+
+// used are the points where creep decides, not friction or a limit.
+func used(ps []Point) []rheology.Use {
+	var out []rheology.Use
+	for _, p := range ps {
+		if !p.Yielding && !p.Capped && !p.Floored {
+			out = append(out, rheology.Use{T: p.T, P: p.P, Stress: p.Stress})
+		}
+	}
+	return out
 }
 
 // limits warns of what decides in place of creep.
@@ -66,16 +81,7 @@ func (s *State) limits(name string, ps []Point) {
 
 // limited warns of each range of depths in which a limit bites.
 func (s *State) limited(name string, ps []Point, which string, bites func(Point) bool) {
-	for i := 0; i < len(ps); i++ {
-		if !bites(ps[i]) {
-			continue
-		}
-		j := i
-		for j+1 < len(ps) && bites(ps[j+1]) {
-			j++
-		}
-		s.Warnings = append(s.Warnings, fmt.Sprintf("%s: %s decides from %.1f to %.1f km, not the creep law",
-			name, which, ps[i].Depth/1e3, ps[j].Depth/1e3))
-		i = j
-	}
+	s.ranges(ps, bites, func(from, to float64) string {
+		return fmt.Sprintf("%s: %s decides from %.1f to %.1f km, not the creep law", name, which, from, to)
+	})
 }

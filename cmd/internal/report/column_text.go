@@ -6,7 +6,6 @@ import (
 	"slices"
 	"strings"
 
-	"keelfall/column"
 	"keelfall/rheology"
 	"keelfall/solver/drip"
 	"keelfall/solver/race"
@@ -47,7 +46,7 @@ func columnText(p *page, s *state.State) {
 	if s.HasTemperature {
 		p.say("Heat flow %.1f mW/m2 at the surface, %.1f at the base of the column.", s.SurfaceFlow*1e3, s.BaseFlow*1e3)
 	}
-	for _, w := range together(s) {
+	for _, w := range slices.Concat(together(s), frictionText(s), reacted(s)) {
 		p.say("%s", w)
 	}
 	contrast, stress, ok := race.Buoyancy(s)
@@ -89,40 +88,6 @@ func creepCell(c *rheology.Creep) string {
 	return cut(strings.Join(names, " + "), 26)
 }
 
-// together says which mechanisms act together, where a rock has several laws.
-func together(s *state.State) []string {
-	var order []string
-	where := map[string][]string{}
-	for i := 0; i <= len(s.Column.Layers); i++ {
-		c := creepOf(s, i)
-		if c == nil || len(c.Laws) < 2 || i == len(s.Column.Layers) && s.Column.Base.Boundary != column.HalfSpace {
-			continue
-		}
-		var laws []string
-		for j := range c.Laws {
-			l := brief(&c.Laws[j])
-			if m := c.Laws[j].Mechanism; m != "" && !strings.Contains(l, m) {
-				l += " " + m
-			}
-			laws = append(laws, l)
-		}
-		name := "the half-space"
-		if i < len(s.Column.Layers) {
-			name = s.Column.Layers[i].Name
-		}
-		all := join(laws)
-		if where[all] == nil {
-			order = append(order, all)
-		}
-		where[all] = append(where[all], name)
-	}
-	var out []string
-	for _, all := range order {
-		out = append(out, fmt.Sprintf("Acting together in %s: %s.", join(where[all]), all))
-	}
-	return out
-}
-
 // brief is a law's name without its paper and its mechanism; the methods give it whole.
 func brief(l *rheology.Law) string {
 	words := strings.Fields(l.Name)
@@ -132,7 +97,10 @@ func brief(l *rheology.Law) string {
 			break
 		}
 	}
-	if n := len(words); n > 1 && (words[n-1] == l.Mechanism || words[n-1] == "dislocation" || words[n-1] == "diffusion") {
+	if short, ok := strings.CutSuffix(strings.Join(words, " "), " "+l.Mechanism); ok && l.Mechanism != "" {
+		return short
+	}
+	if n := len(words); n > 1 && (words[n-1] == "dislocation" || words[n-1] == "diffusion") {
 		words = words[:n-1]
 	}
 	return strings.Join(words, " ")

@@ -35,10 +35,11 @@ func cell(x float64) string {
 	return strconv.FormatFloat(x, 'g', 10, 64)
 }
 
-// ColumnTable is the state against depth.
+// ColumnTable is the state against depth; stress is the second invariant τ_II, the
+// differential stress 2 τ_II.
 func ColumnTable(s *state.State) Table {
 	t := Table{Name: "column", Header: []string{"depth_km", "layer", "temperature_degC", "pressure_GPa", "density_kg_m3",
-		"log10_viscosity_Pa_s", "stress_exponent", "stress_MPa", "viscosity_limit"}}
+		"log10_viscosity_Pa_s", "stress_exponent", "stress_MPa", "viscosity_limit", "differential_stress_MPa"}}
 	for i, l := range s.Layers {
 		for _, p := range l.Points {
 			temp, limit := math.NaN(), ""
@@ -54,7 +55,7 @@ func ColumnTable(s *state.State) Table {
 				limit = "lowest"
 			}
 			t.Rows = append(t.Rows, []string{cell(p.Depth / km), s.Column.Layers[i].Name, cell(temp), cell(p.P / 1e9), cell(p.Density),
-				cell(math.Log10(p.Viscosity)), cell(p.Exponent), cell(p.Stress / 1e6), limit})
+				cell(math.Log10(p.Viscosity)), cell(p.Exponent), cell(p.Stress / 1e6), limit, cell(2 * p.Stress / 1e6)})
 		}
 	}
 	return t
@@ -191,7 +192,7 @@ func VerdictTable(r *race.Result) Table {
 
 // Tables returns every table of a run.
 func Tables(r *race.Result) []Table {
-	t := []Table{ColumnTable(r.State), SpectrumTable(r.Spectrum.Rates), ControlsTable(r.State, r.Spectrum.Mode), ModeTable(r.State, r.Spectrum.Mode)}
+	t := []Table{ColumnTable(r.State), WeightTable(r.State), SpectrumTable(r.Spectrum.Rates), ControlsTable(r.State, r.Spectrum.Mode), ModeTable(r.State, r.Spectrum.Mode)}
 	if r.Drip != nil {
 		t = append(t, DripTable(r), AmplitudeTable(r), ExcisionTable(r), ReversalTable(r))
 	}

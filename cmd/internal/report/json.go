@@ -20,12 +20,15 @@ type ColumnJSON struct {
 	Density        []number        `json:"density_kg_m3"`
 	Viscosity      []number        `json:"viscosity_Pa_s"`
 	StressExponent []number        `json:"stress_exponent"`
-	Stress         []number        `json:"stress_Pa"`
+	Stress         []number        `json:"stress_Pa"`              // τ_II
+	Differential   []number        `json:"differential_stress_Pa"` // 2 τ_II
 	StrainRate     number          `json:"strain_rate_per_s"`
 	Interfaces     []interfaceJSON `json:"interfaces"`
 	SurfaceFlow    number          `json:"surface_heat_flow_W_m2"`
 	BaseFlow       number          `json:"base_heat_flow_W_m2"`
 	HeatResidual   number          `json:"heat_residual"`
+	Sinking        []sinkingJSON   `json:"sinking"`  // each rock against the rock below it
+	DepthOf        []depthJSON     `json:"depth_of"` // of pressures asked for
 	Warnings       []string        `json:"warnings"`
 }
 
@@ -57,8 +60,14 @@ func Column(p *race.Problem, s *state.State) ColumnJSON {
 			c.Viscosity = append(c.Viscosity, number(p.Viscosity))
 			c.StressExponent = append(c.StressExponent, number(p.Exponent))
 			c.Stress = append(c.Stress, number(p.Stress))
+			c.Differential = append(c.Differential, number(2*p.Stress))
 		}
 	}
+	var err error
+	if c.Sinking, err = sinking(s); err != nil {
+		c.Warnings = append(c.Warnings, "what the rocks weigh against one another is not known: "+err.Error())
+	}
+	c.DepthOf = []depthJSON{}
 	depth := 0.0
 	for i, j := range s.Jumps {
 		f := interfaceJSON{Depth: number(depth), Above: "air", Below: "base", Jump: number(j)}

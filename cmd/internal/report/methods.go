@@ -31,9 +31,14 @@ func Methods(r *race.Result, p ProvenanceJSON) string {
 		w("The column has no temperature: no density or viscosity depends on it.")
 	}
 	w("The density jump at a contact is taken at the contact's own pressure and temperature.\n")
-	minerals(w, pb)
+	densities(w, pb)
 	if laws := lawsOf(pb); len(laws) > 0 {
 		w("Creep: ε_II = A τ_II^n d^−m f^r exp[−(E + PV)/RT], laws of one rock acting at one stress, at a strain rate of %.3g 1/s (second invariant).", pb.StrainRate())
+		for _, l := range laws {
+			if b := l.Peierls; l.Plastic() {
+				w("%s: in place of E + PV stands (E + PV)(1 − (τ_II/τ_P)^p)^q with τ_P = %.4g GPa, p = %g, q = %g [kocks1975].", upper(l.Name), b.Stress/1e9, b.P, b.Q)
+			}
+		}
 		w("The upper viscosity limit acts as one more Newtonian mechanism at the same stress, the lower as a dashpot at the same strain rate.\n")
 		w("| law | n | m | r | E kJ/mol | V cm³/mol | test | numbers |")
 		w("|---|---|---|---|---|---|---|---|")
@@ -84,18 +89,26 @@ func Methods(r *race.Result, p ProvenanceJSON) string {
 	return b.String()
 }
 
-// minerals says which end-members make each density, by mass.
-func minerals(w func(string, ...any), p *race.Problem) {
+// densities says what makes each density: end-members by mass, reactions, melt.
+func densities(w func(string, ...any), p *race.Problem) {
 	for i := range p.Column.Layers {
 		l := &p.Column.Layers[i]
-		m, ok := l.Density.(*column.Modes)
-		if !ok {
-			continue
+		if r, ok := reaction(l); ok {
+			w("%s has reacted to X = %s of its mass; protolith and product conserve mass, 1/ρ = (1 − X)/ρ_A + X/ρ_B. X stays as it is.\n", upper(l.Name), share(r.Extent))
 		}
-		var words []string
-		for _, part := range m.Parts() {
-			words = append(words, fmt.Sprintf("%.1f %% %s", 100*part.Mass, part.Mineral.Name))
+		if l.Melt != nil {
+			w("Melt in %s: φ of the volume, ρ = (1 − φ) ρ_s + φ ρ_m where it has a density, creep rates times exp(%g φ) [melt].\n", l.Name, l.Melt.Weakening)
 		}
-		w("Density of %s from its modes, by mass %s: volumes of the end-members add up at each pressure and temperature [holland1998].\n", l.Name, join(words))
+		for _, d := range column.Parts(l.Density) {
+			m, ok := d.(*column.Modes)
+			if !ok {
+				continue
+			}
+			var words []string
+			for _, part := range m.Parts() {
+				words = append(words, fmt.Sprintf("%.1f %% %s", 100*part.Mass, part.Mineral.Name))
+			}
+			w("Density of %s from its modes, by mass %s: volumes of the end-members add up at each pressure and temperature [holland1998].\n", l.Name, join(words))
+		}
 	}
 }

@@ -26,6 +26,9 @@ func Page(r *race.Result) string {
 	}
 	answer(p, r)
 	columnText(p, r.State)
+	if n := rootNeed(r.State); n != "" {
+		p.say("%s", n)
+	}
 	growthText(p, r.State, r.Spectrum, r.Spectrum.Rates)
 	if r.Drip != nil {
 		dripText(p, r)

@@ -214,7 +214,7 @@ func TestLaws(t *testing.T) {
 			t.Errorf("%s: want unit %s in %s", name, want, b)
 		}
 		for _, k := range regexp.MustCompile(`"([^"]+)":`).FindAllStringSubmatch(string(b), -1) {
-			if !regexp.MustCompile(`^[a-z][a-z0-9_]*(_J_mol|_m3_mol)?$`).MatchString(k[1]) {
+			if !regexp.MustCompile(`^[a-z][a-z0-9_]*(_J_mol|_m3_mol|_K|_Pa)?$`).MatchString(k[1]) {
 				t.Errorf("%s: key %s", name, k[1])
 			}
 		}

@@ -21,8 +21,8 @@ func titled(p *race.Problem) *page {
 	return pg
 }
 
-// ColumnPage is the text of `keelfall column`.
-func ColumnPage(p *race.Problem, s *state.State) string {
+// ColumnPage is the text of `keelfall column`; depths are those asked for.
+func ColumnPage(p *race.Problem, s *state.State, depths []DepthOf) string {
 	pg := titled(p)
 	columnText(pg, s)
 	if drip.RateDependent(s) {
@@ -31,6 +31,8 @@ func ColumnPage(p *race.Problem, s *state.State) string {
 	if s.HasTemperature && len(p.Column.Geotherm) == 0 {
 		pg.say("Largest relative residual of the heat balance %.0e.", s.HeatResidual)
 	}
+	weightText(pg, s)
+	depthsText(pg, s, depths)
 	return pg.b.String()
 }
 

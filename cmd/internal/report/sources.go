@@ -73,14 +73,16 @@ func mineralSources(p *race.Problem) []SourceJSON {
 	var names []string
 	seen := map[string]bool{}
 	note := func(d column.Density) {
-		m, ok := d.(*column.Modes)
-		if !ok {
-			return
-		}
-		for _, part := range m.Parts() {
-			if n := part.Mineral.Name; !seen[n] {
-				seen[n] = true
-				names = append(names, n)
+		for _, d := range column.Parts(d) {
+			m, ok := d.(*column.Modes)
+			if !ok {
+				continue
+			}
+			for _, part := range m.Parts() {
+				if n := part.Mineral.Name; !seen[n] {
+					seen[n] = true
+					names = append(names, n)
+				}
 			}
 		}
 	}
@@ -106,8 +108,16 @@ func flowSources(p *race.Problem) []SourceJSON {
 		}
 	}
 	rock := func(r *column.Rock) {
+		if r.Melt != nil {
+			add("melt", "common practice", "melt in a rock: fraction linear between solidus and liquidus, densities by volume, creep rates times exp(α φ)")
+		}
 		if r.Viscosity.Creep == nil {
 			return
+		}
+		for _, l := range r.Viscosity.Creep.AllLaws() {
+			if l.Plastic() {
+				add("kocks1975", "from memory", "Kocks, Argon & Ashby 1975, Prog. Mater. Sci. 19: form of low-temperature plasticity; its cut-off at low stress: a choice")
+			}
 		}
 		if r.Friction != nil {
 			add("friction", "derived", "Mohr–Coulomb yield under the lithostatic pressure, from the Mohr circle; pore-fluid factor of Hubbert & Rubey 1959; smooth cap of exponent 8: a choice")
@@ -155,7 +165,7 @@ func lawsOf(p *race.Problem) []rheology.Law {
 // lawStatus says the weakest status among a law's numbers.
 func lawStatus(l *rheology.Law) string {
 	st := l.Status
-	all := []string{st.A, st.N, st.M, st.R, st.E, st.V}
+	all := []string{st.A, st.N, st.M, st.R, st.E, st.V, st.Peierls}
 	for _, s := range all {
 		if s == "memory" {
 			if l.Confidence != "" {
