@@ -140,7 +140,7 @@ func frictionText(s *state.State) []string {
 	if has && len(found) == 0 {
 		return []string{"Friction decides nowhere: creep is the weaker everywhere."}
 	}
-	var out []string
+	var places said // of one friction
 	for _, r := range found {
 		where := fmt.Sprintf("from %s to %s km", short(r.from/km), short(r.to/km))
 		switch {
@@ -149,8 +149,12 @@ func frictionText(s *state.State) []string {
 		case r.to-r.from < 1:
 			where = fmt.Sprintf("at %s km", short(r.from/km))
 		}
-		out = append(out, fmt.Sprintf("Friction decides %s (cohesion %s MPa, angle %s deg, pore fluid %s).", where,
-			short(r.f.Cohesion/1e6), short(r.f.Angle*180/math.Pi), short(r.f.PoreFluid)))
+		places.add(fmt.Sprintf("cohesion %s MPa, angle %s deg, pore fluid %s",
+			short(r.f.Cohesion/1e6), short(r.f.Angle*180/math.Pi), short(r.f.PoreFluid)), where)
+	}
+	var out []string
+	for _, f := range places.order {
+		out = append(out, fmt.Sprintf("Friction decides %s (%s).", join(places.where[f]), f))
 	}
 	return out
 }
