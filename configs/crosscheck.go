@@ -1,8 +1,11 @@
 package configs
 
-import "fmt"
+import (
+	"fmt"
+	"slices"
+)
 
-// crossCheck checks what layers and zones say about one another. It works on a tree
+// crossCheck checks what layers, events, markers and zones say about one another. It works on a tree
 // that may have other mistakes, and then leaves out what it cannot know.
 func (e *Experiment) crossCheck(w *walker) {
 	index := map[string]int{}
@@ -27,6 +30,10 @@ func (e *Experiment) crossCheck(w *walker) {
 	}
 	if complete {
 		e.undulation(w)
+	}
+	if complete {
+		e.timeline(w, slices.Clone(names))
+		e.markersCheck(w, names)
 	}
 	if e.data.Excision == nil || !complete {
 		return

@@ -33,6 +33,10 @@ func fill(root *node) []race.Default {
 			f.rock(l, entryKey(i, l), warm)
 		}
 	}
+	for _, r := range newRocks(root) {
+		f.rock(r.rock, r.path, warm)
+		layers = append(layers, r.rock)
+	}
 	f.scalar("0 1/s", false, "strain", "extension-rate")
 	f.scalar("stretch", false, "strain", "wavevector")
 	still := root.get("strain").get("extension-rate").isZero()
@@ -58,6 +62,28 @@ func rocks(root *node) []*node {
 		return nil
 	}
 	return slices.DeleteFunc(slices.Clone(list.items), func(n *node) bool { return n.kind != mapNode })
+}
+
+// newRock is the map of a rock that an event brings, and its path.
+type newRock struct {
+	rock *node
+	path string
+}
+
+func newRocks(root *node) []newRock {
+	list := root.get("events")
+	if list == nil || list.kind != listNode {
+		return nil
+	}
+	var out []newRock
+	for i, e := range list.items {
+		for _, verb := range []string{"intrude", "bury"} {
+			if r := e.get(verb); r != nil && r.kind == mapNode {
+				out = append(out, newRock{r, fmt.Sprintf("events.%d.%s", i, verb)})
+			}
+		}
+	}
+	return out
 }
 
 // flows says whether a rock's viscosity depends on the strain rate.

@@ -174,6 +174,11 @@ func (e *Experiment) densitySources() (minerals, tables []any) {
 		}
 	}
 	add(e.data.Base.rock.Density)
+	for i := range e.data.Events {
+		if r := e.data.Events[i].rock(); r != nil {
+			add(r.Density)
+		}
+	}
 	return minerals, tables
 }
 

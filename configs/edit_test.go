@@ -65,7 +65,8 @@ func TestSetMistakes(t *testing.T) {
 		{"drip.removes=.nan", ".nan is not a number that can be computed with; needs a finite one"},
 		{"drip.removes=null", "has no value (null); give one or leave the key out"},
 		{"drip={removes: 0.3, removes: 0.4}", "removes stands here and in line 1; a key may stand once"},
-		{"events=[{erode: {from: 0 Myr, to: 1 Myr, rate: 1 mm/yr}}]", "events: not in this version of keelfall"},
+		{"budget={evolved-crust: 22 km, residue-share: 0.3}", "budget: not in this version of keelfall"},
+		{"events=[{erode: {from: -1 Myr, to: 1 Myr, rate: 1 mm/yr}}]", "events[0].erode.from: -1 Myr lies before the start, 0 Myr; put what happened earlier into the column"},
 	} {
 		_, err := Read("s.yaml", strings.NewReader(small), c.set)
 		want := "--set " + shorten(c.set) + ": " + c.want

@@ -11,6 +11,7 @@ import (
 	"slices"
 
 	"keelfall/rheology"
+	"keelfall/solver/heat"
 	"keelfall/solver/race"
 )
 
@@ -30,8 +31,9 @@ type Experiment struct {
 	walk   *walker
 	data   experiment
 	taken  []race.Default
-	unread Mistakes // of measured sections
-	stray  Mistakes // keys that stood in the entry of a section and belong to its rows
+	unread Mistakes  // of measured sections
+	fit    *heat.Fit // of the geotherm to samples; nil where none is asked
+	stray  Mistakes  // keys that stood in the entry of a section and belong to its rows
 }
 
 // Reader reads experiments. The zero value knows the built-in creep laws; Catalogues
@@ -129,7 +131,7 @@ func (e *Experiment) resolve() (p race.Problem, wrong Mistakes) {
 	e.filled = e.tree.clone()
 	e.taken = fill(e.filled)
 	weigh(e.filled)
-	e.data = experiment{}
+	e.data, e.fit = experiment{}, nil
 	e.walk = decode(e.Name, e.filled, schema, &e.data)
 	e.Remarks = e.walk.blocks
 	e.walk.mistakes = append(e.walk.mistakes, e.unread...)
@@ -184,6 +186,11 @@ func (e *Experiment) lawNames(w *walker) {
 	for i := range e.data.Layers {
 		if l := e.data.Layers[i].Layer; l != nil && l.Creep != nil {
 			l.Creep.laws(w, l.path+".creep", e.laws)
+		}
+	}
+	for i := range e.data.Events {
+		if r := e.data.Events[i].rock(); r != nil && r.Creep != nil {
+			r.Creep.laws(w, r.path+".creep", e.laws)
 		}
 	}
 }

@@ -80,7 +80,8 @@ type point struct {
 
 type fit struct {
 	block
-	Fit text `key:"fit,required" as:"file" doc:"CSV file of depths, pressures and temperatures to fit a steady geotherm to"`
+	Fit            text `key:"fit,required" as:"file" doc:"CSV file of samples that a steady geotherm is fitted to, with the columns temperature_degC, pressure_GPa or depth_km, temperature_error_K, pressure_error_GPa or depth_error_km, name, source, notes; an error is one standard deviation. Fitted is base.heat-flow where it is given, else base.temperature; its value is where the fit begins"`
+	HeatProduction flag `key:"heat-production" doc:"fit one factor on the heat production of all layers too"`
 }
 
 type surface struct {

@@ -12,11 +12,11 @@ import (
 	"keelfall/column"
 )
 
-// points returns the given geotherm, or nil where it is computed.
+// points returns the given geotherm, or nil where it is computed or fitted.
 func (e *Experiment) points(w *walker, depth float64) []column.Point {
 	g := e.data.Geotherm
 	b := e.data.Base
-	if g == nil {
+	if g == nil || g.Fit != nil {
 		return nil
 	}
 	at := e.filled.get("geotherm")

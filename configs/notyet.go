@@ -20,11 +20,7 @@ var notYet = map[string]string{
 	"excision.zones.*.friction":        "",
 	"excision.zones.*.strength-factor": "",
 
-	"geotherm.fit":  "",
-	"events":        "",
 	"reference":     "",
-	"markers":       "",
-	"clocks":        "",
 	"race.reversal": "",
 	"budget":        "",
 	"observations":  "",

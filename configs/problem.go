@@ -46,6 +46,10 @@ func (e *Experiment) build(w *walker) race.Problem {
 	if d.Spectrum != nil {
 		p.SpectrumFrom, p.SpectrumTo = d.Spectrum.From.SI, d.Spectrum.To.SI
 	}
+	e.fitGeotherm(w, &p)
+	p.Events = e.events(w)
+	p.Markers, p.Clocks = e.markers()
+	p.Measured = e.measured()
 	if d.Excision != nil {
 		for i := range d.Excision.Zones {
 			p.Zones = append(p.Zones, d.Excision.Zones[i].problem())

@@ -52,6 +52,8 @@ func (m *melt) check(w *walker) {
 	case !m.Fraction.given():
 		if s, l := m.Solidus.curve(), m.Liquidus.curve(); s.Surface >= l.Surface {
 			w.addf(m.at.get("solidus"), m.path+".solidus", "%.6g degC at no pressure is not below the liquidus, %.6g degC", s.Surface-celsiusZero, l.Surface-celsiusZero)
+		} else if l.Surface-s.Surface < leastMelting {
+			w.addf(m.at.get("solidus"), m.path+".solidus", "is within %g K of the liquidus at no pressure; needs to lie further below it", leastMelting)
 		}
 	}
 }
@@ -62,6 +64,10 @@ func (c *meltCurve) curve() column.Curve {
 	}
 	return column.Curve{Surface: c.Value.SI}
 }
+
+// leastMelting is the least melting interval in K: below it densities jump within what
+// temperatures are good to.
+const leastMelting = 0.1
 
 // column is the melt as column takes it.
 func (m *melt) column() *column.Melt {

@@ -12,7 +12,7 @@ import (
 // times in s since the start), the creep laws and minerals it uses with their
 // constants and how those are known, the defaults taken, the edits, name and SHA-256 of
 // every table of densities, measured section and extra catalogue, and how the rows of the
-// sections scatter. It is ready for JSON and holds no NaN or infinity.
+// sections scatter, and the fit of the geotherm to samples (null where there is none). It is ready for JSON and holds no NaN or infinity.
 func (e *Experiment) Resolved() map[string]any {
 	_, tree := e.resolved(e.filled, schema)
 	out, _ := tree.(map[string]any)
@@ -25,6 +25,7 @@ func (e *Experiment) Resolved() map[string]any {
 	out["defaults"] = defaults
 	out["creep_laws"] = e.creepLaws()
 	out["minerals"], out["density_tables"] = e.densitySources()
+	out["geotherm_fit"] = e.fitResult()
 	out["sections"], out["section_scatter"] = e.sectionSources()
 	catalogues := []any{}
 	for _, c := range e.reader.Catalogues {
@@ -101,5 +102,8 @@ func (e *Experiment) creepLaws() []any {
 		add(c.Layers[i].Viscosity.Creep)
 	}
 	add(c.Base.Viscosity.Creep)
+	for _, h := range e.events(&w) {
+		add(h.Rock.Viscosity.Creep)
+	}
 	return out
 }

@@ -113,6 +113,11 @@ func (l *sectionLayer) fill() {
 	for i := range l.rows {
 		m.lines = append(m.lines, l.rows[i].line)
 	}
+	for _, row := range l.rows { // given by pressures, a row has one
+		if _, ok := row.values["pressure"]; !ok && l.r.top == "top_pressure" {
+			row.values["pressure"] = (row.values["top_pressure"] + row.values["bottom_pressure"]) / 2
+		}
+	}
 	m.warmth, m.pressure = l.conditions("temperature"), l.conditions("pressure")
 }
 

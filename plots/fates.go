@@ -166,7 +166,7 @@ func (f fatesFigure) draw(s *sheet) {
 	}
 	if !math.IsNaN(f.age) {
 		top -= xAxisHeight(1)
-		parts[0].top = func(p *panel) (string, []tick) { return "Age (Ma)", f.ages(p) }
+		parts[0].top = func(p *panel) (string, []tick) { return "Age (Ma)", ageTicks(p, f.age) }
 	}
 	for i := range parts {
 		parts[i].front = func(p *panel) {
@@ -179,16 +179,4 @@ func (f fatesFigure) draw(s *sheet) {
 		}
 	}
 	head(s.stack(parts, f.x, s.Min.Y+xAxisHeight(1)+2, top, "Time (Myr)", func(p *panel) []tick { return linearTicks(p.x, p.xFits) }))
-}
-
-// ages are round ages at their times.
-func (f fatesFigure) ages(p *panel) []tick {
-	place := func(ts []tick) []tick {
-		out := make([]tick, len(ts))
-		for i, t := range ts {
-			out[len(ts)-1-i] = tick{f.age - t.at, t.label}
-		}
-		return out
-	}
-	return place(linearTicks(linear(f.age-f.x.hi, f.age-f.x.lo), func(ts []tick) bool { return p.xFits(place(ts)) }))
 }

@@ -12,10 +12,11 @@ import (
 	"gonum.org/v1/plot/vg"
 )
 
-// Cover says whether a law was calibrated at a temperature.
+// Cover says whether a law was calibrated at a temperature, pressure and stress.
 type Cover int
 
-// A law's experiments are not known here, reached the temperature, or did not.
+// The temperatures of a law's experiments are not known, its experiments reached the
+// conditions as far as they are known, or did not.
 const (
 	CoverUnknown Cover = iota
 	CoverInside
@@ -40,7 +41,8 @@ type LawCurve struct {
 	Cover []Cover   // one a temperature
 	Error []float64 // of Log, one published standard error; nil where none is known
 
-	OffPressure bool // the experiments were at other pressures
+	OffPressure bool   // the experiments were at other pressures
+	ErrorNote   string // how Error was found, or why there is none: a sentence or more; may be empty
 }
 
 // Laws draws the viscosity of up to MostLaws creep laws against temperature, each named
@@ -120,10 +122,10 @@ func (f lawFigure) caption() string {
 		return slices.ContainsFunc(f.curves, func(c LawCurve) bool { return slices.Contains(c.Cover, k) })
 	}
 	if has(CoverOutside) {
-		s += " Dashed: outside the temperatures of the experiments."
+		s += " Dashed: outside the temperatures, pressures or stresses of its experiments, as far as those are known."
 	}
 	if has(CoverUnknown) {
-		s += " Thin: those temperatures are not in the catalogue."
+		s += " Thin: the temperatures of its experiments are not known."
 	}
 	var off []string
 	for _, c := range f.curves {
@@ -135,7 +137,14 @@ func (f lawFigure) caption() string {
 		s += " Measured at other pressures: " + strings.Join(off, ", ") + "."
 	}
 	if f.tints() {
-		s += " Tints: one published standard error; of activation energy, volume and stress exponent about the middle of the experiments, where that is known."
+		s += " Tints: one published standard error."
+	}
+	if len(f.curves) <= tinted {
+		for _, c := range f.curves {
+			if c.ErrorNote != "" {
+				s += " " + c.ErrorNote
+			}
+		}
 	}
 	if lo, hi := f.range10(); hi == highestShown && hi > lo {
 		s += fmt.Sprintf(" Above 10^%d Pa s nothing is drawn.", highestShown)

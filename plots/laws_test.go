@@ -64,6 +64,33 @@ func TestLaws(t *testing.T) {
 	}
 }
 
+// TestLawsCaption asserts that the caption says what dashes and thin lines mean and how the
+// errors were found, and that a name keeps its numbers with their units.
+func TestLawsCaption(t *testing.T) {
+	c := lawCurves(3)
+	c[1].ErrorNote, c[2].ErrorNote = "Errors of the second about 1 MPa.", "Those of the third are not drawn."
+	f, err := Laws(c, "1e-15 1/s", 80*vg.Millimeter)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, want := range []string{"Dashed: outside the temperatures, pressures or stresses of its experiments", "Thin: the temperatures of its experiments are not known.",
+		"Tints: one published standard error. Errors of the second about 1 MPa. Those of the third are not drawn."} {
+		if !strings.Contains(f.Caption, want) {
+			t.Errorf("caption %q lacks %q", f.Caption, want)
+		}
+	}
+	for _, p := range drawn(f).texts {
+		if strings.Contains(p.text, "\ndegC") {
+			t.Errorf("%q breaks before its unit", p.text)
+		}
+	}
+	many := lawCurves(4)
+	many[0].ErrorNote = "Errors about 1 MPa."
+	if f, err = Laws(many, "1e-15 1/s", 0); err != nil || strings.Contains(f.Caption, "Errors about") {
+		t.Errorf("errors that are not drawn: %q, %v", f.Caption, err)
+	}
+}
+
 // TestLawsCut asserts that what is stiffer than any rock flows is left out, and said.
 func TestLawsCut(t *testing.T) {
 	c := lawCurves(2)

@@ -47,6 +47,7 @@ var (
 	heavyTint = tint(vermillion, 0.55)
 
 	frictionTint = tint(blue, 0.6)
+	eventTint    = tint(sky, 0.4)
 )
 
 // Dashes, told apart in grey.

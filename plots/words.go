@@ -1,6 +1,7 @@
 package plots
 
 import (
+	"slices"
 	"strings"
 	"unicode"
 
@@ -72,12 +73,26 @@ func superscript(r rune) rune {
 	return 0
 }
 
+// words splits txt at spaces, but not between a number and its unit.
+func words(txt string) []string {
+	var out []string
+	for _, w := range strings.Fields(txt) {
+		n := len(out)
+		if n > 0 && slices.Contains([]string{"degC", "°C", "K", "MPa", "GPa", "km", "%"}, strings.TrimRight(w, ".,;:)")) && strings.ContainsAny(out[n-1][len(out[n-1])-1:], "0123456789") {
+			out[n-1] += " " + w
+			continue
+		}
+		out = append(out, w)
+	}
+	return out
+}
+
 // wrap breaks txt into at most most lines no wider than width, ending in … where it
 // does not fit.
 func wrap(txt string, size, width vg.Length, most int) string {
 	var lines []string
 	line := ""
-	for _, word := range strings.Fields(txt) {
+	for _, word := range words(txt) {
 		longer := strings.TrimSpace(line + " " + word)
 		if w, _, _ := extent(longer, size); w > width && line != "" {
 			lines, longer = append(lines, line), word

@@ -161,3 +161,16 @@ func TestFatesLabelsKeepOffLines(t *testing.T) {
 		}
 	}
 }
+
+// TestWordsKeepUnits asserts that a number stays with its unit however narrow a column is.
+func TestWordsKeepUnits(t *testing.T) {
+	const name = "wet quartz 700 to 1600 MPa below 1250 degC Hirth 2003"
+	if got, want := words(name), []string{"wet", "quartz", "700", "to", "1600 MPa", "below", "1250 degC", "Hirth", "2003"}; !slices.Equal(got, want) {
+		t.Errorf("%q, want %q", got, want)
+	}
+	for w := vg.Length(40); w < 200; w += 3 {
+		if got := wrap(name, typeSize, w, 12); strings.Contains(got, "\nMPa") || strings.Contains(got, "\ndegC") {
+			t.Errorf("%v: %q", w, got)
+		}
+	}
+}

@@ -66,9 +66,9 @@ var fields = []field{
 	{"error_water_exponent", false, number(func(l *Law) *float64 { return &l.Errors.R }, 1, 1)},
 	{"error_activation_energy_kJ_mol", false, number(func(l *Law) *float64 { return &l.Errors.E }, 1e3, 1)},
 	{"error_activation_volume_cm3_mol", false, number(func(l *Law) *float64 { return &l.Errors.V }, 1, 1e6)},
-	{"tested_temperature_degC", false, interval(func(l *Law) *Interval { return &l.Tested.T }, 1, 273.15)},
-	{"tested_pressure_MPa", false, interval(func(l *Law) *Interval { return &l.Tested.P }, 1e6, 0)},
-	{"tested_stress_MPa", false, interval(func(l *Law) *Interval { return &l.Tested.Stress }, 1e6, 0)},
+	{"tested_temperature_degC", false, interval(func(l *Law) *Interval { return &l.Tested.T }, 1, 273.15, false)},
+	{"tested_pressure_MPa", false, interval(func(l *Law) *Interval { return &l.Tested.P }, 1e6, 0, true)},
+	{"tested_stress_MPa", false, interval(func(l *Law) *Interval { return &l.Tested.Stress }, 1e6, 0, false)},
 	{"status_tested", false, text(func(l *Law) *string { return &l.Tested.Status })},
 	{"status_test", false, text(func(l *Law) *string { return &l.Status.Test })},
 	{"status_prefactor", false, text(func(l *Law) *string { return &l.Status.A })},
@@ -78,6 +78,7 @@ var fields = []field{
 	{"status_activation_energy", false, text(func(l *Law) *string { return &l.Status.E })},
 	{"status_activation_volume", false, text(func(l *Law) *string { return &l.Status.V })},
 	{"status_peierls", false, text(func(l *Law) *string { return &l.Status.Peierls })},
+	{"status_errors", false, func(l *Law, s string) error { l.Status.Errors = s; _, err := errorStatus(s); return err }},
 	{"confidence", false, text(func(l *Law) *string { return &l.Confidence })},
 	{"source", false, text(func(l *Law) *string { return &l.Source })},
 	{"url", false, text(func(l *Law) *string { return &l.URL })},
@@ -131,7 +132,9 @@ func parseMeasure(s string) (WaterMeasure, error) {
 // A law of low-temperature plasticity has peierls_stress_MPa, peierls_p and peierls_q
 // (Peierls), its stresses as the test measures them. An error of the prefactor is given
 // in its own unit or of its log10, not both. A tested_… range is "1027 to 1427", "300",
-// ">120" or "<560". Columns that are not there are empty.
+// ">120" or "<560"; a pressure of 0 is that of the room. status_errors is a word for all
+// errors or a list, "A memory, n seen"; without it an error has its parameter's status.
+// Columns that are not there are empty.
 //
 // An error carries the line: "laws, line 7: stress_exponent: …". An activation volume
 // left empty or marked "not determined" is 0 with VolumeDetermined false.

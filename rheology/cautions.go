@@ -61,12 +61,27 @@ func (l *Law) beyond(used []Use, others bool) (out []string) {
 	if P.High > volumeMatters {
 		switch {
 		case !l.VolumeDetermined:
-			out = append(out, fmt.Sprintf("used above 1 GPa, where its activation volume (not determined, %g cm³/mol assumed) counts", l.V*1e6))
+			out = append(out, fmt.Sprintf("used above 1 GPa, where its activation volume (not determined, %g cm3/mol assumed) counts", l.V*1e6))
 		case l.Status.V == "choice":
-			out = append(out, fmt.Sprintf("used above 1 GPa with an activation volume that is a choice, %g cm³/mol (%s)", l.V*1e6, l.Uncertainty))
+			out = append(out, fmt.Sprintf("used above 1 GPa with an activation volume that is a choice, %g cm3/mol%s", l.V*1e6, l.volumeError()))
 		}
 	}
 	return append(out, l.untested(T, P, stress, others)...)
+}
+
+// volumeError is what the source says of V's range or error, " (6-27)" or " (+-11)"; empty
+// where it says nothing.
+func (l *Law) volumeError() string {
+	words := strings.Fields(l.Uncertainty)
+	for i, w := range words {
+		switch rest, ok := strings.CutPrefix(w, "V"); {
+		case ok && strings.HasPrefix(rest, "+-"):
+			return " (" + rest + ")"
+		case w == "V" && i+1 < len(words):
+			return " (" + words[i+1] + ")"
+		}
+	}
+	return ""
 }
 
 // untested names, in one sentence, the ranges that leave those of the experiments.

@@ -53,7 +53,7 @@ func TestCautions(t *testing.T) {
 		{"dry Columbia diabase Mackwell 1998", 0.5e9, ""},
 		{"dry Columbia diabase Mackwell 1998", 1.5e9, "used above 1 GPa"},
 		{"dry olivine dislocation Hirth 2003", 0.5e9, ""},
-		{"dry olivine dislocation Hirth 2003", 1.5e9, "a choice, 14 cm³/mol"},
+		{"dry olivine dislocation Hirth 2003", 1.5e9, "a choice, 14 cm3/mol (6-27)"},
 		{"dry eclogite Zhang 2007", 3e9, "used at 727 degC; its experiments were at 1027 to 1427 degC"},
 		{"wet amphibolite Hacker 1990", 0.5e9, "low confidence"},
 		{"wet quartzite Paterson 1990", 0.5e9, "recalled from memory, to be checked"},
@@ -63,6 +63,16 @@ func TestCautions(t *testing.T) {
 		got := l.Caution([]rheology.Use{{T: 1000, P: c.P}})
 		if c.want == "" && got != "" || !strings.Contains(got, c.want) || got != "" && !strings.HasPrefix(got, c.law) {
 			t.Errorf("%s at %g Pa: %q, want %q", c.law, c.P, got, c.want)
+		}
+	}
+	// of all the errors V's alone, and no brackets without one
+	for law, want := range map[string]string{
+		"dry olivine dislocation Hirth 2003":                            "a choice, 14 cm3/mol (6-27)",
+		"dry olivine grain boundary sliding below 1250 degC Hirth 2003": "a choice, 14 cm3/mol",
+	} {
+		l := find(t, law)
+		if got := l.Caution([]rheology.Use{{T: 1000, P: 1.5e9}}); !strings.HasSuffix(got, want) {
+			t.Errorf("%s", got)
 		}
 	}
 	// One line a law, with the range it was used over; stresses are differential, √3 τ_II.

@@ -3,6 +3,8 @@ package rheology
 import (
 	"fmt"
 	"math"
+	"slices"
+	"strings"
 )
 
 // Errors are the published errors of a law, one standard deviation as published, in SI;
@@ -14,6 +16,45 @@ import (
 type Errors struct{ LnA, N, R, E, V float64 }
 
 var errorNames = [...]string{"ln prefactor", "stress exponent", "water exponent", "activation energy", "activation volume"}
+
+// errorLetters name the parameters in the order of Errors.
+var errorLetters = [...]string{"A", "n", "r", "E", "V"}
+
+// ErrorStatus returns where the errors of ln A, n, r, E and V come from, "" where there is
+// no error or nothing is said: Status.Errors or, without it, the parameter's own status.
+func (l *Law) ErrorStatus() [5]string {
+	st := [5]string{l.Status.A, l.Status.N, l.Status.R, l.Status.E, l.Status.V}
+	given, err := errorStatus(l.Status.Errors)
+	for i, e := range l.Errors.list() {
+		switch {
+		case e == 0:
+			st[i] = ""
+		case err == nil && given[i] != "":
+			st[i] = given[i]
+		}
+	}
+	return st
+}
+
+// errorStatus reads a status of errors: "memory", or "A memory, n seen" with the rest empty.
+func errorStatus(s string) (out [5]string, err error) {
+	known := []string{"seen", "memory", "choice", "given"}
+	if slices.Contains(known, s) {
+		for i := range out {
+			out[i] = s
+		}
+		return out, nil
+	}
+	for _, part := range strings.FieldsFunc(s, func(r rune) bool { return r == ',' || r == ';' }) {
+		letter, word, _ := strings.Cut(strings.TrimSpace(part), " ")
+		i := slices.Index(errorLetters[:], letter)
+		if i < 0 || !slices.Contains(known, word) {
+			return out, fmt.Errorf("%q is no status of errors; needs seen, memory, choice or given, or a list like \"A memory, n seen\"", s)
+		}
+		out[i] = word
+	}
+	return out, nil
+}
 
 func (e *Errors) list() [5]float64 { return [5]float64{e.LnA, e.N, e.R, e.E, e.V} }
 

@@ -97,6 +97,87 @@ func TestVaried(t *testing.T) {
 	}
 }
 
+// TestErrorStatus: the column says where errors come from; without it their parameters do.
+func TestErrorStatus(t *testing.T) {
+	for law, want := range map[string][5]string{
+		"quartz eclogite Jin 2001":           {"", "memory", "", "memory", ""}, // its numbers are seen
+		"dry eclogite Zhang 2007":            {"seen", "seen", "", "seen", ""},
+		"dry Columbia diabase Mackwell 1998": {"memory", "seen", "", "seen", ""},
+		"wet plagioclase Rybacki 2004":       {},
+	} {
+		if l := find(t, law); l.ErrorStatus() != want {
+			t.Errorf("%s: %q, want %q", law, l.ErrorStatus(), want)
+		}
+	}
+	h := strings.TrimSpace(head)
+	for status, want := range map[string][5]string{"": {}, "seen": {"seen", "seen"}, "A memory, n seen": {"memory", "seen"}, "n choice": {"", "choice"}} {
+		laws, err := rheology.ReadLaws(strings.NewReader("error_log10_prefactor,error_stress_exponent,status_errors," + h + "\n1,0.2,\"" + status + "\",a,invariant,1,3,1,0,none\n"))
+		if err != nil || laws[0].ErrorStatus() != want {
+			t.Errorf("%q: %+v, %v", status, laws, err)
+		}
+	}
+	for _, bad := range []string{"read", "Q seen", "A", "A seen n seen"} {
+		_, err := rheology.ReadLaws(strings.NewReader("status_errors," + h + "\n" + bad + ",a,invariant,1,3,1,0,none\n"))
+		if err == nil || !strings.Contains(err.Error(), "line 2: status_errors: \""+bad+"\" is no status of errors") {
+			t.Errorf("%s: %v", bad, err)
+		}
+	}
+}
+
+// TestRoomPressure: experiments at the pressure of the room, and from it up, are ranges;
+// a stress or a temperature of nothing is none.
+func TestRoomPressure(t *testing.T) {
+	h := strings.TrimSpace(head)
+	read := func(column, value string) (rheology.Law, error) {
+		laws, err := rheology.ReadLaws(strings.NewReader(column + "," + h + "\n" + value + ",a,invariant,1,3,1,0,none\n"))
+		if err != nil {
+			return rheology.Law{}, err
+		}
+		return laws[0], nil
+	}
+	for value, want := range map[string]rheology.Interval{"0": {Low: 101325, High: 101325}, "0 to 560": {High: 560e6}} {
+		l, err := read("tested_pressure_MPa", value)
+		if err != nil || l.Tested.P != want {
+			t.Errorf("%s: %+v, %v", value, l.Tested.P, err)
+		}
+		for P, in := range map[float64]bool{0: true, 0.4e9: true, 0.7e9: false} {
+			if l.Tested.Pressures(P) != in {
+				t.Errorf("%s: %g Pa is inside: %v", value, P, !in)
+			}
+		}
+	}
+	for column, value := range map[string]string{"tested_stress_MPa": "0", "tested_temperature_degC": "-274", "tested_pressure_MPa": "-1"} {
+		if l, err := read(column, value); err == nil {
+			t.Errorf("%s %s: %+v", column, value, l.Tested)
+		}
+	}
+	if l, err := read("tested_pressure_MPa", "0 to 0"); err == nil {
+		t.Errorf("0 to 0: %+v", l.Tested)
+	}
+}
+
+// TestTestedCovers: inside is within every range that is known.
+func TestTestedCovers(t *testing.T) {
+	zhang, jin, rybacki := find(t, "dry eclogite Zhang 2007"), find(t, "quartz eclogite Jin 2001"), find(t, "dry anorthite dislocation Rybacki 2000")
+	for _, c := range []struct {
+		law           rheology.Law
+		T, P, stress  float64
+		inside, known bool
+	}{
+		{zhang, 1400, 3e9, 1e6, true, true},
+		{zhang, 1200, 3e9, 1e6, false, true},
+		{zhang, 1400, 1e9, 1e6, false, true},
+		{jin, 500, 3.4e9, 1e6, true, false}, // one pressure, 3 GPa, and half a GPa around it
+		{jin, 500, 3.6e9, 1e6, false, false},
+		{rybacki, 1200, 0.3e9, 121e6, true, true},
+		{rybacki, 1200, 0.3e9, 119e6, false, true},
+	} {
+		if inside, known := c.law.Tested.Covers(c.T, c.P, c.stress); inside != c.inside || known != c.known {
+			t.Errorf("%s at %g K, %g Pa, %g Pa: %v %v", c.law.Name, c.T, c.P, c.stress, inside, known)
+		}
+	}
+}
+
 // TestOptionalColumns: a catalogue may have the new columns in any order, or not.
 func TestOptionalColumns(t *testing.T) {
 	h := strings.TrimSpace(head)

@@ -61,8 +61,10 @@ func (t Test) Factor(n float64) float64 {
 
 // Status says where each parameter of a law comes from: seen (read on a public
 // page), memory (recalled, not confirmed), choice (a usual choice, not one measured
-// value), absent in law (0), not determined (0 assumed), or given (typed by the user).
-type Status struct{ A, N, M, R, E, V, Peierls, Test string }
+// value), absent in law (0), not determined (0 assumed), or given (typed by the user);
+// empty where nothing is said. Errors is that of the published errors: one word for all of
+// them or a list such as "A memory, n seen"; see Law.ErrorStatus.
+type Status struct{ A, N, M, R, E, V, Peierls, Test, Errors string }
 
 // Law is one creep law in invariant SI form,
 //

@@ -18,6 +18,27 @@ type Tested struct {
 // High = +Inf that one end is not.
 type Interval struct{ Low, High float64 }
 
+// roomPressure is one standard atmosphere, Pa; exact by definition.
+const roomPressure = 101325
+
+// Covers reports whether the experiments reached T in K, P in Pa and the stress, as the
+// law's test measures it, in Pa: whether every range that is known holds it. known is
+// whether that of the temperatures is among them. A pressure may be half a GPa from
+// experiments at a single one; the ends of a range count with round-off.
+func (t *Tested) Covers(T, P, stress float64) (inside, known bool) {
+	return t.T.holds(T) && t.Pressures(P) && t.Stress.holds(stress), t.T.Known()
+}
+
+// Pressures reports whether the experiments reached P in Pa, as Covers has it.
+func (t *Tested) Pressures(P float64) bool {
+	return t.P.holds(P) || t.P.Low == t.P.High && math.Abs(P-t.P.Low) <= pressureSlack
+}
+
+// holds reports whether x lies in the range, or the range is not known.
+func (i Interval) holds(x float64) bool {
+	return !i.Known() || x >= i.Low*(1-1e-12) && x <= i.High*(1+1e-12)
+}
+
 // Known says whether the source gives the range.
 func (i Interval) Known() bool { return i.High != 0 }
 
@@ -39,8 +60,9 @@ func (i Interval) text(format string, zero, scale float64) string {
 }
 
 // interval reads "1027 to 1427", "300", ">120" or "<560", in a unit of so many SI units,
-// from a zero of the scale at the offset.
-func interval(at func(*Law) *Interval, times, offset float64) func(*Law, string) error {
+// from a zero of the scale at the offset. With zero a range may begin at 0, and 0 alone is
+// the pressure of the room.
+func interval(at func(*Law) *Interval, times, offset float64, zero bool) func(*Law, string) error {
 	return func(l *Law, s string) error {
 		if s == "" {
 			return nil
@@ -48,7 +70,7 @@ func interval(at func(*Law) *Interval, times, offset float64) func(*Law, string)
 		var err error
 		read := func(s string) float64 {
 			x, e := strconv.ParseFloat(strings.TrimSpace(s), 64)
-			if x = x*times + offset; e != nil || !inRange(x) {
+			if x = x*times + offset; e != nil || !inRange(x) && !(zero && x == 0) {
 				err = fmt.Errorf("%q is not a range; needs one like 300, 1000 to 1200, >120 or <560", s)
 			}
 			return x
@@ -60,10 +82,10 @@ func interval(at func(*Law) *Interval, times, offset float64) func(*Law, string)
 			*i = Interval{0, read(below)}
 		} else if low, high, ok := strings.Cut(s, " to "); ok {
 			*i = Interval{read(low), read(high)}
-		} else {
-			*i = Interval{read(s), read(s)}
+		} else if *i = (Interval{read(s), read(s)}); err == nil && i.High == 0 {
+			*i = Interval{roomPressure, roomPressure}
 		}
-		if err == nil && i.Low > i.High {
+		if err == nil && (i.Low > i.High || i.High == 0) {
 			err = fmt.Errorf("%q ends below its start", s)
 		}
 		return err

@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"strings"
 
@@ -19,15 +20,22 @@ import (
 func newColumnCmd(s Streams) *cobra.Command {
 	var pressures string
 	cmd, _ := newPartCmd(s, "column FILE", "Temperature, pressure, density, viscosity and strength against depth, and what would sink",
-		func(_ context.Context, _ *options, p *race.Problem, st *state.State) (*part, error) {
+		func(_ context.Context, o *options, p *race.Problem, st *state.State) (*part, error) {
+			if pressures != "" && o.Format == "csv" {
+				return nil, usageError{errors.New("--depth-of has no place in the table of --format csv; take text or json")}
+			}
 			depths, err := depthsOf(st, pressures)
 			if err != nil {
 				return nil, usageError{err}
 			}
 			value := report.Column(p, st)
 			value.DepthOf = report.DepthsJSON(depths)
+			more := []report.Table{report.WeightTable(st)}
+			if p.GeothermFit != nil {
+				more = append(more, report.SamplesTable(p.GeothermFit))
+			}
 			return &part{name: "column", text: report.ColumnPage(p, st, depths), value: value,
-				table: report.ColumnTable(st), more: []report.Table{report.WeightTable(st)},
+				table: report.ColumnTable(st), more: more,
 				figures:  func(w vg.Length) ([]plots.Figure, error) { return plots.Columns(st, w) },
 				warnings: race.Warnings(p, st)}, nil
 		})

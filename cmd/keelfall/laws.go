@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"slices"
+	"strings"
 
 	"github.com/spf13/cobra"
 	"gonum.org/v1/plot/vg"
@@ -33,7 +34,9 @@ law with its sources; with several, lists those. The laws of your own catalogues
 
 With --out DIR the laws are drawn as viscosity against temperature, at one strain rate,
 pressure, grain size and amount of water, and the curves are written beside the figure.
-A curve is dashed where no experiment of its law was made.`,
+A curve is dashed outside the temperatures, pressures or stresses of its law's
+experiments, as far as those are known, and thin where their temperatures are not. The
+caption and what the errors are taken about stand in captions.md.`,
 		Example: `  keelfall laws --material olivine --water wet
   keelfall laws "wet quartzite Gleason 1995"
   keelfall laws --material olivine --mechanism dislocation --out olivine --rate "1e-15 1/s"`,
@@ -66,16 +69,25 @@ func (o *lawsOptions) run(names []string) error {
 	if err != nil {
 		return err
 	}
+	out := o.cmd.Flags().Changed("out")
+	if err := o.without(out, "rate", "pressure", "grain-size", "fugacity", "content", "from", "to", "figures", "width"); err != nil {
+		return err
+	}
 	one := len(names) == 1
 	if len(names) > 0 {
 		if laws, err = named(laws, names); err != nil {
+			var unknown *rheology.UnknownLawError
+			if errors.As(err, &unknown) {
+				err = errors.New(strings.TrimPrefix(err.Error(), "rheology: ") + "; keelfall laws lists them all")
+			}
 			return usageError{err}
 		}
 	}
+	o.filter.Named = len(names) > 0
 	if laws, err = o.filter.Choose(laws); err != nil {
 		return usageError{err}
 	}
-	if o.cmd.Flags().Changed("out") {
+	if out {
 		if err := o.draw(laws); err != nil {
 			return err
 		}
@@ -135,7 +147,8 @@ func (o *lawsOptions) draw(laws []rheology.Law) error {
 		return err
 	}
 	defer folder.Abandon()
-	return o.fill(folder, &part{name: "laws", value: report.Laws(laws), table: report.LawCurvesTable(curves),
+	o.warn(report.LawWarnings(curves))
+	return o.fill(folder, &part{name: "laws", value: report.LawFigure(laws, at, curves), table: report.LawCurvesTable(curves, laws, at),
 		figures: one(func(w vg.Length) (plots.Figure, error) { return plots.Laws(curves, words, w) })})
 }
 
@@ -145,27 +158,28 @@ func (o *lawsOptions) conditions() (report.LawConditions, error) {
 	for _, q := range []struct {
 		flag, text, dimension string
 		to                    *float64
-		least                 float64 // a value must be above
+		least, most           float64
+		needs                 string
 	}{
-		{"--rate", o.rate, "strain-rate", &c.Rate, 0},
-		{"--pressure", o.pressure, "pressure", &c.Pressure, -1},
-		{"--grain-size", o.grain, "length", &c.GrainSize, 0},
-		{"--fugacity", o.fugacity, "pressure", &c.Fugacity, 0},
-		{"--from", o.start, "temperature", &c.From, 0},
-		{"--to", o.stop, "temperature", &c.To, 0},
+		{"--rate", o.rate, "strain-rate", &c.Rate, 1e-25, 1, "1e-25 to 1 1/s"},
+		{"--pressure", o.pressure, "pressure", &c.Pressure, 0, 100e9, "0 or more, up to 100 GPa"},
+		{"--grain-size", o.grain, "length", &c.GrainSize, 1e-9, 1, "1e-9 to 1 m"},
+		{"--fugacity", o.fugacity, "pressure", &c.Fugacity, 1, 1e12, "1 Pa to 1000 GPa"},
+		{"--from", o.start, "temperature", &c.From, 200, 2500, "200 to 2500 K"},
+		{"--to", o.stop, "temperature", &c.To, 200, 2500, "200 to 2500 K"},
 	} {
 		x, err := configs.ParseQuantity(q.text, q.dimension)
 		if err != nil {
 			return c, fmt.Errorf("%s: %w", q.flag, err)
 		}
-		if !(x > q.least) {
-			return c, fmt.Errorf("%s %s is out of range; needs more than nothing", q.flag, q.text)
+		if !(x >= q.least && x <= q.most) {
+			return c, fmt.Errorf("%s %s is out of range; needs %s", q.flag, q.text, q.needs)
 		}
 		*q.to = x
 	}
 	switch {
-	case !(c.Content > 0):
-		return c, errors.New("--content needs a number above 0")
+	case !(c.Content >= 1e-3 && c.Content <= 1e6):
+		return c, fmt.Errorf("--content %g is out of range; needs 0.001 to 1e6 H per million Si", c.Content)
 	case !(c.To > c.From):
 		return c, fmt.Errorf("--to %s is not above --from %s", o.stop, o.start)
 	}

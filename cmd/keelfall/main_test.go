@@ -87,6 +87,33 @@ func TestREADMEExperiment(t *testing.T) {
 	}
 }
 
+// The history that README.md shows runs: its root reacts, its clock closes or says why not.
+func TestREADMEHistory(t *testing.T) {
+	b, err := os.ReadFile("../../README.md")
+	if err != nil {
+		t.Fatal(err)
+	}
+	blocks := strings.Split(string(b), "```yaml\n")
+	if len(blocks) != 3 {
+		t.Fatalf("README shows %d experiments, want 2", len(blocks)-1)
+	}
+	text, _, _ := strings.Cut(blocks[2], "```")
+	t.Setenv("XDG_CONFIG_HOME", t.TempDir())
+	t.Chdir(t.TempDir())
+	if err := os.WriteFile("shown.yaml", []byte(text), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	var out, errs bytes.Buffer
+	if status := Main(context.Background(), []string{"history", "shown.yaml"}, Streams{&out, &errs}); status != exitDone {
+		t.Fatalf("exit status %d: %s", status, errs.String())
+	}
+	for _, want := range []string{"sheet, 3 times", "K7, in crust", "root base, in root", "hornblende Ar-Ar at K7"} {
+		if !strings.Contains(out.String(), want) {
+			t.Errorf("no %q:\n%s", want, out.String())
+		}
+	}
+}
+
 // The measured section that README.md shows is read: its first two rows are one layer.
 func TestREADMESection(t *testing.T) {
 	b, err := os.ReadFile("../../README.md")

@@ -1,6 +1,7 @@
 package main
 
 import (
+	"errors"
 	"fmt"
 	"math"
 	"strings"
@@ -24,7 +25,7 @@ expansivity and bulk modulus at a temperature and a pressure.`,
 		Example: `  keelfall minerals
   keelfall minerals almandine --at "800 degC,1.5 GPa"`,
 		Args: args(cobra.MaximumNArgs(1)),
-		RunE: func(_ *cobra.Command, a []string) error {
+		RunE: func(cmd *cobra.Command, a []string) error {
 			if err := o.check(); err != nil {
 				return err
 			}
@@ -33,15 +34,23 @@ expansivity and bulk modulus at a temperature and a pressure.`,
 				return usageError{err}
 			}
 			if len(a) == 0 {
+				if o.Format == "text" && cmd.Flags().Changed("at") {
+					return usageError{errors.New("--at needs the NAME of a mineral; of all of them, --format csv or json gives the densities there")}
+				}
 				list := column.Minerals()
+				for i := range list {
+					if err := inRange(&list[i], T, P, at); err != nil {
+						return err
+					}
+				}
 				return o.print(report.MineralsPage(list), report.Minerals(list, T, P), report.MineralsTable(list, T, P))
 			}
 			m, err := column.FindMineral(a[0])
 			if err != nil {
 				return usageError{err}
 			}
-			if rho := m.Density(T, P); !(rho > 0) || math.IsInf(rho, 1) {
-				return usageError{fmt.Errorf("--at %s is beyond the equation of state of %s", at, m.Name)}
+			if err := inRange(&m, T, P, at); err != nil {
+				return err
 			}
 			one := []column.Mineral{m}
 			return o.print(report.MineralPage(&m, T, P), report.Minerals(one, T, P), report.MineralsTable(one, T, P))
@@ -50,6 +59,14 @@ expansivity and bulk modulus at a temperature and a pressure.`,
 	o.formatFlag(cmd.Flags())
 	cmd.Flags().StringVar(&at, "at", "25 degC,0 GPa", "temperature and pressure, for example \"800 degC,1.5 GPa\"")
 	return cmd
+}
+
+// inRange refuses what the mineral's equation of state does not reach.
+func inRange(m *column.Mineral, T, P float64, at string) error {
+	if rho := m.Density(T, P); !(rho > 0) || math.IsInf(rho, 1) {
+		return usageError{fmt.Errorf("--at %s is beyond the equation of state of %s", at, m.Name)}
+	}
+	return nil
 }
 
 // temperatureAndPressure reads "800 degC,1.5 GPa".

@@ -101,6 +101,22 @@ func (o *options) check() error {
 	if !(o.Width >= 80 && o.Width <= 400) {
 		return usageError{fmt.Errorf("--width %g; needs 80 to 400 mm", o.Width)}
 	}
+	if o.cmd == nil {
+		return nil
+	}
+	if out := o.cmd.Flags().Lookup("out"); out != nil && out.Changed && strings.TrimSpace(out.Value.String()) == "" {
+		return usageError{errors.New("--out needs the name of a folder")}
+	}
+	return nil
+}
+
+// without refuses flags that belong to the figure where no folder is asked for.
+func (o *options) without(folder bool, flags ...string) error {
+	for _, name := range flags {
+		if f := o.cmd.Flags().Lookup(name); !folder && f != nil && f.Changed {
+			return usageError{fmt.Errorf("--%s belongs to the figure; add --out DIR", name)}
+		}
+	}
 	return nil
 }
 

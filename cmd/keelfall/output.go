@@ -36,6 +36,9 @@ func (w *output) json(name string, v any) error {
 
 // write fills the folder and moves it to its place, and says what is in it.
 func (o *options) write(place string, f *report.Folder, w *output) error {
+	if b := o.captions(w.figures); b != nil {
+		w.add("captions.md", b)
+	}
 	for _, name := range w.order {
 		if err := f.Write(name, w.files[name]); err != nil {
 			return err
@@ -57,6 +60,19 @@ func (o *options) write(place string, f *report.Folder, w *output) error {
 	}
 	fmt.Fprintf(o.Err, "%s: %s\n", place, o.contents(w))
 	return nil
+}
+
+// captions returns the figures' captions, nil where no figure is written.
+func (o *options) captions(figures []plots.Figure) []byte {
+	if len(figures) == 0 || len(o.Settings.Figures) == 0 {
+		return nil
+	}
+	var b bytes.Buffer
+	b.WriteString("# Captions\n")
+	for _, f := range figures {
+		fmt.Fprintf(&b, "\n## %s\n\n%s\n", f.Name, f.Caption)
+	}
+	return b.Bytes()
 }
 
 // contents says what a folder holds.

@@ -48,6 +48,9 @@ func newPartCmd(s Streams, use, short string, compute func(context.Context, *opt
 			if err != nil {
 				return err
 			}
+			if err := o.without(o.Settings.Out != "", "figures", "width"); err != nil {
+				return err
+			}
 			var folder *report.Folder
 			if place := o.Settings.Out; place != "" {
 				if folder, err = report.NewFolder(place); err != nil { // before hours are spent

@@ -57,7 +57,7 @@ func Main(ctx context.Context, args []string, s Streams) int {
 }
 
 // later are commands that are planned and not there yet.
-var later = []string{"history", "map", "threshold", "ensemble", "compare"}
+var later = []string{"map", "threshold", "ensemble", "compare"}
 
 func newRoot(s Streams) *cobra.Command {
 	root := &cobra.Command{
@@ -93,7 +93,7 @@ leaves out.`,
 	root.SetFlagErrorFunc(func(_ *cobra.Command, err error) error { return usageError{err} })
 	root.SuggestionsMinimumDistance = 2
 	root.AddCommand(newRunCmd(s, run), newExampleCmd(s), newCheckCmd(s), newColumnCmd(s), newSpectrumCmd(s), newModeCmd(s),
-		newDripCmd(s), newExciseCmd(s), newLawsCmd(s), newMineralsCmd(s), newSchemaCmd(s), newVerifyCmd(s))
+		newDripCmd(s), newExciseCmd(s), newHistoryCmd(s), newLawsCmd(s), newMineralsCmd(s), newSchemaCmd(s), newVerifyCmd(s))
 	return root
 }
 

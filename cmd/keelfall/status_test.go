@@ -40,6 +40,13 @@ func TestStatus(t *testing.T) {
 		{exitInput, []string{"nonsense"}},
 		{exitInput, []string{"run", "good.yaml", "--set", "drip.amplitude=10km"}}, // it already is the drip
 		{exitInput, []string{"run", "good.yaml", "--width", "NaN"}},
+		{exitInput, []string{"run", "good.yaml", "--out", ""}},
+		{exitInput, []string{"drip", "good.yaml", "--out", ""}},
+		{exitInput, []string{"spectrum", "good.yaml", "--figures", "svg"}}, // without --out
+		{exitInput, []string{"laws", "--out", ""}},
+		{exitInput, []string{"laws", "--from", "600 degC"}},
+		{exitInput, []string{"laws", "foo"}},
+		{exitInput, []string{"minerals", "--at", "800 degC,1 GPa"}},
 		{exitInput, []string{"spectrum", "good.yaml", "--at", "9m"}},
 		{exitInput, []string{"spectrum", "good.yaml", "--at", "50km,100001km"}},
 		{exitDone, []string{"spectrum", "good.yaml", "--at", "10m"}},

@@ -1,19 +1,3 @@
-// Package heat conducts heat through a column of layers.
-//
-// This part is the steady state. With z downward and q the heat flow upward,
-//
-//	dq/dz = −H(z)    q = κ_c(T, P) dT/dz    dP/dz = ρ(T, P, x) g
-//
-// so the heat flow is exact (H is integrated in closed form) and temperature and
-// pressure follow together from one ordinary differential equation, downward from a
-// surface at known temperature and zero pressure. With a basal heat flow that is all;
-// with a basal temperature the surface heat flow is the unknown, and T at the base
-// rises monotonically with it. Physics: Fourier's law and the hydrostatic balance;
-// Carslaw & Jaeger 1959. Also here: a given geotherm and a column without one, for
-// which only the pressure is integrated.
-//
-// Left out of the steady state: advection by stretching or erosion, shear heating,
-// latent heat.
 package heat
 
 import "math"

@@ -39,7 +39,9 @@ type Problem struct {
 	SpectrumFrom        float64 // m; 0: chosen from the layers
 	SpectrumTo          float64 // m
 	Zones               []excision.Zone
-	Removed             float64 // share of the root that counts as its removal
+	Removed             float64    // share of the root that counts as its removal
+	GeothermFit         *heat.Fit  // Column's geotherm as fitted to samples; nil where it was not; not to be changed
+	Measured            []Measured // layers that came from measured sections
 	Events              []heat.Event
 	Markers             []heat.Marker
 	Clocks              []heat.Clock

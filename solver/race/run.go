@@ -37,6 +37,9 @@ func Spectrum(ctx context.Context, p *Problem, s *state.State) (*growth.Spectrum
 
 // Drip returns when the root of a prepared column drips.
 func Drip(ctx context.Context, p *Problem, s *state.State) (*drip.Result, error) {
+	if err := p.still(); err != nil {
+		return nil, err
+	}
 	if err := p.canDrip(); err != nil {
 		return nil, err
 	}
@@ -83,6 +86,9 @@ func (p *Problem) dripOptions() drip.Options {
 
 // Excise returns when the zones have taken the verdict's share of the root.
 func Excise(p *Problem, s *state.State) (*excision.Result, error) {
+	if err := p.still(); err != nil {
+		return nil, err
+	}
 	r, err := excision.Solve(p.Zones, p.excisionSetting(s))
 	if err != nil {
 		return nil, fmt.Errorf("%w: %w", ErrInput, err)
@@ -121,6 +127,9 @@ func Run(ctx context.Context, p *Problem) (*Result, error) {
 
 // RunSaying is Run; it calls say with what is computed next, in words.
 func RunSaying(ctx context.Context, p *Problem, say func(string)) (*Result, error) {
+	if err := p.still(); err != nil {
+		return nil, err
+	}
 	_, _, root := p.Column.RootSpan()
 	if root {
 		if err := p.canDrip(); err != nil {
@@ -170,7 +179,7 @@ func RunSaying(ctx context.Context, p *Problem, say func(string)) (*Result, erro
 
 // Warnings returns what a prepared column is warned about, whatever is asked of it.
 func Warnings(p *Problem, s *state.State) []string {
-	w := slices.Clone(s.Warnings)
+	w := append(slices.Clone(s.Warnings), p.measured(s)...)
 	if p.Strain.ExtensionRate == 0 && p.Drip.Softening != "self" && drip.RateDependent(s) {
 		w = append(w, fmt.Sprintf("stress exponents above 1, nothing that strains the column and no softening by the drip: viscosities are isotropic, those of the reference rate of %.3g 1/s", s.StrainRate))
 	}

@@ -222,7 +222,7 @@ func TestWarnings(t *testing.T) {
 	s := build(t, arc(t), 1e-15)
 	all := strings.Join(s.Warnings, "\n")
 	for _, want := range []string{
-		"mafic granulite Wilks 1990: used above 1 GPa, where its activation volume (not determined, 0 cm³/mol assumed) counts (in lower crust)",
+		"mafic granulite Wilks 1990: used above 1 GPa, where its activation volume (not determined, 0 cm3/mol assumed) counts (in lower crust)",
 		"upper crust: the highest viscosity, 1e+24 Pa s, decides from 0.0 to",
 	} {
 		if !strings.Contains(all, want) {

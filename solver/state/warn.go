@@ -52,6 +52,7 @@ func (s *State) warn() {
 	}
 	for i := range c.Layers {
 		s.limits(c.Layers[i].Name, s.Layers[i].Points)
+		s.breaks(c.Layers[i].Name, &c.Layers[i].Rock, s.Layers[i].Points)
 		s.melt(c.Layers[i].Name, &c.Layers[i].Rock, s.Layers[i].Points)
 	}
 	s.limits("the half-space", []Point{s.Base})
@@ -81,7 +82,7 @@ func (s *State) limits(name string, ps []Point) {
 
 // limited warns of each range of depths in which a limit bites.
 func (s *State) limited(name string, ps []Point, which string, bites func(Point) bool) {
-	s.ranges(ps, bites, func(from, to float64) string {
-		return fmt.Sprintf("%s: %s decides from %.1f to %.1f km, not the creep law", name, which, from, to)
+	s.ranges(ps, bites, func(where string) string {
+		return fmt.Sprintf("%s: %s decides %s, not the creep law", name, which, where)
 	})
 }

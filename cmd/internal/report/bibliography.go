@@ -20,7 +20,7 @@ func Bibliography(sources []SourceJSON) string {
 		}
 		fmt.Fprintf(&b, "\n@misc{%s,\n", s.ID)
 		switch author, year := authors(name); {
-		case s.Status == "derived" || s.Status == "common practice":
+		case s.Status == "derived" || s.Status == "common practice" || s.Status == "choice":
 			fmt.Fprintf(&b, "  title = {%s},\n  note = {%s}\n}\n", escape.Replace(name), s.Status)
 			continue
 		case author != "":

@@ -12,7 +12,7 @@ import (
 	"keelfall/solver/state"
 )
 
-func columnText(p *page, s *state.State) {
+func columnText(p *page, pb *race.Problem, s *state.State) {
 	p.section("COLUMN")
 	long := 5
 	for i := range s.Column.Layers {
@@ -46,7 +46,7 @@ func columnText(p *page, s *state.State) {
 	if s.HasTemperature {
 		p.say("Heat flow %.1f mW/m2 at the surface, %.1f at the base of the column.", s.SurfaceFlow*1e3, s.BaseFlow*1e3)
 	}
-	for _, w := range slices.Concat(together(s), frictionText(s), reacted(s)) {
+	for _, w := range slices.Concat(measuredText(pb), together(s), frictionText(s), reacted(s)) {
 		p.say("%s", w)
 	}
 	contrast, stress, ok := race.Buoyancy(s)
@@ -62,8 +62,11 @@ func columnText(p *page, s *state.State) {
 		word = "pushes up"
 	}
 	weigh := strings.ReplaceAll(drip.Weigh(contrast), "³", "3")
-	p.say("%s is %s; over its %s km it %s with %.2g MPa.", root, weigh,
-		short(s.Column.RootThickness()/km), word, math.Abs(stress)/1e6)
+	whole := fmt.Sprintf("over its %s km", short(s.Column.RootThickness()/km))
+	if s.HasTemperature { // colder than its base higher up, and so denser
+		whole = fmt.Sprintf("taken over its whole %s km, colder rock higher up included,", short(s.Column.RootThickness()/km))
+	}
+	p.say("%s is %s; %s it %s with %.2g MPa.", root, weigh, whole, word, math.Abs(stress)/1e6)
 }
 
 // creepOf returns the creep of a layer, or of the half-space below the last.

@@ -29,6 +29,7 @@ type ColumnJSON struct {
 	HeatResidual   number          `json:"heat_residual"`
 	Sinking        []sinkingJSON   `json:"sinking"`  // each rock against the rock below it
 	DepthOf        []depthJSON     `json:"depth_of"` // of pressures asked for
+	Fit            *fitJSON        `json:"geotherm_fit"`
 	Warnings       []string        `json:"warnings"`
 }
 
@@ -68,6 +69,9 @@ func Column(p *race.Problem, s *state.State) ColumnJSON {
 		c.Warnings = append(c.Warnings, "what the rocks weigh against one another is not known: "+err.Error())
 	}
 	c.DepthOf = []depthJSON{}
+	if p.GeothermFit != nil {
+		c.Fit = fit(p.GeothermFit)
+	}
 	depth := 0.0
 	for i, j := range s.Jumps {
 		f := interfaceJSON{Depth: number(depth), Above: "air", Below: "base", Jump: number(j)}

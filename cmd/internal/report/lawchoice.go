@@ -15,6 +15,7 @@ type LawFilter struct {
 	Mechanism string // words of the mechanism
 	Water     string // wet, dry or undried
 	Search    string // words of anything the catalogue says of a law
+	Named     bool   // the laws to choose among were named one by one; for messages
 }
 
 // WaterStates are the values of LawFilter.Water.
@@ -84,9 +85,15 @@ func (f LawFilter) Choose(laws []rheology.Law) ([]rheology.Law, error) {
 	var words, values []string
 	for _, a := range given {
 		if !slices.ContainsFunc(laws, func(l rheology.Law) bool { return a.match(&l) }) {
+			if f.Named {
+				return nil, fmt.Errorf("none of the laws named has %s %q", a.flag, a.value)
+			}
 			return nil, fmt.Errorf("no creep law has %s %q%s", a.flag, a.value, nearestLaws(laws, a.value))
 		}
 		words, values = append(words, fmt.Sprintf("%s %q", a.flag, a.value)), append(values, a.value)
+	}
+	if f.Named {
+		return nil, fmt.Errorf("none of the laws named has %s together", join(words))
 	}
 	return nil, fmt.Errorf("no creep law has %s together, though each has some%s", join(words), nearestLaws(laws, strings.Join(values, " ")))
 }

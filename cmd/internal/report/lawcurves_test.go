@@ -38,8 +38,8 @@ func TestLawCurve(t *testing.T) {
 		if math.Abs(c.Log[i]-want) > 1e-10 {
 			t.Errorf("%g K: %g, want %g", T, c.Log[i], want)
 		}
-		if in := T >= 1027+273.15 && T <= 1427+273.15; (c.Cover[i] == plots.CoverInside) != in {
-			t.Errorf("%g K: cover %d", T, c.Cover[i])
+		if c.Cover[i] != plots.CoverOutside {
+			t.Errorf("%g K, 1 GPa: cover %d", T, c.Cover[i])
 		}
 	}
 	if words != "a strain rate of 1e-15 1/s and a pressure of 1 GPa" {
@@ -98,7 +98,7 @@ func TestLawCurvesOfAll(t *testing.T) {
 			t.Errorf("%q is not in %q", w, words)
 		}
 	}
-	if table := LawCurvesTable(curves); len(table.Rows) != curveSteps+1 || len(table.Rows[0]) != 1+3*len(curves) || len(table.Header) != len(table.Rows[0]) {
+	if table := LawCurvesTable(curves, rheology.Laws(), ordinary); len(table.Rows) != curveSteps+1 || len(table.Rows[0]) != 6+3*len(curves) || table.Rows[9][1] != "1e-15" || table.Rows[9][3] != "2" || len(table.Header) != len(table.Rows[0]) {
 		t.Errorf("%d rows, %d columns", len(table.Rows), len(table.Header))
 	}
 }
@@ -125,6 +125,12 @@ func TestLawFilter(t *testing.T) {
 	wet, err := LawFilter{Water: "wet"}.Choose(all)
 	if err != nil || slices.ContainsFunc(wet, func(l rheology.Law) bool { return !strings.HasPrefix(l.WaterState, "wet") }) {
 		t.Errorf("wet: %v", err)
+	}
+	if _, err := (LawFilter{Material: "quartz", Named: true}).Choose([]rheology.Law{law(t, "dry eclogite Zhang 2007")}); err != nil {
+		t.Errorf("quartz eclogite is of quartz: %v", err)
+	}
+	if _, err := (LawFilter{Material: "olivine", Named: true}).Choose([]rheology.Law{law(t, "dry eclogite Zhang 2007")}); err == nil || err.Error() != `none of the laws named has --material "olivine"` {
+		t.Errorf("named: %v", err)
 	}
 	if _, err := (LawFilter{Material: "olivin", Mechanism: "glide"}).Choose(all); err == nil || !strings.Contains(err.Error(), `--mechanism "glide"`) {
 		t.Errorf("%v", err)

@@ -40,17 +40,17 @@ func LawPage(l *rheology.Law) string {
 	row("water", l.WaterState)
 	row("mechanism", l.Mechanism)
 	row("test", l.Test.String())
-	row("A as published", fmt.Sprintf("%.4g %s (%s)", l.LaboratoryA, laboratoryUnit(l), numberStatus(l.Status.A)))
+	row("A as published", fmt.Sprintf("%.4g %s%s", l.LaboratoryA, laboratoryUnit(l), from(l.Status.A)))
 	row("A, invariant SI", fmt.Sprintf("%.5g %s", l.A, prefactorUnit(l)))
-	row("n", fmt.Sprintf("%g (%s)", l.N, numberStatus(l.Status.N)))
-	row("grain exponent m", fmt.Sprintf("%g (%s)", l.M, numberStatus(l.Status.M)))
-	row("water exponent r", fmt.Sprintf("%g (%s), water as %s", l.R, numberStatus(l.Status.R), l.Water))
-	row("E", fmt.Sprintf("%.6g kJ/mol (%s)", l.E/1e3, numberStatus(l.Status.E)))
-	row("V", fmt.Sprintf("%.6g cm3/mol (%s)", l.V*1e6, numberStatus(l.Status.V)))
+	row("n", fmt.Sprintf("%g%s", l.N, from(l.Status.N)))
+	row("grain exponent m", fmt.Sprintf("%g%s", l.M, from(l.Status.M)))
+	row("water exponent r", fmt.Sprintf("%g%s, water as %s", l.R, from(l.Status.R), l.Water))
+	row("E", fmt.Sprintf("%.6g kJ/mol%s", l.E/1e3, from(l.Status.E)))
+	row("V", fmt.Sprintf("%.6g cm3/mol%s", l.V*1e6, from(l.Status.V)))
 	plasticRows(row, l)
 	row("experiments", testedWords(&l.Tested))
-	row("published errors", l.Uncertainty)
-	row("as numbers", errorWords(&l.Errors))
+	row("published errors", uncertainty(l))
+	row("as numbers", errorWords(l))
 	row("confidence", l.Confidence)
 	row("source", l.Source)
 	row("page", l.URL)
@@ -109,6 +109,16 @@ type lawErrorsJSON struct {
 	R   number `json:"water_exponent"`
 	E   number `json:"activation_energy_J_mol"`
 	V   number `json:"activation_volume_m3_mol"`
+
+	Status errorStatusJSON `json:"status"` // of each, empty where there is none
+}
+
+type errorStatusJSON struct {
+	LnA string `json:"ln_prefactor"`
+	N   string `json:"stress_exponent"`
+	R   string `json:"water_exponent"`
+	E   string `json:"activation_energy"`
+	V   string `json:"activation_volume"`
 }
 
 type statusJSON struct {
@@ -126,12 +136,12 @@ func Laws(laws []rheology.Law) []LawJSON {
 	out := []LawJSON{}
 	for i := range laws {
 		l := &laws[i]
-		st, e := l.Status, l.Errors
+		st, e, es := l.Status, l.Errors, l.ErrorStatus()
 		j := LawJSON{Name: l.Name, Material: l.Material, Mechanism: l.Mechanism, A: number(l.A), AUnit: prefactorUnit(l),
 			N: number(l.N), M: number(l.M), R: number(l.R), Water: l.Water.String(), E: number(l.E), V: number(l.V), Source: l.Source,
 			Status: statusJSON{st.A, st.N, st.M, st.R, st.E, st.V, st.Test}, Confidence: l.Confidence, WaterState: l.WaterState, Test: l.Test.String(),
 			Tested: testedJSON{ends(l.Tested.T), ends(l.Tested.P), ends(l.Tested.Stress), l.Tested.Status},
-			Errors: lawErrorsJSON{positive(e.LnA), positive(e.N), positive(e.R), positive(e.E), positive(e.V)},
+			Errors: lawErrorsJSON{positive(e.LnA), positive(e.N), positive(e.R), positive(e.E), positive(e.V), errorStatusJSON{es[0], es[1], es[2], es[3], es[4]}},
 			URL:    l.URL, Notes: l.Notes, Warnings: list(nil)}
 		if b := l.Peierls; l.Plastic() {
 			j.Peierls = &peierlsJSON{number(b.Stress), number(b.PerPa), number(b.P), number(b.Q), number(b.Least)}
@@ -181,12 +191,12 @@ func laboratoryUnit(l *rheology.Law) string {
 func LawsTable(laws []rheology.Law) Table {
 	t := Table{Name: "laws", Header: []string{"name", "material", "mechanism", "prefactor", "prefactor_unit", "stress_exponent", "grain_exponent", "water_exponent", "water", "activation_energy_kJ_mol", "activation_volume_cm3_mol", "source", "numbers",
 		"tested_temperature_degC", "tested_pressure_MPa", "tested_stress_MPa", "error_ln_prefactor", "error_stress_exponent", "error_water_exponent",
-		"error_activation_energy_kJ_mol", "error_activation_volume_cm3_mol", "peierls_stress_MPa"}}
+		"error_activation_energy_kJ_mol", "error_activation_volume_cm3_mol", "peierls_stress_MPa", "errors"}}
 	for i := range laws {
 		l := &laws[i]
 		t.Rows = append(t.Rows, []string{l.Name, l.Material, l.Mechanism, cell(l.A), prefactorUnit(l), cell(l.N), cell(l.M), cell(l.R), l.Water.String(), cell(l.E / 1e3), cell(l.V * 1e6), l.Source, lawStatus(l),
 			tested(l.Tested.T, 1, zero, ""), tested(l.Tested.P, 1e6, 0, ""), tested(l.Tested.Stress, 1e6, 0, ""), given(l.Errors.LnA), given(l.Errors.N), given(l.Errors.R),
-			given(l.Errors.E / 1e3), given(l.Errors.V * 1e6), given(l.Peierls.Stress / 1e6)})
+			given(l.Errors.E / 1e3), given(l.Errors.V * 1e6), given(l.Peierls.Stress / 1e6), errorWords(l)})
 	}
 	return t
 }

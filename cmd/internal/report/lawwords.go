@@ -3,6 +3,7 @@ package report
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"keelfall/rheology"
@@ -49,25 +50,128 @@ func testedWords(t *rheology.Tested) string {
 		return "conditions not in the catalogue"
 	}
 	s := strings.Join(parts, "; ")
-	if t.Status != "" {
-		s += " (" + numberStatus(t.Status) + ")"
-	}
-	return s
+	return s + from(t.Status)
 }
 
-// errorWords writes the published errors as numbers.
-func errorWords(e *rheology.Errors) string {
+// from is the status of a number in brackets, empty where nothing is said.
+func from(status string) string {
+	if status == "" {
+		return ""
+	}
+	return " (" + numberStatus(status) + ")"
+}
+
+// errorWords writes the published errors as numbers, and where they come from.
+func errorWords(l *rheology.Law) string {
+	e, st := l.Errors, l.ErrorStatus()
+	one := len(errorStatuses(l)) <= 1
 	var parts []string
-	for _, p := range []struct {
+	status := ""
+	for i, p := range []struct {
 		of   string
 		x    float64
 		unit string
 	}{{"ln A", e.LnA, ""}, {"n", e.N, ""}, {"r", e.R, ""}, {"E", e.E / 1e3, " kJ/mol"}, {"V", e.V * 1e6, " cm3/mol"}} {
 		if p.x > 0 {
-			parts = append(parts, fmt.Sprintf("%s ± %.3g%s", p.of, p.x, p.unit))
+			s := fmt.Sprintf("%s ± %.3g%s", p.of, p.x, p.unit)
+			if status = from(st[i]); !one {
+				s += status
+			}
+			parts = append(parts, s)
 		}
 	}
+	if one && len(parts) > 0 {
+		return strings.Join(parts, ", ") + status
+	}
 	return strings.Join(parts, ", ")
+}
+
+// uncertainty is what the source says of errors, with where it comes from where that is
+// the same for all of it.
+func uncertainty(l *rheology.Law) string {
+	if all := errorStatuses(l); l.Uncertainty != "" && len(all) == 1 {
+		return l.Uncertainty + from(all[0])
+	}
+	return l.Uncertainty
+}
+
+// errorStatuses are the different statuses of a law's errors, that of none said too.
+func errorStatuses(l *rheology.Law) []string {
+	var all []string
+	st := l.ErrorStatus()
+	for i, x := range [5]float64{l.Errors.LnA, l.Errors.N, l.Errors.R, l.Errors.E, l.Errors.V} {
+		if x > 0 && !slices.Contains(all, st[i]) {
+			all = append(all, st[i])
+		}
+	}
+	return all
+}
+
+// errorNames name the parameters in the order of rheology.Errors.
+var errorNames = [...]string{"prefactor", "stress exponent", "water exponent", "activation energy", "activation volume"}
+
+// errorNote says for a caption which errors of a law were taken, sizes, what each number
+// turned about, and what is recalled.
+func errorNote(l *rheology.Law, about *rheology.Pivot, sizes [5]float64) string {
+	var parts, turned []string
+	if sizes[0] > 0 {
+		parts = append(parts, "prefactor")
+	}
+	if sizes[1] > 0 {
+		parts = append(parts, "stress exponent "+exponentAbout(l, about))
+	}
+	if sizes[2] > 0 {
+		unit := "1 MPa of fugacity"
+		if l.Water == rheology.WaterContent {
+			unit = "1 H/10^6 Si"
+		}
+		parts = append(parts, "water exponent about "+unit)
+	}
+	for i := 3; i < 5; i++ {
+		if sizes[i] > 0 {
+			turned = append(turned, errorNames[i])
+		}
+	}
+	if len(turned) > 0 {
+		at := "by itself (the temperatures of the experiments are not known)"
+		if about != nil {
+			at = fmt.Sprintf("about %.0f degC and %s GPa", about.T-zero, short(about.P/1e9))
+		}
+		parts = append(parts, strings.Join(turned, " and ")+" "+at)
+	}
+	s := fmt.Sprintf("Errors of %s: %s", l.Name, join(parts))
+	if l.Errors.LnA > 0 && sizes[0] == 0 {
+		s += "; that of the prefactor is part of these"
+	}
+	return s + "." + recalledErrors(l)
+}
+
+// exponentAbout says about which stress the stress exponent was moved, and why.
+func exponentAbout(l *rheology.Law, about *rheology.Pivot) string {
+	switch {
+	case !l.Tested.Stress.Known():
+		return "about 1 MPa (the stress of the experiments is not known)"
+	case about == nil:
+		return "about 1 MPa"
+	}
+	return "about " + short(about.Stress/1e6) + " MPa"
+}
+
+// recalledErrors is a sentence on the errors that are from memory, empty without any.
+func recalledErrors(l *rheology.Law) string {
+	if all := errorStatuses(l); len(all) == 1 && all[0] == "memory" {
+		return " They are from memory."
+	}
+	var recalled []string
+	for i, st := range l.ErrorStatus() {
+		if st == "memory" {
+			recalled = append(recalled, errorNames[i])
+		}
+	}
+	if len(recalled) == 0 {
+		return ""
+	}
+	return " From memory: that of the " + join(recalled) + "."
 }
 
 // plasticRows writes the numbers of low-temperature plasticity.
@@ -76,10 +180,7 @@ func plasticRows(row func(k, v string), l *rheology.Law) {
 		return
 	}
 	b := l.Peierls
-	s := fmt.Sprintf("%.4g GPa between invariants", b.Stress/1e9)
-	if l.Status.Peierls != "" {
-		s += " (" + numberStatus(l.Status.Peierls) + ")"
-	}
+	s := fmt.Sprintf("%.4g GPa between invariants", b.Stress/1e9) + from(l.Status.Peierls)
 	if b.PerPa > 0 {
 		s += fmt.Sprintf(", rising by %.3g %% per GPa", b.PerPa*1e11)
 	}

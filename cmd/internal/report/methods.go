@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"strings"
 
-	"keelfall/column"
 	"keelfall/solver/race"
 )
 
@@ -32,21 +31,8 @@ func Methods(r *race.Result, p ProvenanceJSON) string {
 	}
 	w("The density jump at a contact is taken at the contact's own pressure and temperature.\n")
 	densities(w, pb)
-	if laws := lawsOf(pb); len(laws) > 0 {
-		w("Creep: ε_II = A τ_II^n d^−m f^r exp[−(E + PV)/RT], laws of one rock acting at one stress, at a strain rate of %.3g 1/s (second invariant).", pb.StrainRate())
-		for _, l := range laws {
-			if b := l.Peierls; l.Plastic() {
-				w("%s: in place of E + PV stands (E + PV)(1 − (τ_II/τ_P)^p)^q with τ_P = %.4g GPa, p = %g, q = %g [kocks1975].", upper(l.Name), b.Stress/1e9, b.P, b.Q)
-			}
-		}
-		w("The upper viscosity limit acts as one more Newtonian mechanism at the same stress, the lower as a dashpot at the same strain rate.\n")
-		w("| law | n | m | r | E kJ/mol | V cm³/mol | test | numbers |")
-		w("|---|---|---|---|---|---|---|---|")
-		for _, l := range laws {
-			w("| %s [creep-%s] | %g | %g | %g | %.4g | %.4g | %s | %s |", l.Name, slug(l.Name), l.N, l.M, l.R, l.E/1e3, l.V*1e6, l.Test, lawStatus(&l))
-		}
-		w("")
-	}
+	measuredMethods(w, pb)
+	creepMethods(w, pb)
 	w("## Growth\n")
 	w("Linear stability of incompressible layered Stokes flow, w = W(z) cos kx, u = U(z) sin kx:\n")
 	w("    W' = −kU,  U' = kW + S/η,  Σ' = −kS − g δρ,  S' = kΣ + 4ηk²U\n")
@@ -87,28 +73,4 @@ func Methods(r *race.Result, p ProvenanceJSON) string {
 		w("* [%s] %s (%s)", s.ID, s.Text, s.Status)
 	}
 	return b.String()
-}
-
-// densities says what makes each density: end-members by mass, reactions, melt.
-func densities(w func(string, ...any), p *race.Problem) {
-	for i := range p.Column.Layers {
-		l := &p.Column.Layers[i]
-		if r, ok := reaction(l); ok {
-			w("%s has reacted to X = %s of its mass; protolith and product conserve mass, 1/ρ = (1 − X)/ρ_A + X/ρ_B. X stays as it is.\n", upper(l.Name), share(r.Extent))
-		}
-		if l.Melt != nil {
-			w("Melt in %s: φ of the volume, ρ = (1 − φ) ρ_s + φ ρ_m where it has a density, creep rates times exp(%g φ) [melt].\n", l.Name, l.Melt.Weakening)
-		}
-		for _, d := range column.Parts(l.Density) {
-			m, ok := d.(*column.Modes)
-			if !ok {
-				continue
-			}
-			var words []string
-			for _, part := range m.Parts() {
-				words = append(words, fmt.Sprintf("%.1f %% %s", 100*part.Mass, part.Mineral.Name))
-			}
-			w("Density of %s from its modes, by mass %s: volumes of the end-members add up at each pressure and temperature [holland1998].\n", l.Name, join(words))
-		}
-	}
 }

@@ -2,6 +2,7 @@ package report
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"keelfall/column"
@@ -10,15 +11,17 @@ import (
 // roomKelvin is 25 degC, at which a mineral's density is listed.
 const roomKelvin = zero + 25
 
-// mineralStatus says the weakest status among a mineral's numbers.
+// mineralStatus says what kinds of number a mineral has; its molar mass is derived.
 func mineralStatus(m *column.Mineral) string {
-	if m.Status.FromMemory() {
-		return "from memory"
+	st := m.Status
+	all := []string{st.V0, st.A0, st.K0, st.BulkModulusDerivative, st.BulkModulusSlope}
+	var out []string
+	for _, k := range []struct{ status, words string }{{"memory", "from memory"}, {"seen", "published"}, {"choice", "choice"}} {
+		if slices.ContainsFunc(all, func(s string) bool { return strings.HasPrefix(s, k.status) }) {
+			out = append(out, k.words)
+		}
 	}
-	if m.Status.A0 == "choice" || m.Status.V0 == "choice" || m.Status.K0 == "choice" {
-		return "a choice of ours"
-	}
-	return "published"
+	return strings.Join(out, ", ")
 }
 
 // numberStatus words the status of one number for people.
@@ -80,7 +83,7 @@ func MineralPage(m *column.Mineral, T, P float64) string {
 	row("bulk modulus K", fmt.Sprintf("%.5g GPa (%s)", m.K0/1e9, numberStatus(st.K0)))
 	row("dK/dP", fmt.Sprintf("%g (%s)", m.BulkModulusDerivative, numberStatus(st.BulkModulusDerivative)))
 	row("(1/K) dK/dT", fmt.Sprintf("%g 1/K (%s)", m.BulkModulusSlope, numberStatus(st.BulkModulusSlope)))
-	row("compression", map[bool]string{false: "Murnaghan 1944", true: "Birch-Murnaghan, third order"}[m.BirchMurnaghan])
+	row("compression", compression(m))
 	b.WriteByte('\n')
 	row("at", fmt.Sprintf("%.4g degC, %.4g GPa", T-zero, P/1e9))
 	row("density", fmt.Sprintf("%.1f kg/m3", m.Density(T, P)))
@@ -97,6 +100,14 @@ func MineralPage(m *column.Mineral, T, P float64) string {
 	row("source", m.Source)
 	row("notes", m.Notes)
 	return b.String()
+}
+
+// compression names the law by which a mineral's volume falls with pressure.
+func compression(m *column.Mineral) string {
+	if m.BirchMurnaghan {
+		return "Birch-Murnaghan, third order"
+	}
+	return "Murnaghan 1944"
 }
 
 // MineralJSON is one end-member in SI, and its state at the temperature and pressure
@@ -117,9 +128,18 @@ type MineralJSON struct {
 	Expansivity number            `json:"expansivity_per_K"`
 	Modulus     number            `json:"bulk_modulus_at_Pa"`
 	Status      mineralStatusJSON `json:"status"`
+	Compression string            `json:"compression"`
+	Seen        mineralSeenJSON   `json:"seen_for_comparison"` // nothing is computed from them
 	Source      string            `json:"source"`
 	Notes       string            `json:"notes"`
 	Warnings    []string          `json:"warnings"`
+}
+
+// mineralSeenJSON are measured values that were read on a page: null or empty where none.
+type mineralSeenJSON struct {
+	Volume number `json:"volume_m3_mol"`
+	Source string `json:"volume_source"`
+	K      string `json:"bulk_modulus_GPa"` // as written, conflicting ones beside each other
 }
 
 type mineralStatusJSON struct {
@@ -139,7 +159,8 @@ func Minerals(list []column.Mineral, T, P float64) []MineralJSON {
 		st := m.Status
 		out = append(out, MineralJSON{m.Name, m.Symbol, m.Formula, number(m.MolarMass), number(m.V0), number(m.A0), number(m.K0), number(m.BulkModulusDerivative), number(m.BulkModulusSlope),
 			number(T), number(P), number(m.Density(T, P)), number(m.Expansivity(T, P)), number(m.BulkModulus(T, P)),
-			mineralStatusJSON{st.MolarMass, st.V0, st.A0, st.K0, st.BulkModulusDerivative, st.BulkModulusSlope}, m.Source, m.Notes, []string{}})
+			mineralStatusJSON{st.MolarMass, st.V0, st.A0, st.K0, st.BulkModulusDerivative, st.BulkModulusSlope},
+			compression(m), mineralSeenJSON{positive(m.SeenVolume), m.SeenVolumeSource, m.SeenBulkModulus}, m.Source, m.Notes, []string{}})
 	}
 	return out
 }

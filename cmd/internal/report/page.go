@@ -25,7 +25,7 @@ func Page(r *race.Result) string {
 		p.b.WriteString("Times in Myr from the start. * = a default, chosen by nobody.\n")
 	}
 	answer(p, r)
-	columnText(p, r.State)
+	columnText(p, r.Problem, r.State)
 	if n := rootNeed(r.State); n != "" {
 		p.say("%s", n)
 	}

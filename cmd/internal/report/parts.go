@@ -24,12 +24,15 @@ func titled(p *race.Problem) *page {
 // ColumnPage is the text of `keelfall column`; depths are those asked for.
 func ColumnPage(p *race.Problem, s *state.State, depths []DepthOf) string {
 	pg := titled(p)
-	columnText(pg, s)
+	columnText(pg, p, s)
 	if drip.RateDependent(s) {
 		pg.say("Viscosity at %.1e 1/s%s.", p.Strain.ReferenceRate, star(p, "strain.reference-rate"))
 	}
 	if s.HasTemperature && len(p.Column.Geotherm) == 0 {
 		pg.say("Largest relative residual of the heat balance %.0e.", s.HeatResidual)
+	}
+	if p.GeothermFit != nil {
+		fitText(pg, p.GeothermFit)
 	}
 	weightText(pg, s)
 	depthsText(pg, s, depths)

@@ -3,6 +3,7 @@ package report
 import (
 	"fmt"
 	"regexp"
+	"slices"
 	"strings"
 
 	"keelfall/column"
@@ -16,7 +17,7 @@ const Version = "0.1.0"
 // SourceJSON is one source that a result rests on.
 type SourceJSON struct {
 	ID     string `json:"id"`
-	Status string `json:"status"` // published, derived, from memory, common practice; for laws, of the numbers
+	Status string `json:"status"` // published, derived, from memory, common practice, choice; for laws, of the numbers
 	Text   string `json:"text"`
 }
 
@@ -65,36 +66,6 @@ func Sources(p *race.Problem) []SourceJSON {
 		s = append(s, SourceJSON{"creep-" + slug(l.Name), lawStatus(&l), l.Name + ": " + l.Source})
 	}
 	return append(s, SourceJSON{"gas-constant", "published", "R = 8.31446261815324 J/(mol K), exact since the SI of 2019"})
-}
-
-// mineralSources lists the end-members whose modes make a density, in one entry a
-// source.
-func mineralSources(p *race.Problem) []SourceJSON {
-	var names []string
-	seen := map[string]bool{}
-	note := func(d column.Density) {
-		for _, d := range column.Parts(d) {
-			m, ok := d.(*column.Modes)
-			if !ok {
-				continue
-			}
-			for _, part := range m.Parts() {
-				if n := part.Mineral.Name; !seen[n] {
-					seen[n] = true
-					names = append(names, n)
-				}
-			}
-		}
-	}
-	for i := range p.Column.Layers {
-		note(p.Column.Layers[i].Density)
-	}
-	note(p.Column.Base.Density)
-	if len(names) == 0 {
-		return nil
-	}
-	return []SourceJSON{{"holland1998", "from memory",
-		"Holland & Powell 1998, J. metamorphic Geol. 16, 309: volumes, expansion and bulk moduli of " + join(names) + ", as recalled, number by number in the mineral table"}}
 }
 
 // flowSources lists what stands around the creep laws: friction, piezometers, mixtures.
@@ -166,6 +137,9 @@ func lawsOf(p *race.Problem) []rheology.Law {
 func lawStatus(l *rheology.Law) string {
 	st := l.Status
 	all := []string{st.A, st.N, st.M, st.R, st.E, st.V, st.Peierls}
+	if !slices.ContainsFunc(all, func(s string) bool { return s != "" }) {
+		return "given" // a user's own, of which nothing is said
+	}
 	for _, s := range all {
 		if s == "memory" {
 			if l.Confidence != "" {

@@ -49,6 +49,9 @@ func weightText(p *page, s *state.State) {
 	if slices.ContainsFunc(all, func(k state.Sinking) bool { return math.IsInf(k.BulkModulus, 0) }) {
 		p.say("A dash for the bulk modulus: that density does not depend on pressure.")
 	}
+	if names := melting(s, all); len(names) > 0 {
+		p.say("Expansivity and bulk modulus of %s count the melt that forms as it is heated or let off pressure.", join(names))
+	}
 	for _, k := range all {
 		if math.Abs(k.Contrast) < 1e-9*k.Density { // one rock above and below
 			continue
@@ -57,6 +60,20 @@ func weightText(p *page, s *state.State) {
 			p.say("%s", need(upper(called(&s.Column.Layers[k.Layer])), k, n)+beyond(s, k.Layer, n))
 		}
 	}
+}
+
+// melting names the layers whose density counts melt that forms at their middle.
+func melting(s *state.State, all []state.Sinking) []string {
+	var out []string
+	for _, k := range all {
+		l := &s.Column.Layers[k.Layer]
+		if m := l.Melt; m.NeedsTemperature() && m.Density > 0 {
+			if _, perKelvin := m.At(k.T, k.P); perKelvin > 0 {
+				out = append(out, called(l))
+			}
+		}
+	}
+	return out
 }
 
 // rootNeed says in one sentence what it takes for the root's lowest layer to sink; empty

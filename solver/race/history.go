@@ -1,0 +1,48 @@
+package race
+
+import (
+	"fmt"
+	"slices"
+
+	"keelfall/column"
+	"keelfall/solver/heat"
+)
+
+// Moving says whether the column changes with time whatever its root does: by events,
+// by a background strain, or by a reaction that runs.
+func (p *Problem) Moving() bool {
+	return len(p.Events) > 0 || p.Strain.ExtensionRate != 0 || slices.ContainsFunc(p.Column.Layers, func(l column.Layer) bool { return reacts(l.Density) })
+}
+
+// reacts says whether a rock's density changes by a reaction with time.
+func reacts(d column.Density) bool {
+	switch d := d.(type) {
+	case column.Molten:
+		return reacts(d.Solid)
+	case column.Reaction:
+		return d.Kinetics != nil && d.Kinetics.Prefactor > 0 && d.Extent < d.Cap
+	}
+	return false
+}
+
+// still refuses events where the column is taken as it is at the start.
+func (p *Problem) still() error {
+	if len(p.Events) == 0 {
+		return nil
+	}
+	return fmt.Errorf("%w: events: run, drip and excise keep the column as it is at the start; keelfall history follows it", ErrInput)
+}
+
+// brings are the verbs that do nothing at the rate 0, where a sweep may well begin.
+var brings = map[string]bool{"accumulate": true, "erode": true, "bury": true}
+
+// HeatPlan is the column's thermal history as package heat takes it, from the start
+// temperatures of the steady or given geotherm. A column without a temperature has none.
+func HeatPlan(p *Problem) (heat.Plan, error) {
+	if !p.Column.HasTemperature() {
+		return heat.Plan{}, fmt.Errorf("%w: a thermal history needs a temperature and the experiment has none; add base.temperature or base.heat-flow, or a geotherm", ErrInput)
+	}
+	c := p.Column
+	events := slices.DeleteFunc(slices.Clone(p.Events), func(e heat.Event) bool { return e.Rate == 0 && brings[e.Verb] })
+	return heat.Plan{Column: &c, ExtensionRate: p.Strain.ExtensionRate, Events: events, Markers: p.Markers}, nil
+}
