@@ -204,21 +204,26 @@ func (ev *Evolution) halves(i int) (a, b cell) {
 		}
 		return quarter(u, f(c), w)
 	}
-	// The temperature goes to the faces, which conduction knows.
-	var de float64
-	if s.latent != 0 {
+	// What lies within bounds stays there, at an edge of the layer too.
+	share := func(f func(*cell) float64) float64 {
+		d, v := pick(f), f(c)
+		return math.Copysign(min(math.Abs(d), math.Abs(v), math.Abs(1-v)), d)
+	}
+	Ta, Tb := ev.faces(i)
+	ea, _ := s.enthalpy(Ta, c.P)
+	eb, _ := s.enthalpy(Tb, c.P)
+	de := limited((c.e-ea)/2, (eb-c.e)/2)
+	if s.latent != 0 && up != nil && down != nil { // it bends at the solidus, faces would not know
 		de = pick(func(c *cell) float64 { return c.e })
-	} else {
-		Ta, Tb := ev.faces(i)
-		de = s.c * limited((c.T-Ta)/2, (Tb-c.T)/2)
 	}
 	a.e, b.e = c.e-de, c.e+de
 	d := pick(func(c *cell) float64 { return c.H })
+	d = math.Copysign(min(math.Abs(d), math.Abs(c.H)), d)
 	a.H, b.H = c.H-d, c.H+d
-	d = pick(func(c *cell) float64 { return c.x })
+	d = share(func(c *cell) float64 { return c.x })
 	a.x, b.x = c.x-d, c.x+d
 	if s.react != nil {
-		d = pick(func(c *cell) float64 { return c.X })
+		d = share(func(c *cell) float64 { return c.X })
 		a.X, b.X = c.X-d, c.X+d
 	}
 	a.T, b.T = a.e/s.c, b.e/s.c

@@ -73,7 +73,8 @@ type Evolution struct {
 // Begin checks the whole plan and returns the column at time 0.
 //
 // The column needs a temperature. Where neither a basal temperature nor a heat flow is
-// given (a given geotherm), the base keeps the temperature it has at the start.
+// given (a given geotherm), the base keeps the temperature it has at the start. Rock of the
+// base without a conductivity or heat capacity has those of the last layer.
 //
 // Errors: those of column.Validate and Solve; a heat capacity that is not positive; an
 // event that is not possible or overlaps another, with its number and name; a marker
@@ -115,6 +116,13 @@ func Begin(p Plan) (*Evolution, error) {
 	}
 	if ev.base.HasTemperature {
 		ev.base.HasHeatFlow = false
+	}
+	last := &c.Layers[len(c.Layers)-1]
+	if ev.base.HeatCapacity == 0 {
+		ev.base.HeatCapacity = last.HeatCapacity
+	}
+	if ev.base.Conductivity.Reference == 0 {
+		ev.base.Conductivity = last.Conductivity
 	}
 	if err := ev.rocks(p.Events); err != nil {
 		return nil, err

@@ -46,16 +46,23 @@ func (s *stratum) density(T, P, x, X float64) float64 {
 	return s.solid.At(T, P, x)
 }
 
-// partials are ∂ρ/∂T and ∂ρ/∂P of density.
-func (s *stratum) partials(T, P, x, X float64) (perKelvin, perPascal float64) {
+// touch makes the tangent of density.
+func (s *stratum) touch(T, P, x, X float64) tangent {
+	t := tangent{T: T, P: P, X: X}
 	if s.react == nil {
-		return s.solid.PerKelvin(T, P, x), s.solid.PerPascal(T, P, x)
+		t.rho, t.perKelvin, t.perPascal = s.solid.At(T, P, x), s.solid.PerKelvin(T, P, x), s.solid.PerPascal(T, P, x)
+	} else {
+		a, b := s.react.Protolith, s.react.Product
+		va, vb := 1/a.At(T, P, x), 1/b.At(T, P, x)
+		t.rho = 1 / ((1-X)*va + X*vb)
+		pa, pb := t.rho*va, t.rho*vb
+		pa, pb = (1-X)*pa*pa, X*pb*pb
+		t.perKelvin = pa*a.PerKelvin(T, P, x) + pb*b.PerKelvin(T, P, x)
+		t.perPascal = pa*a.PerPascal(T, P, x) + pb*b.PerPascal(T, P, x)
+		t.perX = -t.rho * t.rho * (vb - va)
 	}
-	a, b := s.react.Protolith, s.react.Product
-	rho := s.density(T, P, x, X)
-	pa, pb := rho/a.At(T, P, x), rho/b.At(T, P, x)
-	pa, pb = (1-X)*pa*pa, X*pb*pb
-	return pa*a.PerKelvin(T, P, x) + pb*b.PerKelvin(T, P, x), pa*a.PerPascal(T, P, x) + pb*b.PerPascal(T, P, x)
+	t.touched = t.rho
+	return t
 }
 
 // bulk is the density with melt in it, of a solid of density rho.
@@ -103,9 +110,10 @@ type cell struct {
 	solid tangent
 }
 
-// tangent is a density as a linear function near T and P.
+// tangent is a density as a linear function near T, P and X; rho follows X.
 type tangent struct {
-	T, P                      float64
+	T, P, X                   float64
+	touched, perX             float64
 	rho, perKelvin, perPascal float64
 }
 
@@ -113,11 +121,12 @@ func (t *tangent) at(T, P float64) float64 {
 	return t.rho + t.perKelvin*(T-t.T) + t.perPascal*(P-t.P)
 }
 
-// How far T and P may go from where a tangent touches: the curvature of thermal
+// How far T, P and X may go from where a tangent touches: the curvature of thermal
 // expansion, some 1e-8/K², then costs 1e-8 of the density.
 const (
-	tangentT = 2.0 // K
-	tangentP = 2e7 // Pa
+	tangentT = 2.0  // K
+	tangentP = 2e7  // Pa
+	tangentX = 3e-3 // costs 1e-7 of the density, where the parts' differ by a seventh
 )
 
 // settle makes T and the density agree with the cell's enthalpy and pressure.
@@ -127,7 +136,8 @@ func (ev *Evolution) settle(c *cell) {
 		c.T = s.temperature(c.e, c.P)
 	}
 	t := &c.solid
-	if s.react == nil && math.Abs(c.T-t.T) <= tangentT && math.Abs(c.P-t.P) <= tangentP {
+	if math.Abs(c.X-t.X) <= tangentX && math.Abs(c.T-t.T) <= tangentT && math.Abs(c.P-t.P) <= tangentP {
+		t.rho = t.touched + t.perX*(c.X-t.X)
 		return
 	}
 	ev.touch(c)
@@ -136,10 +146,8 @@ func (ev *Evolution) settle(c *cell) {
 // touch renews the tangent.
 func (ev *Evolution) touch(c *cell) {
 	s := &ev.strata[c.layer]
+	c.solid = s.touch(c.T, c.P, c.x, c.X)
 	t := &c.solid
-	t.T, t.P = c.T, c.P
-	t.rho = s.density(c.T, c.P, c.x, c.X)
-	t.perKelvin, t.perPascal = s.partials(c.T, c.P, c.x, c.X)
 	if ev.err != nil {
 		return
 	}

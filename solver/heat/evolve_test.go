@@ -64,7 +64,6 @@ func TestCooling(t *testing.T) {
 		worst = max(worst, math.Abs(T-(273.15+1300*math.Erf(z/math.Sqrt(4e-6*at)))))
 	}
 	q := 3 * 1300 / math.Sqrt(math.Pi*1e-6*at)
-	t.Logf("worst %g K, q %g of %g; %d nodes", worst, p.SurfaceFlow, q, len(p.Layers[0].Nodes))
 	if worst > 0.3 || !close(p.SurfaceFlow, q, 1e-3) {
 		t.Errorf("worst %g K; flow %g, want %g", worst, p.SurfaceFlow, q)
 	}
@@ -94,17 +93,52 @@ func BenchmarkSheets(b *testing.B) {
 	}
 }
 
+// TestSheets: Run's lists belong together, its snapshots are at the times asked, the
+// column is thicker by the sheets, and most of the heat they brought leaves in 97 Myr.
 func TestSheets(t *testing.T) {
-	h, err := heat.Run(context.Background(), speedPlan(), 100*myr, []float64{0, 3 * myr, 100 * myr})
+	p := speedPlan()
+	p.Markers = []heat.Marker{{Name: "m", BaseOf: "upper"}}
+	asked := []float64{100 * myr, 0, 3 * myr}
+	h, err := heat.Run(context.Background(), p, 100*myr, asked)
 	if err != nil {
 		t.Fatal(err)
 	}
-	t.Logf("%d steps, %d rejected; energy %+v", h.Steps, h.Rejected, h.Energy)
-	for _, s := range h.Snapshots {
-		n := 0
-		for _, l := range s.Profile.Layers {
-			n += len(l.Nodes)
+	n := len(h.Time)
+	for i := range h.Time {
+		if i > 0 && !(h.Time[i] > h.Time[i-1]) {
+			t.Fatalf("time %d is %g s after %g s", i, h.Time[i], h.Time[i-1])
 		}
-		t.Logf("%g Myr: %d layers, %d nodes, q %g", s.Time/myr, len(s.Column.Layers), n, s.Profile.SurfaceFlow)
+	}
+	if len(h.SurfaceFlow) != n || len(h.RootBase) != n || len(h.RootThickness) != n || len(h.Depth) != n || len(h.MeltFraction) != n || len(h.Reacted) != n || h.Time[0] != 0 || h.Time[n-1] != 100*myr {
+		t.Errorf("%d times from %g to %g s; other lists differ", n, h.Time[0], h.Time[n-1])
+	}
+	if len(h.Snapshots) != 3 || h.Snapshots[0].Time != 0 || h.Snapshots[1].Time != 3*myr || h.Snapshots[2].Time != 100*myr {
+		t.Fatalf("%d snapshots", len(h.Snapshots))
+	}
+	if a, b := len(h.Snapshots[0].Column.Layers), len(h.Snapshots[1].Column.Layers); a != 4 || b != 9 {
+		t.Errorf("%d layers, then %d", a, b)
+	}
+	// The sheets come in below the marker, which heat moves by less than 1 %.
+	path := h.Paths[0]
+	if d := path.Depth[len(path.Depth)-1]; math.Abs(d/path.Depth[0]-1) > 0.01 {
+		t.Errorf("the base of the layer above the sheets went from %g to %g m", path.Depth[0], d)
+	}
+	if d := h.Depth[n-1] - h.Depth[0]; math.Abs(d/7.5e3-1) > 0.1 {
+		t.Errorf("the column is thicker by %g m", d)
+	}
+	if !(path.Peak > path.T[0]+300) || !(math.Abs(h.RootThickness[n-1]/15e3-1) < 0.02) {
+		t.Errorf("hottest %g K from %g K; root %g m", path.Peak, path.T[0], h.RootThickness[n-1])
+	}
+	still, err := heat.Steady(h.Snapshots[2].Column)
+	if err != nil {
+		t.Fatal(err)
+	}
+	// All five cool with τ = L²/(π²κ) = 80 Myr: exp(−97/80) of the excess is left at most.
+	first, last := h.Snapshots[1].Profile.SurfaceFlow-still.SurfaceFlow, h.SurfaceFlow[n-1]-still.SurfaceFlow
+	if !(first > 0 && math.Abs(last) < 0.3*first) {
+		t.Errorf("surface flow above the steady one: %g at 3 Myr, %g at 100 Myr", first, last)
+	}
+	if !(math.Abs(h.Energy.Missing) <= 1e-10*h.Energy.Moved) {
+		t.Errorf("energy %+v", h.Energy)
 	}
 }

@@ -146,14 +146,14 @@ func (ev *Evolution) solve(s *stage, t, gh float64) error {
 
 const (
 	maxIterations = 12
-	lagged        = 0.02 // of the tolerance: what taking properties at the guess may cost
+	lagged        = 0.1 // of the tolerance: what taking properties at the guess may cost
 )
 
 // assemble fills the linear system for the half-resistances that are there.
 func (ev *Evolution) assemble(s *stage, t, gh float64) {
 	w, n := &ev.w, len(ev.cells)
 	ga := gh * s.area
-	var above float64 // conductance to the cell above
+	var above, produced float64 // above: conductance to the cell above
 	for j := range ev.strata {
 		st := &ev.strata[j]
 		for i := st.lo; i < st.hi; i++ {
@@ -169,13 +169,16 @@ func (ev *Evolution) assemble(s *stage, t, gh float64) {
 			}
 			w.lo[i], w.up[i] = -above, -below
 			w.di[i] = s.M[i]*slope + above + below
-			w.rhs[i] = s.R[i] + gh*s.M[i]*ev.cells[i].H - s.M[i]*(e-slope*T)
+			heat := s.M[i] * ev.cells[i].H
+			produced += heat
+			w.rhs[i] = s.R[i] + gh*heat - s.M[i]*(e-slope*T)
 			if w.run {
 				w.di[i] -= gh * w.beta[i]
 			}
 			above = below
 		}
 	}
+	s.terms.produced = produced / s.area
 	if w.sourced {
 		for i, q := range w.given {
 			w.rhs[i] += ga * q

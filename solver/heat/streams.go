@@ -3,6 +3,7 @@ package heat
 import (
 	"fmt"
 	"math"
+	"slices"
 )
 
 // prepare lists the streams of rock and the sources of the next step, makes the layers
@@ -52,12 +53,16 @@ func (ev *Evolution) list(h float64) {
 		ev.streams = append(ev.streams, ev.edge(j, f))
 		lost -= f.Rate
 	}
+	ev.growing = slices.DeleteFunc(ev.growing, func(f Flux) bool {
+		_, ok := ev.find(f.Layer)
+		if !ok {
+			ev.warnings = append(ev.warnings, fmt.Sprintf("%s is used up at %.4g s and no longer grows", f.Layer, ev.t))
+		}
+		return !ok
+	})
 	for k := range ev.growing {
 		f := &ev.growing[k]
-		j, ok := ev.find(f.Layer)
-		if !ok {
-			continue
-		}
+		j, _ := ev.find(f.Layer)
 		ev.streams = append(ev.streams, ev.edge(j, f))
 		lost -= f.Rate
 	}
