@@ -32,13 +32,15 @@ func Kinks(d Density) []Kink {
 }
 
 // Parts returns the densities a density is made of: protolith and product of a Reaction,
-// the solid of a Molten, and theirs; itself where it is of one piece.
+// the solid of a Molten, the rock of a Varying, and theirs; itself where it is of one piece.
 func Parts(d Density) []Density {
 	switch d := d.(type) {
 	case Reaction:
 		return append(Parts(d.Protolith), Parts(d.Product)...)
 	case Molten:
 		return Parts(d.Solid)
+	case Varying:
+		return Parts(d.Of)
 	}
 	return []Density{d}
 }

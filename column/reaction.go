@@ -142,16 +142,24 @@ func (r Reaction) Validate() error {
 	return nil
 }
 
-// Cautions are those of the parts, and what does not act in a column at one time.
+// Cautions are those of the parts, and where the reacted share stays as it is.
 func (r Reaction) Cautions() []string {
+	return r.cautions(fmt.Sprintf("%g of the mass throughout the layer", r.Extent))
+}
+
+// cautions names the reacted share in words.
+func (r Reaction) cautions(share string) []string {
 	out := densityCautions(r.Protolith)
 	for _, c := range densityCautions(r.Product) {
 		if !slices.Contains(out, c) {
 			out = append(out, c)
 		}
 	}
-	if r.Field != nil || r.Kinetics != nil {
-		out = append(out, fmt.Sprintf("the reacted share, %g of the mass, is the same throughout the layer and stays as it is: where the product is stable and how fast it forms have no effect in this version", r.Extent))
+	switch {
+	case r.Kinetics != nil:
+		out = append(out, "the reacted share, "+share+", stays as it is in run, drip, excise and column; history follows it, by where the product is stable and how fast it forms")
+	case r.Field != nil:
+		out = append(out, "the reacted share, "+share+", stays as it is: where the product is stable has no effect without a rate")
 	}
 	return out
 }

@@ -84,8 +84,16 @@ func TestReactionKinetics(t *testing.T) {
 	if !(column.Reaction{}).Stable(300, 0) {
 		t.Error("without a field the product is stable")
 	}
-	if c := strings.Join(r.Cautions(), ""); !strings.Contains(c, "have no effect in this version") {
+	if c := strings.Join(r.Cautions(), ""); !strings.Contains(c, "throughout the layer, stays as it is in run, drip, excise and column; history follows it") {
 		t.Error(c)
+	}
+	still := r
+	still.Kinetics = nil
+	if c := strings.Join(still.Cautions(), ""); !strings.Contains(c, "has no effect without a rate") {
+		t.Error(c)
+	}
+	if still.Field = nil; len(still.Cautions()) != 0 {
+		t.Error(still.Cautions())
 	}
 }
 

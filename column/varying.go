@@ -58,8 +58,9 @@ func (v Varying) slope(y []float64, i int) float64 {
 	return 3 * (h0 + h1) / ((2*h1+h0)/a + (h1+2*h0)/b)
 }
 
-// here is Of with the reacted share of the depth x, and its place there.
-func (v Varying) here(x float64) (Density, float64) {
+// Here returns the rock x of the way down the layer as one rock, a Reaction with the
+// reacted share there, and the place x to ask it at.
+func (v Varying) Here(x float64) (Density, float64) {
 	place, extent, _, _ := v.at(x)
 	if r, ok := v.Of.(Reaction); ok {
 		return r.WithExtent(extent), place
@@ -78,13 +79,13 @@ func (v Varying) At(T, P, x float64) float64 {
 
 // PerKelvin returns (∂ρ/∂T)_P in kg/m³/K, X held.
 func (v Varying) PerKelvin(T, P, x float64) float64 {
-	d, place := v.here(x)
+	d, place := v.Here(x)
 	return d.PerKelvin(T, P, place)
 }
 
 // PerPascal returns (∂ρ/∂P)_T in kg/m³/Pa, X held.
 func (v Varying) PerPascal(T, P, x float64) float64 {
-	d, place := v.here(x)
+	d, place := v.Here(x)
 	return d.PerPascal(T, P, place)
 }
 
@@ -92,7 +93,7 @@ func (v Varying) PerPascal(T, P, x float64) float64 {
 // change of X with depth adds: (∂ρ/∂X) dX/dx, with ∂ρ/∂X = −ρ²(1/ρ_B − 1/ρ_A).
 func (v Varying) Gradient(T, P, x float64) float64 {
 	_, _, dPlace, dExtent := v.at(x)
-	d, place := v.here(x)
+	d, place := v.Here(x)
 	out := d.Gradient(T, P, place) * dPlace
 	if r, ok := v.Of.(Reaction); ok && dExtent != 0 {
 		rho := d.At(T, P, place)
@@ -136,7 +137,12 @@ func (v Varying) Validate() error {
 	return validDensity(v.Of)
 }
 
-// Cautions are those of Of.
-func (v Varying) Cautions() []string { return densityCautions(v.Of) }
+// Cautions are those of Of, a Reaction's with the reacted shares there are.
+func (v Varying) Cautions() []string {
+	if r, ok := v.Of.(Reaction); ok {
+		return r.cautions(fmt.Sprintf("%.3g to %.3g of the mass by depth", slices.Min(v.Extent), slices.Max(v.Extent)))
+	}
+	return densityCautions(v.Of)
+}
 
 var _ Ranged = Varying{}

@@ -2,6 +2,7 @@ package column
 
 import (
 	"math"
+	"strings"
 	"testing"
 )
 
@@ -36,6 +37,17 @@ func TestVarying(t *testing.T) {
 		if got, want := v.PerPascal(T, P, x), (v.At(T, P+1e6, x)-v.At(T, P-1e6, x))/2e6; math.Abs(got/want-1) > 1e-6 {
 			t.Errorf("∂ρ/∂P at %g: %g, want %g", x, got, want)
 		}
+	}
+	if p := Parts(Molten{Solid: v}); len(p) != 2 || p[0] != of.Protolith || p[1] != of.Product {
+		t.Errorf("parts %v", p)
+	}
+	if d, place := v.Here(0.3); d.At(T, P, place) != v.At(T, P, 0.3) || place != 0.4 || math.Abs(d.(Reaction).Extent-0.6) > 1e-15 {
+		t.Errorf("at 0.3: %+v at %g", d, place)
+	}
+	of.Kinetics = &Kinetics{Prefactor: 1, ActivationEnergy: 1e5}
+	v.Of = of
+	if c := v.Cautions(); len(c) != 1 || !strings.Contains(c[0], "0 to 0.8 of the mass by depth") {
+		t.Errorf("cautions %q", c)
 	}
 	if !v.NeedsTemperature() {
 		t.Error("it needs a temperature")

@@ -111,6 +111,9 @@ func (ev *Evolution) choose(limit float64) bool {
 			}
 			both := d[i] + d[i+1]
 			tiny := min(d[i], d[i+1]) < dmin/2 && both < ev.dmax
+			if i == 0 && ev.eroding > 0 && d[0] < d[1]/2 && s.hi-s.lo > 1 {
+				tiny = true // before it is used up, while its flow is good
+			}
 			calm := count > leastEach && both <= ev.dmax && curve[i] < joinAt*limit && curve[i+1] < joinAt*limit
 			if calm && i > 0 && both > beside*0.7*d[i-1] || calm && i+2 < n && both > beside*0.7*d[i+2] {
 				calm = curve[i]+curve[i+1] < joinAt*limit/16
@@ -143,8 +146,7 @@ func (ev *Evolution) rebuild() {
 		}
 	}
 	ev.cells, ev.spare = out, ev.cells
-	ev.index()
-	ev.press(false)
+	ev.index() // pressures are what they were
 }
 
 // joined is two cells in one.
@@ -213,8 +215,11 @@ func (ev *Evolution) halves(i int) (a, b cell) {
 	ea, _ := s.enthalpy(Ta, c.P)
 	eb, _ := s.enthalpy(Tb, c.P)
 	de := limited((c.e-ea)/2, (eb-c.e)/2)
-	if s.latent != 0 && up != nil && down != nil { // it bends at the solidus, faces would not know
+	switch {
+	case s.latent != 0 && up != nil && down != nil: // it bends at the solidus, faces would not know
 		de = pick(func(c *cell) float64 { return c.e })
+	case s.latent == 0:
+		de = within(s.c*ev.quarter(i, up, down), 2*(c.e-ea), 2*(eb-c.e), de)
 	}
 	a.e, b.e = c.e-de, c.e+de
 	d := pick(func(c *cell) float64 { return c.H })

@@ -23,6 +23,7 @@ type Evolution struct {
 	dmax      float64
 	nonlinear float64 // relative change of properties by temperature, 1/K
 	fixedMesh bool
+	heater    func(t float64, given []float64) // of tests: fills the cells' sources, W/m²
 
 	t, h       float64
 	rate       float64 // extension, 1/s

@@ -123,7 +123,7 @@ func (p *track) closure(c Clock, i int) Closure {
 	case x < fewEFolds:
 		out.Caution = fmt.Sprintf("E/(R T) is %.3g at closure; Dodson's solution needs it well above 1", x)
 	case out.Diffused > unlikely || out.Diffused < 1/unlikely:
-		out.Caution = fmt.Sprintf("after closure %.2g times as much diffuses as on cooling with 1/T linear in time, which Dodson's solution is for; the age is rough%s", out.Diffused, p.byDiffusion())
+		out.Caution = fmt.Sprintf("after closure %s on cooling with 1/T linear in time, which Dodson's solution is for; the age is rough%s", diffuses(out.Diffused), p.byDiffusion())
 	}
 	return out
 }
@@ -229,5 +229,18 @@ func (p *track) neverOpen(c Clock) string {
 	for _, T := range p.T {
 		hottest = math.Max(hottest, T)
 	}
-	return fmt.Sprintf("never hot enough to be open: at most %.0f °C, and %.2g times as much diffuses on the whole path as after a closure; it closed before the path begins", hottest-zeroCelsius, p.later[0])
+	return fmt.Sprintf("never hot enough to be open: at most %.0f °C, and on the whole path %s after a closure; it closed before the path begins", hottest-zeroCelsius, diffuses(p.later[0]))
+}
+
+// diffuses says how many times as much diffuses as on what is named next.
+func diffuses(x float64) string {
+	switch {
+	case x < 1e-3:
+		return "almost nothing diffuses of what does"
+	case x < 1:
+		return fmt.Sprintf("only %.2g times as much diffuses as", x)
+	case x < 1e4:
+		return fmt.Sprintf("%.2g times as much diffuses as", x)
+	}
+	return "many thousand times as much diffuses as"
 }

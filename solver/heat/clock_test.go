@@ -84,7 +84,7 @@ func TestCloseInWords(t *testing.T) {
 		{"a long hold just below", []float64{0, 800, 10, 500, 40, 500, 40.1, 300}, 8.9, "", "8.3 times as much diffuses as on cooling with 1/T linear in time, which Dodson's solution is for; the age is rough (it is as much from 36"},
 		{"hot to the end", []float64{0, 700, 10, 650}, 0, "still open at the end of its path, at 650 °C; at the 5 K/Myr there it closes at 501 °C", ""},
 		{"hot and not cooling", []float64{0, 700, 10, 700}, 0, "still open at the end of its path, at 700 °C and not cooling", ""},
-		{"cold", []float64{0, 200, 10, 200, 20, 250, 30, 250}, 0, "never hot enough to be open: at most 250 °C", ""},
+		{"cold", []float64{0, 200, 10, 200, 20, 250, 30, 250}, 0, "never hot enough to be open: at most 250 °C, and on the whole path almost nothing diffuses of what does after a closure; it", ""},
 		{"cold from the start", []float64{0, 400, 10, 200}, 0, "closed before the path begins: there it is at 400 °C, and at the 20 K/Myr there it closes at 527 °C", ""},
 	} {
 		r, err := c.Close(path(k.points...))

@@ -33,7 +33,11 @@
 //
 // Space: finite volumes, one parcel a cell. Half a cell has the resistance d/2κ_c, a face
 // the sum of the two beside it, which is (d₁+d₂)/(d₁/κ₁+d₂/κ₂) in conductivity and keeps
-// the heat flow continuous where materials meet. Cells are halved where the temperature
+// the heat flow continuous where materials meet. A cell's T is
+// its mean: towards a face the heat made in it adds H_m m d/6κ_c, which keeps the flow right
+// between cells of different size. At the surface, and at a base of given temperature,
+// the flow is that of the parabola through the wall and the two cells beside it, in the
+// scheme itself: what is reported is what leaves. Cells are halved where the temperature
 // curves (down to 1/64 of the coarsest, beside a sheet just intruded) and joined where it
 // does not; both keep mass, enthalpy, heat production and composition.
 //

@@ -1,6 +1,7 @@
 package heat
 
 import (
+	"fmt"
 	"math"
 
 	"keelfall/column"
@@ -99,3 +100,6 @@ type History struct {
 }
 
 var inf = math.Inf(1)
+
+// inMyr writes a time in a message.
+func inMyr(t float64) string { return fmt.Sprintf("%.4g Myr", t/myr) }

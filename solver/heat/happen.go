@@ -15,7 +15,7 @@ import (
 // conductivity that is not positive, a column eroded away).
 func (ev *Evolution) Advance(ctx context.Context, to float64) error {
 	if !(to >= ev.t) || math.IsInf(to, 1) {
-		return fmt.Errorf("heat: cannot advance from %g s to %g s", ev.t, to)
+		return fmt.Errorf("heat: cannot advance from %s to %s", inMyr(ev.t), inMyr(to))
 	}
 	for {
 		if err := ev.moment(); err != nil {
@@ -44,7 +44,7 @@ func (ev *Evolution) moment() error {
 		m := &ev.moments[ev.next]
 		ev.next++
 		if err := m.does(ev, m); err != nil {
-			return fmt.Errorf("heat: %s at %.6g s: %w", m.event.label(), ev.t, err)
+			return fmt.Errorf("heat: %s at %s: %w", m.event.label(), inMyr(ev.t), err)
 		}
 		done = true
 	}

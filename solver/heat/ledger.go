@@ -120,12 +120,8 @@ func abs(x float64) float64 {
 // properties at hand.
 func (ev *Evolution) account(s *stage, t float64) {
 	w, n := &ev.w, len(ev.cells)
-	b := terms{produced: s.terms.produced, surface: (s.T[0] - ev.surfaceAt(t)) / w.half[0]}
-	if ev.base.HasHeatFlow {
-		b.conducted = ev.base.HeatFlow
-	} else {
-		b.conducted = (ev.base.Temperature - s.T[n-1]) / w.half[n-1]
-	}
+	b := terms{produced: s.terms.produced}
+	b.surface, b.conducted = ev.through(s.T, t)
 	if w.run {
 		for i := range n {
 			b.compression += w.beta[i] * s.T[i]

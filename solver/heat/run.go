@@ -18,7 +18,7 @@ func Run(ctx context.Context, p Plan, until float64, times []float64) (*History,
 	times = slices.Clone(times)
 	slices.Sort(times)
 	if n := len(times); n > 0 && !(times[0] >= 0 && times[n-1] <= until) {
-		return nil, fmt.Errorf("heat: snapshots at %g to %g s; the run is from 0 to %g s", times[0], times[n-1], until)
+		return nil, fmt.Errorf("heat: snapshots at %s to %s; the run is from 0 to %s", inMyr(times[0]), inMyr(times[n-1]), inMyr(until))
 	}
 	h := &History{}
 	ev.record = func() { ev.note(h) }
@@ -56,12 +56,6 @@ func (ev *Evolution) note(h *History) {
 	h.Depth = append(h.Depth[:n], r.Own)
 	h.MeltFraction = append(h.MeltFraction[:n], r.MeltFraction)
 	h.Reacted = append(h.Reacted[:n], r.Reacted)
-}
-
-// SurfaceFlow returns the heat conducted out at the surface now, W/m².
-func (ev *Evolution) SurfaceFlow() float64 {
-	c := &ev.cells[0]
-	return 2 * ev.conductance(c) * (c.T - ev.surfaceAt(ev.t))
 }
 
 // RootState is the root, and what else is read off the column at one time.

@@ -78,11 +78,11 @@ func (ev *Evolution) possible(e *Event) error {
 	}
 	switch {
 	case !number(e.From, e.To, e.Rate, e.Thickness, e.Temperature, e.HeatFlow, e.Share, e.Every) || e.Temperature < 0:
-		return fmt.Errorf("a number that is none, or a temperature below 0 K: %g to %g s, rate %g, thickness %g m, temperature %g K, heat flow %g W/m², share %g", e.From, e.To, e.Rate, e.Thickness, e.Temperature, e.HeatFlow, e.Share)
+		return fmt.Errorf("a number that is none, or a temperature below 0 K: %s to %s, rate %g, thickness %g m, temperature %g K, heat flow %g W/m², share %g", inMyr(e.From), inMyr(e.To), e.Rate, e.Thickness, e.Temperature, e.HeatFlow, e.Share)
 	case e.From < 0:
-		return fmt.Errorf("it begins at %g s, before the start", e.From)
+		return fmt.Errorf("it begins at %s, before the start", inMyr(e.From))
 	case e.lasts() && !(e.To > e.From):
-		return fmt.Errorf("it ends at %g s, not after it begins at %g s", e.To, e.From)
+		return fmt.Errorf("it ends at %s, not after it begins at %s", inMyr(e.To), inMyr(e.From))
 	case e.lasts() && e.Verb != "stretch" && !(e.Rate > 0):
 		return fmt.Errorf("rate %g m/s, must be > 0", e.Rate)
 	}
@@ -96,7 +96,7 @@ func (ev *Evolution) possible(e *Event) error {
 			return fmt.Errorf("thickness %g m and temperature %g K, must be > 0", e.Thickness, e.Temperature)
 		}
 		if e.Times < 0 || e.Times > 1 && !(e.Every > 0) {
-			return fmt.Errorf("%d times, every %g s", e.Times, e.Every)
+			return fmt.Errorf("%d times, every %s", e.Times, inMyr(e.Every))
 		}
 		return ev.newRock(e)
 	case "change-base":
@@ -198,10 +198,10 @@ func (ev *Evolution) rehearse(events []Event) error {
 			depth *= math.Exp(-rate * dt)
 		}
 		if !(depth > 0) {
-			return fail("by %g s the whole column is eroded away", m.t)
+			return fail("by %s the whole column is eroded away", inMyr(m.t))
 		}
 		if e.Layer != "" && at(e.Layer) < 0 {
-			return fail("there is no layer %q at %g s", e.Layer, m.t)
+			return fail("there is no layer %q at %s", e.Layer, inMyr(m.t))
 		}
 		if e.Layer == "" && (e.Verb == "intrude" || e.Verb == "accumulate" || e.Verb == "remove") {
 			return fail("it needs a layer")

@@ -46,13 +46,13 @@ func (ev *Evolution) Snapshot() (*column.Column, *Profile, error) {
 		}
 	}
 	if len(p.Layers) == 0 {
-		return nil, nil, fmt.Errorf("heat: at %.6g s nothing is left of the column but rock of the base, which is fluid", ev.t)
+		return nil, nil, fmt.Errorf("heat: at %s nothing is left of the column but rock of the base, which is fluid", inMyr(ev.t))
 	}
 	p.SurfaceFlow = p.Layers[0].Nodes[0].Flow
 	last := p.Layers[len(p.Layers)-1].Nodes
 	p.BaseFlow = last[len(last)-1].Flow
 	if err := c.Validate(); err != nil {
-		return nil, nil, fmt.Errorf("heat: at %.6g s: %w", ev.t, err)
+		return nil, nil, fmt.Errorf("heat: at %s: %w", inMyr(ev.t), err)
 	}
 	return &c, p, ev.err
 }
@@ -88,6 +88,12 @@ func (ev *Evolution) curves(j int, top, P float64) Layer {
 	for _, e := range [][2]int{{0, 1}, {n + 1, n}} {
 		at, c := x[e[0]], x[e[1]]
 		slope[e[0]] *= s.k.Value(c.T, c.P) / s.k.Value(at.T, at.P)
+	}
+	if j == 0 {
+		slope[0] = ev.SurfaceFlow() / s.k.Value(x[0].T, x[0].P)
+	}
+	if j == len(ev.strata)-1 {
+		slope[n+1] = ev.baseFlow() / s.k.Value(x[n+1].T, x[n+1].P)
 	}
 	for i := range x {
 		x[i].Flow = s.k.Value(x[i].T, x[i].P) * slope[i]

@@ -3,8 +3,8 @@ package heat
 // place finds the cells of the sources of heat.
 func (ev *Evolution) place() {
 	w, n := &ev.w, len(ev.cells)
-	w.sourced = len(ev.sources) > 0
-	if !w.sourced {
+	w.sourced = len(ev.sources) > 0 || ev.heater != nil
+	if !w.sourced || ev.heater != nil {
 		return
 	}
 	w.size(n)

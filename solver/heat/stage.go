@@ -33,12 +33,14 @@ type terms struct {
 // work holds the linear system of a stage and what it was made of.
 type work struct {
 	half         []float64 // thermal resistance of half a cell, m² K/W
+	bend         []float64 // what the heat made in a cell adds to its mean T towards a face, K
 	lo, di, up   []float64 // the matrix; after elimination di holds 1/pivot, up the multipliers
 	rhs          []float64
 	beta, given  []float64 // α dP/dt m/ρ, W/m²/K; sources, W/m²
 	guess        []float64
 	lin, slope   []float64 // enthalpy and ∂e/∂T at the guess
 	rise         []float64 // dP/dt, Pa/s
+	top, foot    edge
 	sourced, run bool
 }
 
@@ -62,7 +64,7 @@ func (s *stage) size(n int) {
 }
 
 func (w *work) size(n int) {
-	for _, x := range []*[]float64{&w.half, &w.lo, &w.di, &w.up, &w.rhs, &w.beta, &w.given, &w.guess, &w.lin, &w.slope, &w.rise} {
+	for _, x := range []*[]float64{&w.half, &w.bend, &w.lo, &w.di, &w.up, &w.rhs, &w.beta, &w.given, &w.guess, &w.lin, &w.slope, &w.rise} {
 		*x = sized(*x, n)
 	}
 }
@@ -96,6 +98,7 @@ func (ev *Evolution) properties(s *stage, T []float64) bool {
 				return false
 			}
 			w.half[i] = r
+			w.bend[i] = c.H * s.M[i] * r / (3 * s.area)
 			if w.run {
 				solid := c.solid.at(T[i], s.P[i])
 				w.beta[i] = -s.M[i] * c.solid.perKelvin / (solid * solid) * w.rise[i]
@@ -112,6 +115,10 @@ func (ev *Evolution) solve(s *stage, t, gh float64) error {
 	for range maxIterations {
 		if !ev.properties(s, w.guess) {
 			return errIterations
+		}
+		ev.edges(s, w.guess, t)
+		if ev.heater != nil {
+			ev.heater(t, w.given)
 		}
 		ev.assemble(s, t, gh)
 		thomas(w.lo, w.di, w.up, w.rhs, s.T)
@@ -153,7 +160,7 @@ const (
 func (ev *Evolution) assemble(s *stage, t, gh float64) {
 	w, n := &ev.w, len(ev.cells)
 	ga := gh * s.area
-	var above, produced float64 // above: conductance to the cell above
+	var above, lifted, produced float64 // above: conductance to the cell above; lifted: that times its bend
 	for j := range ev.strata {
 		st := &ev.strata[j]
 		for i := st.lo; i < st.hi; i++ {
@@ -167,15 +174,16 @@ func (ev *Evolution) assemble(s *stage, t, gh float64) {
 			if i+1 < n {
 				below = ga / (w.half[i] + w.half[i+1])
 			}
+			bent := below * w.bend[min(i+1, n-1)]
 			w.lo[i], w.up[i] = -above, -below
 			w.di[i] = s.M[i]*slope + above + below
 			heat := s.M[i] * ev.cells[i].H
 			produced += heat
-			w.rhs[i] = s.R[i] + gh*heat - s.M[i]*(e-slope*T)
+			w.rhs[i] = s.R[i] + gh*heat - s.M[i]*(e-slope*T) + bent - (above+below)*w.bend[i] + lifted
 			if w.run {
 				w.di[i] -= gh * w.beta[i]
 			}
-			above = below
+			above, lifted = below, below*w.bend[i]
 		}
 	}
 	s.terms.produced = produced / s.area
@@ -184,16 +192,7 @@ func (ev *Evolution) assemble(s *stage, t, gh float64) {
 			w.rhs[i] += ga * q
 		}
 	}
-	g := ga / w.half[0]
-	w.di[0] += g
-	w.rhs[0] += g * ev.surfaceAt(t)
-	if ev.base.HasHeatFlow {
-		w.rhs[n-1] += ga * ev.base.HeatFlow
-	} else {
-		g = ga / w.half[n-1]
-		w.di[n-1] += g
-		w.rhs[n-1] += g * ev.base.Temperature
-	}
+	ev.conducts(t, ga)
 	for k := range ev.streams {
 		ev.carry(&ev.streams[k], s, t, ga)
 	}

@@ -156,15 +156,21 @@ func (ev *Evolution) rates() error {
 	if !ev.properties(s, w.guess) {
 		return ev.domain
 	}
+	ev.edges(s, s.T, ev.t)
+	if ev.heater != nil {
+		ev.heater(ev.t, w.given)
+	}
 	// From face to face: the linear system would lose it in round-off.
-	above := (s.T[0] - ev.surfaceAt(ev.t)) / w.half[0] // leaves at the cell's top
+	above, last := ev.through(s.T, ev.t) // above leaves at the cell's top
 	for i := range n {
-		below := ev.base.HeatFlow
+		below := last
 		switch {
+		case i == 0 && n > 1:
+			below = w.top.from(s.T[0], s.T[1], ev.surfaceAt(ev.t))
+		case i == n-2 && !ev.base.HasHeatFlow:
+			below = -w.foot.from(s.T[n-1], s.T[n-2], ev.base.Temperature)
 		case i+1 < n:
-			below = (s.T[i+1] - s.T[i]) / (w.half[i] + w.half[i+1])
-		case !ev.base.HasHeatFlow:
-			below = (ev.base.Temperature - s.T[i]) / w.half[i]
+			below = (s.T[i+1] + w.bend[i+1] - s.T[i] - w.bend[i]) / (w.half[i] + w.half[i+1])
 		}
 		f := below - above + s.M[i]*ev.cells[i].H
 		if w.run {
@@ -195,7 +201,7 @@ func (ev *Evolution) step(limit float64) error {
 		ev.setStreams(h)
 		worst, err := ev.attempt(h)
 		if err != nil && err != errIterations {
-			return fmt.Errorf("%w, at %.6g s", err, ev.t)
+			return fmt.Errorf("%w, at %s", err, inMyr(ev.t))
 		}
 		if err != nil {
 			worst = inf
@@ -204,11 +210,11 @@ func (ev *Evolution) step(limit float64) error {
 		if worst > ev.tolerance {
 			ev.rejected++
 			ev.h = h * min(max(factor, shrink/2), safety)
-			if ev.h < max(1e-12*ev.t, 1) {
+			if ev.h < max(1e-14*ev.t, 1e-2) {
 				if err != nil && ev.domain.layer != "" {
-					return fmt.Errorf("%w (after %.6g s)", ev.domain, ev.t)
+					return fmt.Errorf("%w (after %s)", ev.domain, inMyr(ev.t))
 				}
-				return fmt.Errorf("heat: at %.6g s the time step falls to %.3g s; the error is still %.3g K", ev.t, ev.h, worst)
+				return fmt.Errorf("heat: at %s the time step falls to %.3g s; the error is still %.3g K", inMyr(ev.t), ev.h, worst)
 			}
 			continue
 		}

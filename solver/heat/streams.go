@@ -11,7 +11,7 @@ import (
 func (ev *Evolution) prepare(limit float64) error {
 	before := len(ev.streams)
 	if len(ev.strata) == 0 || len(ev.cells) == 0 {
-		return fmt.Errorf("heat: at %.6g s nothing is left of the column", ev.t)
+		return fmt.Errorf("heat: at %s nothing is left of the column", inMyr(ev.t))
 	}
 	for tries := 0; ; tries++ {
 		h := min(ev.h, limit)
@@ -24,7 +24,7 @@ func (ev *Evolution) prepare(limit float64) error {
 			break
 		}
 		if tries > len(ev.cells)+100 {
-			return fmt.Errorf("heat: at %.6g s the layers that lose rock cannot be followed", ev.t)
+			return fmt.Errorf("heat: at %s the layers that lose rock cannot be followed", inMyr(ev.t))
 		}
 	}
 	if len(ev.streams) != before {
@@ -56,7 +56,7 @@ func (ev *Evolution) list(h float64) {
 	ev.growing = slices.DeleteFunc(ev.growing, func(f Flux) bool {
 		_, ok := ev.find(f.Layer)
 		if !ok {
-			ev.warnings = append(ev.warnings, fmt.Sprintf("%s is used up at %.4g s and no longer grows", f.Layer, ev.t))
+			ev.warnings = append(ev.warnings, fmt.Sprintf("%s is used up at %s and no longer grows", f.Layer, inMyr(ev.t)))
 		}
 		return !ok
 	})
@@ -202,7 +202,7 @@ func (ev *Evolution) starve(h float64) (bool, error) {
 		if s.hi-s.lo == 1 && d <= sliver {
 			ev.takeOut(f.cell, ev.reason(f), f.below)
 			if len(ev.strata) == 0 {
-				return false, fmt.Errorf("heat: at %.6g s the whole column is gone", ev.t)
+				return false, fmt.Errorf("heat: at %s the whole column is gone", inMyr(ev.t))
 			}
 			ev.press(false)
 			return true, ev.err

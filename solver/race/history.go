@@ -19,6 +19,9 @@ func reacts(d column.Density) bool {
 	switch d := d.(type) {
 	case column.Molten:
 		return reacts(d.Solid)
+	case column.Varying: // it goes on where less has reacted than can
+		r, ok := d.Of.(column.Reaction)
+		return ok && reacts(r.WithExtent(slices.Min(d.Extent)))
 	case column.Reaction:
 		return d.Kinetics != nil && d.Kinetics.Prefactor > 0 && d.Extent < d.Cap
 	}

@@ -54,6 +54,15 @@ func TestMoving(t *testing.T) {
 		"in a melt": {func(p *race.Problem) {
 			p.Column.Layers[0].Density = column.Molten{Solid: reaction, Melt: &column.Melt{}}
 		}, true},
+		"by depth": {func(p *race.Problem) {
+			p.Column.Layers[0].Density = column.Varying{Of: reaction, Depth: []float64{0, 1}, Place: []float64{0, 1}, Extent: []float64{0.4, 1}}
+		}, true},
+		"by depth, all of it": {func(p *race.Problem) {
+			p.Column.Layers[0].Density = column.Varying{Of: reaction, Depth: []float64{0, 1}, Place: []float64{0, 1}, Extent: []float64{1, 1}}
+		}, false},
+		"moved, no reaction": {func(p *race.Problem) {
+			p.Column.Layers[0].Density = column.Varying{Of: column.Linear{Top: 3200, Bottom: 3300}, Depth: []float64{0, 1}, Place: []float64{0.3, 1}}
+		}, false},
 		"one that has": {func(p *race.Problem) { p.Column.Layers[0].Density = reaction.WithExtent(1) }, false},
 		"without rate": {func(p *race.Problem) {
 			r := reaction

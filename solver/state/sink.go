@@ -96,14 +96,18 @@ type handle struct {
 // handles returns what can be changed in a density at one T and P.
 func handles(d column.Density, T, P float64) []handle {
 	var melt []handle
-	whole := func(solid column.Density) float64 { return solid.At(T, P, middle) }
+	x := middle
+	whole := func(solid column.Density) float64 { return solid.At(T, P, x) }
 	if m, ok := d.(column.Molten); ok {
 		phi, _ := m.Melt.At(T, P)
 		if m.Melt != nil && m.Melt.Density > 0 {
 			melt = []handle{{"melt fraction", phi, func(v float64) float64 { return m.AtFraction(T, P, middle, v) }}}
 		}
-		whole = func(solid column.Density) float64 { return column.Molten{Solid: solid, Melt: m.Melt}.At(T, P, middle) }
+		whole = func(solid column.Density) float64 { return column.Molten{Solid: solid, Melt: m.Melt}.At(T, P, x) }
 		d = m.Solid
+	}
+	if v, ok := d.(column.Varying); ok {
+		d, x = v.Here(middle)
 	}
 	var out []handle
 	switch d := d.(type) {

@@ -66,6 +66,11 @@ func TestSinkingReaction(t *testing.T) {
 	if n := all[1].Needs; len(n) != 2 || !close(n[0].At, want, 1e-12) || n[1].What != "melt fraction" || n[1].Now != 0.1 || n[1].Rises || n[1].Found {
 		t.Errorf("%+v, want %.15g and no fraction that makes a light rock sink", n, want)
 	}
+	c.Layers[1].Density = column.Molten{Solid: column.Varying{Of: r, Depth: []float64{0, 0.5, 1}, Place: []float64{0, 0.7, 1}, Extent: []float64{0.1, 0.4, 0.5}}, Melt: melt}
+	_, all = sinking(t, c)
+	if n := all[1].Needs; len(n) != 2 || n[0].What != "reaction extent" || n[0].Now != 0.4 || !close(n[0].At, want, 1e-12) || n[1].What != "melt fraction" {
+		t.Errorf("reacted share by depth: %+v, want %.15g", n, want)
+	}
 	r.Extent = 0.8
 	c.Layers[1].Density = column.Molten{Solid: r, Melt: melt}
 	_, all = sinking(t, c)

@@ -167,7 +167,7 @@ func reacted(s *state.State) []string {
 	for i := range s.Column.Layers {
 		l := &s.Column.Layers[i]
 		if r, ok := reaction(l); ok {
-			out = append(out, fmt.Sprintf("%s has reacted to %s of its mass, of %s at most.", upper(called(l)), share(r.Extent), share(r.Cap)))
+			out = append(out, fmt.Sprintf("%s has reacted to %s of its mass, of %s at most.", upper(called(l)), extent(l), share(r.Cap)))
 		}
 		if l.Melt == nil {
 			continue
@@ -190,14 +190,38 @@ func reacted(s *state.State) []string {
 	return out
 }
 
-// reaction returns a layer's two-state density, melt aside.
+// reaction returns a layer's two-state density, melt aside. Where the reacted share
+// varies in the layer, its Extent is none of them: see extent.
 func reaction(l *column.Layer) (column.Reaction, bool) {
-	d := l.Density
-	if m, ok := d.(column.Molten); ok {
-		d = m.Solid
+	d := solid(l)
+	if v, ok := d.(column.Varying); ok {
+		d = v.Of
 	}
 	r, ok := d.(column.Reaction)
 	return r, ok
+}
+
+// extent writes the reacted share of a layer with a two-state density, or its range.
+func extent(l *column.Layer) string {
+	switch d := solid(l).(type) {
+	case column.Reaction:
+		return share(d.Extent)
+	case column.Varying:
+		least, most := share(slices.Min(d.Extent)), share(slices.Max(d.Extent))
+		if least != most {
+			return least + " to " + most
+		}
+		return most
+	}
+	return ""
+}
+
+// solid is a layer's density, melt aside.
+func solid(l *column.Layer) column.Density {
+	if m, ok := l.Density.(column.Molten); ok {
+		return m.Solid
+	}
+	return l.Density
 }
 
 // called is what a sentence calls a layer: the root, or its name.

@@ -15,7 +15,7 @@ func densities(w func(string, ...any), p *race.Problem) {
 	for i := range p.Column.Layers {
 		l := &p.Column.Layers[i]
 		if r, ok := reaction(l); ok {
-			w("%s has reacted to X = %s of its mass; protolith and product conserve mass, 1/ρ = (1 − X)/ρ_A + X/ρ_B. X stays as it is.\n", upper(l.Name), share(r.Extent))
+			w("%s has reacted to X = %s of its mass; protolith and product conserve mass, 1/ρ = (1 − X)/ρ_A + X/ρ_B. X %s.\n", upper(l.Name), extent(l), stays(&r))
 		}
 		meltMethods(w, l.Name, l.Melt)
 		modesMethods(w, l.Name, l.Density)
@@ -25,6 +25,14 @@ func densities(w func(string, ...any), p *race.Problem) {
 	if base.Density != nil {
 		modesMethods(w, "the half-space", base.Density)
 	}
+}
+
+// stays says where the reacted share stays as it is.
+func stays(r *column.Reaction) string {
+	if r.Kinetics == nil {
+		return "stays as it is"
+	}
+	return "stays as it is in run, drip, excise and column; history follows it"
 }
 
 // meltMethods says how much melt a rock has and what it does.
@@ -66,6 +74,8 @@ func modesMethods(w func(string, ...any), name string, d column.Density) {
 		modesMethods(w, "the product of "+name, d.Product)
 	case column.Molten:
 		modesMethods(w, name, d.Solid)
+	case column.Varying:
+		modesMethods(w, name, d.Of)
 	case *column.Modes:
 		var words, ids []string
 		for _, part := range d.Parts() {

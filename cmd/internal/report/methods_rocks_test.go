@@ -6,6 +6,7 @@ import (
 	"strings"
 	"testing"
 
+	"keelfall/column"
 	"keelfall/configs"
 	"keelfall/solver/race"
 )
@@ -131,5 +132,35 @@ func TestMeltCounts(t *testing.T) {
 		if got := strings.Join(strings.Fields(ColumnPage(p, s, nil)), " "); strings.Contains(got, said) != want {
 			t.Errorf("solidus %s:\n%s", solidus, got)
 		}
+	}
+}
+
+// TestReactedByDepth: a rock whose reacted share varies in its layer is told by its range,
+// and by what makes its parts.
+func TestReactedByDepth(t *testing.T) {
+	p := problem(t, molten)
+	root := &p.Column.Layers[1]
+	r, ok := reaction(root)
+	if !ok {
+		t.Fatalf("%s does not react", root.Name)
+	}
+	m := root.Density.(column.Molten)
+	m.Solid = column.Varying{Of: r, Depth: []float64{0, 1}, Place: []float64{0, 1}, Extent: []float64{0.125, 0.5}}
+	root.Density = m
+	var b strings.Builder
+	densities(func(format string, a ...any) { fmt.Fprintf(&b, format+"\n", a...) }, p)
+	for _, want := range []string{"Root has reacted to X = 0.12 to 0.50 of its mass", "Density of the protolith of root from its modes"} {
+		if !strings.Contains(b.String(), want) {
+			t.Errorf("%q is not in\n%s", want, b.String())
+		}
+	}
+	m.Solid = column.Varying{Of: r, Depth: []float64{0, 1}, Place: []float64{0.1, 1}, Extent: []float64{0.5, 0.5}}
+	root.Density = m
+	if got := extent(root); got != "0.50" {
+		t.Errorf("one share: %s", got)
+	}
+	r.Kinetics = &column.Kinetics{Prefactor: 1}
+	if !strings.Contains(stays(&r), "history follows it") {
+		t.Error(stays(&r))
 	}
 }
