@@ -1,0 +1,133 @@
+package drip
+
+import (
+	"math"
+	"math/rand/v2"
+	"testing"
+
+	"keelfall/column"
+	"keelfall/rheology"
+	"keelfall/solver/state"
+)
+
+// rocks is a column of a mixture with friction, of creep beside diffusion under limits,
+// and of a number, invented.
+func rocks(t *testing.T) *state.State {
+	t.Helper()
+	creep := func(laws ...rheology.Law) column.Viscosity {
+		return column.Viscosity{Creep: &rheology.Creep{Laws: laws}, Exponent: 1, Factor: 1}
+	}
+	rock := func(density float64, v column.Viscosity) column.Rock {
+		return column.Rock{Density: column.Uniform(density), Viscosity: v, Conductivity: column.Conductivity{Reference: 3}, HeatCapacity: 1000}
+	}
+	fast := rheology.Law{Name: "power", A: 1e-16, N: 3.5, E: 200e3}
+	slow := rheology.Law{Name: "line", A: 1e-12, N: 1, E: 200e3}
+	yields := rock(2800, creep(fast))
+	yields.Friction = &rheology.Friction{Cohesion: 2e7, Angle: 0.5}
+	s, err := state.New(&column.Column{Gravity: 9.81, Surface: column.Surface{Boundary: column.Free, Temperature: 273.15},
+		Layers: []column.Layer{
+			{Name: "yields", Thickness: 20e3, Rock: yields},
+			{Name: "both", Thickness: 20e3, Root: true, Rock: rock(3400, creep(fast, slow))},
+			{Name: "number", Thickness: 10e3, Rock: rock(3200, column.Viscosity{Top: 1e21, Bottom: 1e20, Exponent: 4, Factor: 1})},
+		},
+		Base:   column.Base{Boundary: column.Rigid, HasTemperature: true, Temperature: 1273.15},
+		Limits: rheology.Limits{Lowest: 1e18, Highest: 1e25}}, 1e-15)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return s
+}
+
+// The tables agree with the law to 1e-6, over 18 decades of strain rate.
+func TestLawTable(t *testing.T) {
+	s := rocks(t)
+	r := rand.New(rand.NewPCG(1, 2))
+	for layer := range 3 {
+		top, bottom := s.Span(layer)
+		for _, share := range []float64{0.1, 0.5, 0.9} {
+			l := newNodeLaw(s, layer, top+share*(bottom-top))
+			var worst float64
+			for range 2000 {
+				ln := -60 + 40*r.Float64()
+				want, _, err := l.exact(ln)
+				if err != nil {
+					t.Fatal(err)
+				}
+				eta, _, err := l.eta(math.Exp(2 * ln))
+				if err != nil {
+					t.Fatal(err)
+				}
+				worst = math.Max(worst, math.Abs(math.Log(eta)-want))
+			}
+			if worst > 1e-6 {
+				t.Errorf("layer %d at %g of it: ln η off by %g", layer, share, worst)
+			}
+		}
+	}
+}
+
+// The means of twenty points agree with those of 20 000, and never lose their sign.
+func TestMeans(t *testing.T) {
+	s := rocks(t)
+	r := rand.New(rand.NewPCG(3, 4))
+	const n = 20000
+	for layer := range 3 {
+		top, bottom := s.Span(layer)
+		l := newNodeLaw(s, layer, (top+bottom)/2)
+		var worst float64
+		for range 200 {
+			b := rates{d: 1e-15 * (r.Float64() - 0.5), second: 1e-15}
+			shear, normal := 1e-15*math.Exp(3*r.NormFloat64()), 1e-15*math.Exp(3*r.NormFloat64())
+			if r.IntN(2) == 0 {
+				b = rates{}
+			}
+			var etaS, etaN float64
+			for i := range n {
+				y, x := math.Sincos((float64(i) + 0.5) * math.Pi / n)
+				v := b.d - normal*x
+				eta, _, err := l.eta(v*v + shear*shear/4*y*y + b.second*b.second - b.d*b.d)
+				if err != nil {
+					t.Fatal(err)
+				}
+				etaS += 2 * eta * y * y / n
+				etaN += (2*eta*x*x - 2*b.d*eta*x/normal) / n
+			}
+			m, err := l.closure(shear, normal, b, 1e-60)
+			if err != nil {
+				t.Fatal(err)
+			}
+			// each in proportion to its share of the dissipation
+			ds, dn := etaS*shear*shear, 4*etaN*normal*normal
+			miss := (ds*math.Abs(m.lnS-math.Log(etaS)) + dn*math.Abs(m.lnN-math.Log(etaN))) / (ds + dn)
+			worst = math.Max(worst, miss)
+		}
+		if worst > 1e-3 {
+			t.Errorf("layer %d: off by %g", layer, worst)
+		}
+	}
+}
+
+// Steps, tolerance and mesh of the default give a drip's time to 1e-4.
+func TestStepsOfDescent(t *testing.T) {
+	s := rocks(t)
+	for _, b := range []Background{{}, {ExtensionRate: 1e-16, AlongStrike: true}} {
+		var times [2]float64
+		for i := range times {
+			f, err := NewSoft(s, b)
+			if err != nil {
+				t.Fatal(err)
+			}
+			if i == 1 {
+				f.stepError, f.tolerance, f.span = softError/100, 1e-8, 1.5
+			}
+			d, err := f.Time(2*math.Pi/50e3, 500, 5000, Horizon)
+			if err != nil {
+				t.Fatal(err)
+			}
+			times[i] = d.Time
+		}
+		if !(math.Abs(times[0]/times[1]-1) < 1e-4) {
+			t.Errorf("%+v: %.8g s, with finer steps %.8g", b, times[0], times[1])
+		}
+	}
+}

@@ -1,0 +1,165 @@
+package drip
+
+import (
+	"math"
+	"slices"
+)
+
+// guess extrapolates the fixed points found to another amplitude, in ln of both.
+func (b *softBand) guess(size float64) {
+	if b.past[0].x == nil || !(size > 0) {
+		return
+	}
+	copy(b.x, b.past[0].x)
+	if b.past[1].x == nil {
+		return
+	}
+	t := (math.Log(size) - b.past[0].lnSize) / (b.past[0].lnSize - b.past[1].lnSize)
+	t = math.Min(math.Max(t, -1), 3)
+	for i, v := range b.past[1].x {
+		b.x[i] += t * (b.past[0].x[i] - v)
+	}
+}
+
+// keep remembers a fixed point, in place of the latest where that is at the same amplitude.
+func (b *softBand) keep(size float64) {
+	if !(size > 0) {
+		return
+	}
+	ln := math.Log(size)
+	if p := &b.past[0]; p.x != nil && math.Abs(ln-p.lnSize) > 0.02 {
+		b.past[0], b.past[1] = b.past[1], b.past[0]
+	}
+	p := &b.past[0]
+	p.lnSize = ln
+	p.x = append(p.x[:0], b.x...)
+	if b.past[1].x == nil && b.past[0].x != nil && !b.begun {
+		b.start, b.begun = append(b.start[:0], b.x...), true
+	}
+}
+
+// forget drops the fixed points, for another undulation: it begins about as the last did.
+func (b *softBand) forget() {
+	b.past[0].x, b.past[1].x = nil, nil
+	if b.start != nil {
+		copy(b.x, b.start)
+	}
+	b.mix.restart()
+	b.begun = false
+}
+
+// again takes the last fixed point found as the next guess, after one that was not.
+func (f *Soft) again(k float64) {
+	if b, err := f.band(k); err == nil {
+		b.past[1].x = nil
+		b.mix.restart()
+	}
+}
+
+// depth is how many differences the mixing keeps.
+const depth = 8
+
+// anderson accelerates a fixed-point iteration: among the last few steps it takes the
+// combination whose residual is least. Source: Anderson 1965, J. ACM 12, 547 (from memory).
+type anderson struct {
+	dx, dr [depth][]float64
+	x, r   []float64 // the step before
+	now    []float64
+	kept   int // differences that hold
+	at     int
+	least  float64
+	damp   float64 // of the plain step, halved where it goes astray
+}
+
+func (a *anderson) restart() { a.kept, a.at = 0, 0; a.begin() }
+
+// begin starts on another fixed point near the last: how the map answers to differences
+// is much the same there, so they are kept.
+func (a *anderson) begin() { a.least, a.damp = math.Inf(1), 1; a.x = a.x[:0] }
+
+// slower begins again with half the step.
+func (a *anderson) slower() {
+	damp := math.Max(a.damp/2, 1.0/32)
+	a.restart()
+	a.damp = damp
+}
+
+// step replaces x by the next guess, given the map's answer to x. The plain step is
+// x + ω (answer − x), ω = 2n/(n + 1), which alone contracts like (n − 1)/(n + 1).
+func (a *anderson) step(x, answer, omega []float64, nodes int) {
+	n := len(x)
+	a.now = slices.Grow(a.now[:0], n)[:n]
+	var size float64
+	for i := range x {
+		w := i
+		if i >= len(omega) {
+			w = i - len(omega)
+		}
+		a.now[i] = a.damp * omega[w] * (answer[i] - x[i])
+		size += a.now[i] * a.now[i]
+	}
+	if size > 16*a.least { // astray: begin again
+		a.slower()
+	}
+	a.least = math.Min(a.least, size)
+	if len(a.x) == n {
+		d := a.at % depth
+		a.dx[d], a.dr[d] = slices.Grow(a.dx[d][:0], n)[:n], slices.Grow(a.dr[d][:0], n)[:n]
+		for i := range x {
+			a.dx[d][i], a.dr[d][i] = x[i]-a.x[i], a.now[i]-a.r[i]
+		}
+		a.at++
+		a.kept = min(a.kept+1, depth)
+	}
+	a.x, a.r = append(a.x[:0], x...), append(a.r[:0], a.now...)
+	g := a.weights()
+	for i := range x {
+		v := x[i] + a.now[i]
+		for j := range a.kept {
+			v -= g[j] * (a.dx[j][i] + a.dr[j][i])
+		}
+		// an answer further than a factor of e¹² away is not believed
+		x[i] += math.Min(math.Max(v-x[i], -12), 12)
+	}
+}
+
+// weights solves the small least-squares problem by its normal equations.
+func (a *anderson) weights() (g [depth]float64) {
+	var m [depth][depth + 1]float64
+	for i := range a.kept {
+		for j := range i + 1 {
+			m[i][j] = dot(a.dr[i], a.dr[j])
+			m[j][i] = m[i][j]
+		}
+		m[i][depth] = dot(a.dr[i], a.now)
+	}
+	for i := range a.kept {
+		m[i][i] *= 1 + 1e-10
+	}
+	for i := range a.kept { // Cholesky-like elimination of a positive matrix
+		if !(m[i][i] > 0) {
+			return [depth]float64{}
+		}
+		for r := i + 1; r < a.kept; r++ {
+			f := m[r][i] / m[i][i]
+			for c := i; c <= depth; c++ {
+				m[r][c] -= f * m[i][c]
+			}
+		}
+	}
+	for i := a.kept - 1; i >= 0; i-- {
+		g[i] = m[i][depth]
+		for c := i + 1; c < a.kept; c++ {
+			g[i] -= m[i][c] * g[c]
+		}
+		g[i] /= m[i][i]
+	}
+	return g
+}
+
+func dot(a, b []float64) (s float64) {
+	for i, v := range a {
+		s += v * b[i]
+	}
+	return s
+}
