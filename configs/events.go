@@ -1,6 +1,10 @@
 package configs
 
-import "keelfall/solver/heat"
+import (
+	"fmt"
+
+	"keelfall/solver/heat"
+)
 
 type event struct {
 	_ struct{} `exactly:"intrude accumulate stretch erode bury change-base remove"`
@@ -146,6 +150,24 @@ func (e *Experiment) events(w *walker) []heat.Event {
 		out = append(out, h)
 	}
 	return out
+}
+
+// AtEvent words what is wrong with an event, counted from 0, as a mistake of the file; an
+// index of no event, −1, is the extension rate in force outside of stretch events.
+func (e *Experiment) AtEvent(i int, what string) Mistakes {
+	w := *e.walk
+	w.mistakes = nil
+	if i < 0 || i >= len(e.data.Events) {
+		w.addf(e.filled, "", "%s", what)
+		return w.mistakes
+	}
+	h, ok := e.data.Events[i].happen()
+	if !ok {
+		w.addf(e.filled, fmt.Sprintf("events[%d]", i), "%s", what)
+		return w.mistakes
+	}
+	w.addf(h.block.at, h.block.path, "%s", what)
+	return w.mistakes
 }
 
 // markers and clocks as package heat takes them.

@@ -104,6 +104,20 @@ func sameNumbers(a, b reflect.Value) bool {
 	return true
 }
 
+// TestAtEvent: what a solver says of an event, by its index, is a mistake of the file.
+func TestAtEvent(t *testing.T) {
+	e := mustRead(t, "s.yaml", withEvents(sheet, "erode: {from: 1 Myr, to: 2 Myr, rate: 1 mm/yr}"))
+	for i, want := range map[int]string{
+		0:  "s.yaml:10: events[0].intrude: too much",
+		1:  "s.yaml:11: events[1].erode: too much",
+		-1: "s.yaml:1: too much",
+	} {
+		if got := e.AtEvent(i, "too much").Error(); got != want {
+			t.Errorf("%d: %s, want %s", i, got, want)
+		}
+	}
+}
+
 func TestEventMistakes(t *testing.T) {
 	const at = "s.yaml:10: events[0]."
 	const cold = "layers:\n" + crustLine + "events:\n  - "
@@ -116,6 +130,8 @@ func TestEventMistakes(t *testing.T) {
 			at + "remove.layer: sheet is not there yet: it comes with events[1].intrude at 1 Myr"},
 		{"born under a number", withEvents(strings.TrimSuffix(sheet, "}")+thrice, "remove: {at: 5 Myr, layer: sheet, share: 0.5}"),
 			"s.yaml:11: events[1].remove.layer: sheet is not a layer; known are crust, root, mantle, sheet 1, sheet 2, sheet 3"},
+		{"a later sheet not born yet", withEvents(strings.TrimSuffix(sheet, "}")+thrice, "remove: {at: 1.9 Myr, layer: sheet 3, share: 0.5}"),
+			"s.yaml:11: events[1].remove.layer: sheet 3 is not there yet: it comes with events[0].intrude at 2 Myr"},
 		{"gone", withEvents("remove: {at: 3 Myr, layer: root, share: 1}", "remove: {at: 5 Myr, layer: root, share: 0.5}"),
 			"s.yaml:11: events[1].remove.layer: root is gone by then: events[0].remove takes all of it at 3 Myr"},
 		{"name of a layer", withEvents(strings.Replace(sheet, "name: sheet", "name: root", 1)),

@@ -109,7 +109,6 @@ func TestFormats(t *testing.T) {
 func TestReference(t *testing.T) {
 	const no = ": not in this version of keelfall"
 	want := []string{
-		":76: drip.softening: self is not in this version of keelfall; only none is",
 		":82: excision.zones[1] (upper-detachment).share" + no,
 		":83: excision.zones[2] (late-zone).creep" + no,
 		":83: excision.zones[2] (late-zone).force" + no,

@@ -16,6 +16,7 @@ type happening struct {
 	layerKey    string
 	name        text // of the new rock
 	temperature quantity
+	sheet       int // of those that repeat, from 0
 }
 
 // happen puts an event's verbs in one shape; ok is false where there is none, or one
@@ -73,16 +74,9 @@ func (e *Experiment) timeline(w *walker, names []string) {
 		}
 	}
 	overlaps(w, all)
-	slices.SortStableFunc(all, func(a, b happening) int {
-		if c := cmp.Compare(a.from.SI, b.from.SI); c != 0 || a.lasts() == b.lasts() {
-			return c
-		} else if a.lasts() { // after what happens at once
-			return 1
-		}
-		return -1
-	})
+	inTime(all)
 	before := len(w.mistakes)
-	e.order(w, all, names)
+	e.order(w, sheets(all), names)
 	if len(w.mistakes) == before && len(all) == len(e.data.Events) {
 		e.rootKept(w, slices.DeleteFunc(all, func(h happening) bool { return h.Intrude == nil }))
 	}
@@ -161,6 +155,54 @@ func line(n *node) string {
 	return ""
 }
 
+// sheets are happenings with one for each sheet of an intrusion that repeats, in order.
+func sheets(all []happening) []happening {
+	var out []happening
+	for _, h := range all {
+		out = append(out, h)
+		if h.Intrude == nil || h.Intrude.Repeat == nil || !h.Intrude.Repeat.Every.given() {
+			continue
+		}
+		for k := 1; k < h.Intrude.Repeat.Times.N; k++ {
+			h.sheet = k
+			h.from.SI += h.Intrude.Repeat.Every.SI
+			h.to.SI = h.from.SI
+			out = append(out, h)
+		}
+	}
+	inTime(out)
+	return out
+}
+
+// inTime sorts by the beginning; what lasts comes after what happens at once.
+func inTime(all []happening) {
+	slices.SortStableFunc(all, func(a, b happening) int {
+		if c := cmp.Compare(a.from.SI, b.from.SI); c != 0 || a.lasts() == b.lasts() {
+			return c
+		} else if a.lasts() {
+			return 1
+		}
+		return -1
+	})
+}
+
+// names are the layers that come with it; of sheets that repeat, its own.
+func (h *happening) names() []string {
+	n := h.born()
+	if h.Intrude != nil && h.sheet < len(n) {
+		return n[h.sheet : h.sheet+1]
+	}
+	return n
+}
+
+// when is the time it begins, as written or of its sheet.
+func (h *happening) when() string {
+	if h.sheet == 0 {
+		return h.from.n.show()
+	}
+	return fmt.Sprintf("%.6g Myr", h.from.SI/(1e6*secondsPerYear))
+}
+
 // order follows the layers through the events, which come in order of time: a layer has
 // to be there when something is done to it, and a name is free when a layer is born.
 func (e *Experiment) order(w *walker, all []happening, names []string) {
@@ -170,7 +212,7 @@ func (e *Experiment) order(w *walker, all []happening, names []string) {
 	}
 	later := map[string]*happening{} // born by an event to come
 	for i := range all {
-		for _, n := range all[i].born() {
+		for _, n := range all[i].names() {
 			if _, ok := later[n]; !ok {
 				later[n] = &all[i]
 			}
@@ -186,14 +228,14 @@ func (e *Experiment) order(w *walker, all []happening, names []string) {
 			case ok && gone != "":
 				w.addf(l.n, path, "%s is gone by then: %s", l.n.show(), gone)
 			case !ok && later[l.Value] != nil:
-				w.addf(l.n, path, "%s is not there yet: it comes with %s at %s", l.n.show(), later[l.Value].block.path, later[l.Value].from.n.show())
+				w.addf(l.n, path, "%s is not there yet: it comes with %s at %s", l.n.show(), later[l.Value].block.path, later[l.Value].when())
 			case !ok:
 				w.addf(l.n, path, "%s is not a layer; %s", l.n.show(), didYouMean(l.Value, firstFew(known)))
 			case h.Remove != nil && h.Remove.Share.SI == 1:
 				there[l.Value] = fmt.Sprintf("%s takes all of it at %s", h.block.path, h.from.n.show())
 			}
 		}
-		for _, n := range h.born() {
+		for _, n := range h.names() {
 			if _, ok := there[n]; ok {
 				w.addf(h.name.n, h.block.path+".name", "%s is the name of another layer too; names of layers are unique", shorten(n))
 				break

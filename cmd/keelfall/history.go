@@ -23,10 +23,10 @@ import (
 func newHistoryCmd(s Streams) *cobra.Command {
 	var asked string
 	cmd, _ := newPartCmd(s, "history FILE", "Temperature through time: events, markers' pressure-temperature paths, clocks",
-		func(ctx context.Context, _ *options, p *race.Problem, _ *state.State) (*part, error) {
+		func(ctx context.Context, o *options, p *race.Problem, _ *state.State) (*part, error) {
 			past, err := history(ctx, p, asked)
 			if err != nil {
-				return nil, err
+				return nil, o.atEvent(err)
 			}
 			drawn := &plots.Thermal{History: past.History, Shown: past.Shown, Events: p.Events, Fit: p.GeothermFit, HasTimeZero: p.HasTimeZero, TimeZero: p.TimeZero}
 			return &part{name: "history", text: report.HistoryPage(past), value: report.History(past),
@@ -53,12 +53,26 @@ The root neither drips nor is it cut by shear zones here: keelfall run judges th
 	return cmd
 }
 
+// atEvent words an event that is not possible, before the run or on its way, by file and line.
+func (o *options) atEvent(err error) error {
+	var wrong *heat.EventError
+	if !errors.As(err, &wrong) {
+		return err
+	}
+	e, _, again := o.load()
+	if again != nil {
+		return errors.Join(err, again)
+	}
+	return e.AtEvent(wrong.Index, wrong.Err.Error())
+}
+
 // history runs a problem's thermal history; asked is a list of times or empty.
 func history(ctx context.Context, p *race.Problem, asked string) (*report.Past, error) {
 	plan, err := race.HeatPlan(p)
 	if err != nil {
 		return nil, err
 	}
+	plan.Events = p.Events // those that do nothing too, so that an index is the experiment's
 	window := p.Drip.Window
 	shown, err := timesOf(p, asked)
 	if err != nil {
@@ -161,16 +175,17 @@ func rowTimes(window float64) []float64 {
 }
 
 // contactTimes are times at which the contacts are drawn: evenly through the window,
-// and just before and at every instant at which rock comes or goes at once.
+// and just before and at every instant at which rock comes or goes at once; of very many
+// sheets at some, because each time costs a whole geotherm.
 func contactTimes(events []heat.Event, window float64) []float64 {
-	const parts = 60
+	const parts, most = 60, 100
 	var out []float64
 	for i := range parts + 1 {
 		out = append(out, window*float64(i)/parts)
 	}
 	for i := range events {
 		e := &events[i]
-		for k := range max(1, e.Times) {
+		for k := 0; k < max(1, e.Times); k += 1 + e.Times/most {
 			t := e.From + float64(k)*e.Every
 			out = append(out, t, e.To)
 			if e.Verb == "intrude" || e.Verb == "remove" {

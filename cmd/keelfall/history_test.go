@@ -1,8 +1,13 @@
 package main
 
 import (
+	"bytes"
+	"context"
 	"math"
+	"os"
+	"path/filepath"
 	"slices"
+	"strings"
 	"testing"
 
 	"keelfall/cmd/internal/report"
@@ -80,5 +85,33 @@ func TestContactTimes(t *testing.T) {
 	}
 	if !slices.IsSorted(got) || got[0] != 0 || got[len(got)-1] != window || len(slices.Compact(slices.Clone(got))) != len(got) {
 		t.Errorf("%v", inMyr(got))
+	}
+}
+
+// An event that is not possible, before the run or only on its way, is the file's mistake;
+// one that does nothing is counted with the others.
+func TestHistoryEventMistakes(t *testing.T) {
+	const column = `title: t
+surface: {boundary: free, temperature: 0 degC}
+base: {boundary: half-space, temperature: 1300 degC}
+layers:
+  - {name: crust, thickness: 40 km, density: 2800 kg/m3, viscosity: 1e21 Pa s}
+  - {name: root, root: true, thickness: 10 km, density: 3400 kg/m3, viscosity: 1e21 Pa s}
+events:
+  - erode: {from: 0 Myr, to: 5 Myr, rate: 0 mm/yr}
+`
+	for events, want := range map[string]string{
+		"  - stretch: {from: 0 Myr, to: 10 Myr, rate: -1e-13 1/s}\n": "t.yaml:9: events[1].stretch: by 10 Myr the column is deeper than 3000 km",
+		"  - erode: {from: 5 Myr, to: 10 Myr, rate: 10 mm/yr}\n" +
+			"  - accumulate: {layer: crust, from: 9.5 Myr, to: 11 Myr, rate: 1 mm/yr}\n": "t.yaml:10: events[2].accumulate: at 9.5 Myr: the layer is gone",
+	} {
+		file := filepath.Join(t.TempDir(), "t.yaml")
+		if err := os.WriteFile(file, []byte(column+events), 0o644); err != nil {
+			t.Fatal(err)
+		}
+		var out, errs bytes.Buffer
+		if status := Main(context.Background(), []string{"history", file}, Streams{&out, &errs}); status != exitInput || !strings.Contains(errs.String(), want) {
+			t.Errorf("status %d: %s, want %s", status, errs.String(), want)
+		}
 	}
 }

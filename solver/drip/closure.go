@@ -63,13 +63,15 @@ type fixed struct {
 	x      []float64
 }
 
-// NewSoft prepares the closure for a state in a background. Errors: compositional
-// gradients inside layers, which the closure does not take.
+// ErrGraded says that the closure does not take a column's layers.
+var ErrGraded = errors.New("drip: softening by the drip itself takes layers of one composition each")
+
+// NewSoft prepares the closure for a state in a background. Errors: ErrGraded.
 func NewSoft(s *state.State, b Background) (*Soft, error) {
 	m := Strained(s, b, "none")
 	for i := range m.Layers {
 		if m.Layers[i].Gradient != nil {
-			return nil, fmt.Errorf("drip: %s has a compositional gradient; softening by the drip itself takes layers of one composition each", s.Column.Layers[i].Name)
+			return nil, fmt.Errorf("%w: %s has a density gradient of composition", ErrGraded, s.Column.Layers[i].Name)
 		}
 	}
 	d, vertical, _ := b.rates()

@@ -29,7 +29,7 @@ type Settings struct {
 	Window    float64 // s, > 0
 	Removes   float64 // share of the root's mass one drip takes
 	Spectrum  string  // "white": a₀ the same at all wavelengths
-	Softening string  // "none" in this version
+	Softening string  // "none": viscosities of one strain rate; "self": the drip's own softens the rock
 }
 
 // Options of a drip computation.
@@ -52,8 +52,8 @@ type Curve struct {
 type Result struct {
 	Outcome           string  // "drips", "window" (not before it ends, if at all) or "buoyant" (the root is not denser than what lies below, and does not drip)
 	Time              float64 // s; +Inf where never
-	Wavelength        float64 // m, of the first drip
-	InitialWavelength float64 // m
+	Wavelength        float64 // m, of the first drip, when it drips
+	InitialWavelength float64 // m, the same at the start
 	TimeLow, TimeHigh float64 // s, for the amplitude × 3 and ÷ 3, each at its own best wavelength
 	SpacingFrom       float64 // m: wavelengths whose drips would follow within 10 % of the time
 	SpacingTo         float64
@@ -66,7 +66,9 @@ type Result struct {
 	Excluded          string    // wavelengths that were computed and not used, in words
 	Reason            string
 	Warnings          []string
-	Mode              *growth.Mode // leading mode at the drip's wavelength; nil where nothing drips
+	Drips             []Event       // one after the other, in a column that changes; nil in a frozen one
+	Soft              *SelfSoftened // where the drip softens its own rock; else nil
+	Mode              *growth.Mode  // leading mode at the drip's wavelength; nil where nothing drips
 }
 
 // Fastest is a drip time and its wavelength.
@@ -123,7 +125,7 @@ func Solve(ctx context.Context, s *state.State, set Settings, o Options) (*Resul
 	contrast := -s.Jumps[p.base]
 	if math.IsInf(best.Time, 1) {
 		r.Outcome, r.Reason = never(contrast, r.Unrestricted, o)
-		return r, nil
+		return p.softened(ctx, s, set, o, r)
 	}
 	r.Time, r.Wavelength, r.InitialWavelength = best.Time, best.Wavelength, best.Wavelength
 	for i, a := range []float64{3, 1.0 / 3} {
@@ -156,7 +158,7 @@ func Solve(ctx context.Context, s *state.State, set Settings, o Options) (*Resul
 	if w := rateCaution(s, r); w != "" && set.Softening != "self" {
 		r.Warnings = append(r.Warnings, w)
 	}
-	return r, nil
+	return p.softened(ctx, s, set, o, r)
 }
 
 // never says that nothing drips, and why.

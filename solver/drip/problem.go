@@ -81,15 +81,8 @@ func newProblem(s *state.State, set Settings, workers int) (*problem, error) {
 		return nil, ErrNoRoot
 	}
 	thickness := s.Column.RootThickness()
-	switch {
-	case !(set.Amplitude > 0) || math.IsInf(set.Amplitude, 0):
-		return nil, fmt.Errorf("drip: amplitude %g m; must be positive", set.Amplitude)
-	case !(set.Criterion > 0):
-		return nil, fmt.Errorf("drip: criterion %g; must be positive", set.Criterion)
-	case !(set.Window > 0):
-		return nil, fmt.Errorf("drip: window %g s; must be positive", set.Window)
-	case set.Amplitude >= set.Criterion*thickness:
-		return nil, fmt.Errorf("drip: an amplitude of %.4g m already is the drip: %g × the root's %.4g m", set.Amplitude, set.Criterion, thickness)
+	if err := set.check(thickness); err != nil {
+		return nil, err
 	}
 	p := &problem{set: set, ratio: set.Criterion * thickness / set.Amplitude, first: first, last: last,
 		base: last + 1, thickness: thickness, workers: workers}
@@ -98,26 +91,49 @@ func newProblem(s *state.State, set Settings, workers int) (*problem, error) {
 	return p, err
 }
 
+// check refuses settings that mean nothing for a root so thick, m.
+func (set *Settings) check(thickness float64) error {
+	switch {
+	case !(set.Amplitude > 0) || math.IsInf(set.Amplitude, 0):
+		return fmt.Errorf("drip: amplitude %g m; must be positive", set.Amplitude)
+	case !(set.Criterion > 0):
+		return fmt.Errorf("drip: criterion %g; must be positive", set.Criterion)
+	case !(set.Window > 0):
+		return fmt.Errorf("drip: window %g s; must be positive", set.Window)
+	case set.Amplitude >= set.Criterion*thickness:
+		return fmt.Errorf("drip: an amplitude of %.4g m already is the drip: %g × the root's %.4g m", set.Amplitude, set.Criterion, thickness)
+	}
+	return nil
+}
+
 // spacing returns the range of wavelengths around the first drip's whose own drips
 // come within 10 % of its time, interpolated in ln λ.
 func (p *problem) spacing(t, wavelength, limit float64) (from, to float64) {
+	var list []Fastest
+	for _, f := range p.points {
+		list = append(list, Fastest{p.time(f, p.set.Amplitude), f.Wavelength})
+	}
+	return around(list, t, wavelength, limit)
+}
+
+// around is spacing in a list by increasing wavelength.
+func around(list []Fastest, t, wavelength, limit float64) (from, to float64) {
 	target := 1.1 * t
 	from, to = wavelength, wavelength
-	lastW, lastT := wavelength, t
-	for i := len(p.points) - 1; i >= 0; i-- {
-		f := p.points[i]
+	last := Fastest{t, wavelength}
+	for i := len(list) - 1; i >= 0; i-- {
+		f := list[i]
 		if f.Wavelength >= wavelength {
 			continue
 		}
-		ti := p.time(f, p.set.Amplitude)
-		if ti > target {
-			from = between(lastW, lastT, f.Wavelength, ti, target)
+		if f.Time > target {
+			from = between(last.Wavelength, last.Time, f.Wavelength, f.Time, target)
 			break
 		}
-		from, lastW, lastT = f.Wavelength, f.Wavelength, ti
+		from, last = f.Wavelength, f
 	}
-	lastW, lastT = wavelength, t
-	for _, f := range p.points {
+	last = Fastest{t, wavelength}
+	for _, f := range list {
 		if f.Wavelength <= wavelength {
 			continue
 		}
@@ -125,12 +141,11 @@ func (p *problem) spacing(t, wavelength, limit float64) (from, to float64) {
 			to = math.Max(to, math.Min(limit, f.Wavelength))
 			break
 		}
-		ti := p.time(f, p.set.Amplitude)
-		if ti > target {
-			to = between(lastW, lastT, f.Wavelength, ti, target)
+		if f.Time > target {
+			to = between(last.Wavelength, last.Time, f.Wavelength, f.Time, target)
 			break
 		}
-		to, lastW, lastT = f.Wavelength, f.Wavelength, ti
+		to, last = f.Wavelength, f
 	}
 	return from, to
 }

@@ -41,9 +41,10 @@ type Evolution struct {
 	streams  []stream
 	foot     int // the basal stream; -1: none
 	feet     int
-	gap      float64 // by which the column is too short, m
-	short    int     // listings in which the column was too short and without a foot
-	loss     float64 // thickness it loses, m/s
+	taken    map[string]bool // names that rock of the base leaves alone
+	gap      float64         // by which the column is too short, m
+	short    int             // listings in which the column was too short and without a foot
+	loss     float64         // thickness it loses, m/s
 	footRho  float64
 	tracks   []carried
 	record   func()
@@ -78,8 +79,8 @@ type Evolution struct {
 // base without a conductivity or heat capacity has those of the last layer.
 //
 // Errors: those of column.Validate and Solve; a heat capacity that is not positive; an
-// event that is not possible or overlaps another, with its number and name; a marker
-// outside the column.
+// event that is not possible or overlaps another, and one by which the column becomes
+// deeper than 3000 km or thinner than 1 m, as *EventError; a marker outside the column.
 func Begin(p Plan) (*Evolution, error) {
 	c := p.Column
 	if err := c.Validate(); err != nil {
@@ -132,6 +133,15 @@ func Begin(p Plan) (*Evolution, error) {
 		return nil, err
 	}
 	ev.dmax = 2 * ev.depth0 / float64(ev.points)
+	ev.taken = map[string]bool{}
+	for i := range c.Layers {
+		ev.taken[c.Layers[i].Name] = true
+	}
+	for i := range p.Events {
+		for _, n := range p.Events[i].Names() {
+			ev.taken[n] = true
+		}
+	}
 	ev.lay(start)
 	if err := ev.placeMarkers(p.Markers); err != nil {
 		return nil, err
@@ -156,13 +166,13 @@ func Begin(p Plan) (*Evolution, error) {
 func (ev *Evolution) rocks(events []Event) error {
 	check := func(name string, r *column.Rock) error {
 		if !(r.HeatCapacity > 0) || math.IsInf(r.HeatCapacity, 1) {
-			return fmt.Errorf("heat: %s: heat capacity %g J/kg/K, must be > 0", name, r.HeatCapacity)
+			return fmt.Errorf("%s: heat capacity %g J/kg/K, must be > 0", name, r.HeatCapacity)
 		}
 		if !(r.Conductivity.Reference > 0) {
-			return fmt.Errorf("heat: %s: conductivity %g W/m/K, must be > 0", name, r.Conductivity.Reference)
+			return fmt.Errorf("%s: conductivity %g W/m/K, must be > 0", name, r.Conductivity.Reference)
 		}
 		if r.Density == nil {
-			return fmt.Errorf("heat: %s: no density", name)
+			return fmt.Errorf("%s: no density", name)
 		}
 		ev.nonlinear = max(ev.nonlinear, abs(r.Conductivity.PerKelvin))
 		if r.Density.NeedsTemperature() {
@@ -172,18 +182,18 @@ func (ev *Evolution) rocks(events []Event) error {
 	}
 	for i := range ev.column.Layers {
 		if err := check(ev.column.Layers[i].Name, &ev.column.Layers[i].Rock); err != nil {
-			return err
+			return fmt.Errorf("heat: %w", err)
 		}
 	}
 	if ev.open {
 		if err := check("base", &ev.base.Rock); err != nil {
-			return err
+			return fmt.Errorf("heat: %w", err)
 		}
 	}
 	for i := range events {
 		if e := &events[i]; e.Verb == "intrude" || e.Verb == "bury" {
-			if err := check(fmt.Sprintf("event %d (%s): %s", i+1, e.Verb, e.Name), &e.Rock); err != nil {
-				return err
+			if err := check(e.Name, &e.Rock); err != nil {
+				return e.mistake(i, err)
 			}
 		}
 	}

@@ -212,18 +212,26 @@ const (
 	myr         = 1e6 * 365.25 * 24 * 3600 // s
 )
 
-func (p *track) stillOpen(c Clock) string {
-	T, rate := p.at(p.t[len(p.t)-1])
-	if rate <= 0 {
-		return fmt.Sprintf("still open at the end of its path, at %.0f °C and not cooling", T-zeroCelsius)
+// uncooled is the fall of temperature in K over a whole path below which it does not
+// cool: the error of a history's steps, which makes a steady one's rate.
+const uncooled = 1.0
+
+// place says where a path is at its point i, and where the clock closes at the rate there.
+func (p *track) place(c Clock, i int, then string) string {
+	T, rate := p.at(p.t[i])
+	if rate*(p.t[len(p.t)-1]-p.t[0]) < uncooled {
+		return fmt.Sprintf("at %.0f °C and not cooling", T-zeroCelsius)
 	}
-	return fmt.Sprintf("still open at the end of its path, at %.0f °C; at the %.3g K/Myr there it closes at %.0f °C", T-zeroCelsius, rate*myr, c.ClosureTemperature(rate)-zeroCelsius)
+	return fmt.Sprintf("at %.0f °C%sat the %.3g K/Myr there it closes at %.0f °C", T-zeroCelsius, then, rate*myr, c.ClosureTemperature(rate)-zeroCelsius)
+}
+
+func (p *track) stillOpen(c Clock) string {
+	return "still open at the end of its path, " + p.place(c, len(p.t)-1, "; ")
 }
 
 func (p *track) neverOpen(c Clock) string {
 	if !p.open[0] {
-		T, rate := p.at(p.t[0])
-		return fmt.Sprintf("closed before the path begins: there it is at %.0f °C, and at the %.3g K/Myr there it closes at %.0f °C", T-zeroCelsius, rate*myr, c.ClosureTemperature(rate)-zeroCelsius)
+		return "closed before the path begins: there it is " + p.place(c, 0, ", and ")
 	}
 	var hottest float64
 	for _, T := range p.T {

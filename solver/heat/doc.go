@@ -54,7 +54,9 @@
 // first or last cell: it brings its own enthalpy, or takes that of the face's
 // temperature (second order, where the cell's own would be first). Cells that lose are
 // joined to their neighbours before they are used up; a layer of less than a millimetre
-// is gone.
+// is gone, and so is one that stretching has made thinner than a tenth of it over a base
+// whose rock comes in. A column deeper than 3000 km, renewed more than 500 times, or over
+// another base thinner than 1 m, is refused.
 //
 // Base: over a half-space or an inviscid base the thermal base stays at the depth it has
 // at the start. Where the column thins, rock of the base comes in below, at the basal

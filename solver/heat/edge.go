@@ -108,8 +108,12 @@ func (ev *Evolution) through(T []float64, t float64) (surface, base float64) {
 	return surface, -w.foot.out(T[n-1], T[max(n-2, 0)], ev.base.Temperature)
 }
 
-// SurfaceFlow returns the heat conducted out at the surface now, W/m².
+// SurfaceFlow returns the heat conducted out at the surface now, W/m². Through a layer that
+// has just begun to settle it is that of the rock below: a few millimetres take seconds.
 func (ev *Evolution) SurfaceFlow() float64 {
+	if s := &ev.strata[0]; s.hi-s.lo == 1 && len(ev.cells) > 2 && ev.thickness(&ev.cells[0]) < 2*sliver {
+		return ev.edgeNow(1, 2, ev.surfaceAt(ev.t), 0)
+	}
 	return ev.edgeNow(0, 1, ev.surfaceAt(ev.t), 0)
 }
 

@@ -22,7 +22,7 @@ func (ev *Evolution) Advance(ctx context.Context, to float64) error {
 			return err
 		}
 		if ev.t >= to {
-			return nil
+			return ev.bounded()
 		}
 		if err := ctx.Err(); err != nil {
 			return err
@@ -44,7 +44,7 @@ func (ev *Evolution) moment() error {
 		m := &ev.moments[ev.next]
 		ev.next++
 		if err := m.does(ev, m); err != nil {
-			return fmt.Errorf("heat: %s at %s: %w", m.event.label(), inMyr(ev.t), err)
+			return m.event.mistake(m.index, fmt.Errorf("at %s: %w", inMyr(ev.t), err))
 		}
 		done = true
 	}

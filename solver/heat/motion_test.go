@@ -153,10 +153,10 @@ func TestMistakes(t *testing.T) {
 		events []heat.Event
 		want   string
 	}{
-		{[]heat.Event{{Verb: "stretch", To: 2, Rate: 1e-15}, {Verb: "stretch", From: 1, To: 3, Rate: 1e-15}}, "event 1 (stretch) and event 2 (stretch): two extension rates"},
+		{[]heat.Event{{Verb: "stretch", To: 2, Rate: 1e-15}, {Verb: "stretch", From: 1, To: 3, Rate: 1e-15}}, "events[1] (stretch): with events[0] (stretch): two extension rates"},
 		{[]heat.Event{{Verb: "erode", To: 2, Rate: 1e-15}, {Verb: "bury", Name: "n", From: 1, To: 3, Rate: 1e-15, Rock: rock}}, "two rates at the surface"},
 		{[]heat.Event{{Verb: "accumulate", Layer: "a", To: 2, Rate: 1e-15}, {Verb: "accumulate", Layer: "a", From: 1, To: 3, Rate: 1e-15}}, "both add to one layer"},
-		{[]heat.Event{{Verb: "intrude", Name: "s", Layer: "nowhere", Thickness: 1, Temperature: 1000, Rock: rock}}, `event 1 (intrude s): there is no layer "nowhere"`},
+		{[]heat.Event{{Verb: "intrude", Name: "s", Layer: "nowhere", Thickness: 1, Temperature: 1000, Rock: rock}}, `events[0] (intrude s): there is no layer "nowhere"`},
 		{[]heat.Event{{Verb: "intrude", Name: "a", Layer: "a", Thickness: 1, Temperature: 1000, Rock: rock}}, `there is a layer "a" already`},
 		{[]heat.Event{{Verb: "erode", From: 3 * myr, To: 2 * myr, Rate: 1}}, "it ends at 2 Myr, not after it begins at 3 Myr"},
 		{[]heat.Event{{Verb: "erode", From: 0, To: myr, Rate: 1e-8}}, "by 1 Myr the whole column is eroded away"},

@@ -9,7 +9,7 @@ import (
 // Remove takes a share, above 0 to 1, of a layer's mass away at once, from its base.
 // Under a half-space or an inviscid base, rock of the base takes its place, along the
 // adiabat from the column's foot; of a root layer, below the root. Over a rigid or
-// free-slip base the column is shorter afterwards.
+// free-slip base the column is shorter afterwards. A share thinner than a millimetre stays.
 //
 // Errors: a layer that is not there, a share out of range.
 func (ev *Evolution) Remove(layer string, share float64) error {
@@ -40,9 +40,9 @@ func (ev *Evolution) remove(layer string, share float64) error {
 	}
 	last := &ev.cells[len(ev.cells)-1]
 	foot := last.P + ev.gravity*last.m/2
-	var mass float64
-	for i := s.lo; i < s.hi; i++ {
-		mass += ev.cells[i].m
+	mass := ev.massOf(j)
+	if share < 1 && share*ev.thicknessOf(s) < sliver {
+		return ev.err // nothing to speak of
 	}
 	ev.cut(j, mass*(1-share))
 	left, gone, went, cutAt := mass*share, 0.0, 0.0, s.hi
@@ -76,7 +76,7 @@ func (ev *Evolution) remove(layer string, share float64) error {
 	for root && at < len(ev.strata) && ev.strata[at].root {
 		at++
 	}
-	if ev.open {
+	if ev.open && gone >= sliver { // less comes in at the foot
 		ev.fill(at, gone, foot-ev.gravity*went)
 	}
 	ev.press(true)
@@ -141,7 +141,7 @@ func (ev *Evolution) footName() string {
 		if ev.feet > 1 {
 			name = fmt.Sprintf("asthenosphere %d", ev.feet)
 		}
-		if _, there := ev.find(name); !there {
+		if _, there := ev.find(name); !there && !ev.taken[name] {
 			return name
 		}
 	}

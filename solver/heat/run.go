@@ -3,13 +3,18 @@ package heat
 import (
 	"context"
 	"fmt"
+	"math"
 	"slices"
 )
+
+// mostMissing is the share of the energy moved by which a result may be wrong.
+const mostMissing = 1e-6
 
 // Run advances a plan to the model time until, s, and returns what happened; times are
 // those of the snapshots, in any order, each within the run.
 //
-// Errors: those of Begin and Advance, and a snapshot outside the run.
+// Errors: those of Begin and Advance, a snapshot outside the run, and a balance of energy
+// that does not close to a millionth.
 func Run(ctx context.Context, p Plan, until float64, times []float64) (*History, error) {
 	ev, err := Begin(p)
 	if err != nil {
@@ -19,6 +24,9 @@ func Run(ctx context.Context, p Plan, until float64, times []float64) (*History,
 	slices.Sort(times)
 	if n := len(times); n > 0 && !(times[0] >= 0 && times[n-1] <= until) {
 		return nil, fmt.Errorf("heat: snapshots at %s to %s; the run is from 0 to %s", inMyr(times[0]), inMyr(times[n-1]), inMyr(until))
+	}
+	if err := ev.rehearse(until); err != nil {
+		return nil, err
 	}
 	h := &History{}
 	ev.record = func() { ev.note(h) }
@@ -37,6 +45,9 @@ func Run(ctx context.Context, p Plan, until float64, times []float64) (*History,
 		h.Snapshots = append(h.Snapshots, Snapshot{Time: ev.t, Column: c, Profile: prof})
 	}
 	h.Paths, h.Energy, h.Mass = ev.Paths(), ev.Energy(), ev.Mass()
+	if e := h.Energy; !(math.Abs(e.Missing) <= mostMissing*e.Moved) && e.Missing != 0 {
+		return nil, fmt.Errorf("heat: by %s the balance of energy misses %.3g J/m² of %.3g that moved; the result would not be true", inMyr(ev.t), e.Missing, e.Moved)
+	}
 	h.Steps, h.Rejected, h.Warnings = ev.steps, ev.rejected, ev.warnings
 	return h, nil
 }

@@ -13,6 +13,7 @@ type moment struct {
 	t     float64
 	order int // ends first, then what happens at once, then beginnings
 	event *Event
+	index int    // of the event in the plan
 	name  string // of a sheet
 	does  func(*Evolution, *moment) error
 }
@@ -29,14 +30,17 @@ func (ev *Evolution) schedule(events []Event) error {
 	for i := range own {
 		e := &own[i]
 		if err := ev.possible(e); err != nil {
-			return fmt.Errorf("heat: event %d (%s): %w", i+1, e.label(), err)
+			return e.mistake(i, err)
 		}
 		for j := range i {
 			if what := own[j].overlaps(e); what != "" {
-				return fmt.Errorf("heat: event %d (%s) and event %d (%s): %s", j+1, own[j].label(), i+1, e.label(), what)
+				return e.mistake(i, fmt.Errorf("with events[%d] (%s): %s", j, own[j].label(), what))
 			}
 		}
-		ev.moments = append(ev.moments, e.moments()...)
+		for _, m := range e.moments() {
+			m.index = i
+			ev.moments = append(ev.moments, m)
+		}
 	}
 	slices.SortStableFunc(ev.moments, func(a, b moment) int {
 		switch {
@@ -48,7 +52,27 @@ func (ev *Evolution) schedule(events []Event) error {
 		}
 		return a.order - b.order
 	})
-	return ev.rehearse(own)
+	return ev.rehearse(0)
+}
+
+// EventError is what is wrong with an event of a plan, before the run or on its way.
+type EventError struct {
+	Index int    // in Plan.Events; −1: the background extension rate
+	Event string // its verb and what it is about
+	Err   error
+}
+
+func (e *EventError) Error() string {
+	if e.Index < 0 {
+		return fmt.Sprintf("heat: %v", e.Err)
+	}
+	return fmt.Sprintf("heat: events[%d] (%s): %v", e.Index, e.Event, e.Err)
+}
+
+func (e *EventError) Unwrap() error { return e.Err }
+
+func (e *Event) mistake(index int, err error) error {
+	return &EventError{Index: index, Event: e.label(), Err: err}
 }
 
 func (e *Event) label() string {
@@ -83,8 +107,8 @@ func (ev *Evolution) possible(e *Event) error {
 		return fmt.Errorf("it begins at %s, before the start", inMyr(e.From))
 	case e.lasts() && !(e.To > e.From):
 		return fmt.Errorf("it ends at %s, not after it begins at %s", inMyr(e.To), inMyr(e.From))
-	case e.lasts() && e.Verb != "stretch" && !(e.Rate > 0):
-		return fmt.Errorf("rate %g m/s, must be > 0", e.Rate)
+	case e.lasts() && e.Verb != "stretch" && !(e.Rate >= 0):
+		return fmt.Errorf("rate %g m/s, must not be below 0", e.Rate)
 	}
 	switch e.Verb {
 	case "stretch", "erode":
@@ -128,8 +152,14 @@ func (ev *Evolution) newRock(e *Event) error {
 	return c.Validate()
 }
 
+// idle says whether the event does nothing: rock that comes or goes at the rate 0.
+func (e *Event) idle() bool { return e.lasts() && e.Verb != "stretch" && e.Rate == 0 }
+
 // overlaps says why two events cannot both be.
 func (e *Event) overlaps(o *Event) string {
+	if e.idle() || o.idle() {
+		return ""
+	}
 	if !e.lasts() || !o.lasts() || e.From >= o.To || o.From >= e.To {
 		return ""
 	}
@@ -147,6 +177,9 @@ func (e *Event) overlaps(o *Event) string {
 
 // moments are the moments of one event.
 func (e *Event) moments() []moment {
+	if e.idle() {
+		return nil
+	}
 	if e.lasts() {
 		return []moment{{t: e.From, order: beginning, event: e, does: (*Evolution).starts}, {t: e.To, order: ending, event: e, does: (*Evolution).ends}}
 	}
@@ -159,96 +192,6 @@ func (e *Event) moments() []moment {
 		out = append(out, moment{t: e.From + float64(i)*e.Every, order: atOnce, event: e, name: name, does: (*Evolution).happens})
 	}
 	return out
-}
-
-// rehearse goes through all moments with layers' names and thicknesses alone: unknown
-// layers, names that are there already, more eroded than there is. Thicknesses here do
-// not know heating and reaction: the column itself is watched as it goes.
-func (ev *Evolution) rehearse(events []Event) error {
-	number := func(e *Event) int {
-		for i := range events {
-			if &events[i] == e {
-				return i + 1
-			}
-		}
-		return 0
-	}
-	there := map[string]bool{}
-	order := []column.Layer{}
-	for i := range ev.column.Layers {
-		l := ev.column.Layers[i]
-		there[l.Name] = true
-		order = append(order, l)
-	}
-	at := func(name string) int {
-		return slices.IndexFunc(order, func(l column.Layer) bool { return l.Name == name })
-	}
-	depth, now, rate := ev.depth0, 0.0, ev.background
-	eroding, depositing := 0.0, 0.0
-	for k := range ev.moments {
-		m := &ev.moments[k]
-		e := m.event
-		fail := func(format string, args ...any) error {
-			return fmt.Errorf("heat: event %d (%s): %s", number(e), e.label(), fmt.Sprintf(format, args...))
-		}
-		dt := m.t - now
-		now = m.t
-		depth += dt * (depositing - eroding)
-		if rate < 0 || !ev.open {
-			depth *= math.Exp(-rate * dt)
-		}
-		if !(depth > 0) {
-			return fail("by %s the whole column is eroded away", inMyr(m.t))
-		}
-		if e.Layer != "" && at(e.Layer) < 0 {
-			return fail("there is no layer %q at %s", e.Layer, inMyr(m.t))
-		}
-		if e.Layer == "" && (e.Verb == "intrude" || e.Verb == "accumulate" || e.Verb == "remove") {
-			return fail("it needs a layer")
-		}
-		end := m.order == ending
-		switch e.Verb {
-		case "stretch":
-			rate = e.Rate
-			if end {
-				rate = ev.background
-			}
-		case "erode":
-			eroding = e.Rate
-			if end {
-				eroding = 0
-			}
-		case "bury":
-			depositing = e.Rate
-			if end {
-				depositing = 0
-				continue
-			}
-			if at(e.Name) >= 0 {
-				return fail("there is a layer %q already", e.Name)
-			}
-			order = slices.Insert(order, 0, column.Layer{Name: e.Name, Root: e.Root})
-		case "intrude":
-			if at(m.name) >= 0 {
-				return fail("there is a layer %q already", m.name)
-			}
-			i := at(e.Layer)
-			root := e.Root || order[i].Root && i+1 < len(order) && order[i+1].Root
-			order = slices.Insert(order, i+1, column.Layer{Name: m.name, Root: root})
-			depth += e.Thickness
-		case "remove":
-			if e.Share == 1 {
-				order = slices.Delete(order, at(e.Layer), at(e.Layer)+1)
-				if len(order) == 0 && !ev.open {
-					return fail("nothing is left of the column")
-				}
-			}
-		}
-		if between := notRoot(order); between != "" {
-			return fail("%s comes to lie between root layers and is not part of the root", between)
-		}
-	}
-	return nil
 }
 
 // notRoot returns the first layer that lies between root layers but is not one.

@@ -13,6 +13,9 @@ func (ev *Evolution) prepare(limit float64) error {
 	if len(ev.strata) == 0 || len(ev.cells) == 0 {
 		return fmt.Errorf("heat: at %s nothing is left of the column", inMyr(ev.t))
 	}
+	if err := ev.thinned(); err != nil {
+		return err
+	}
 	for tries := 0; ; tries++ {
 		h := min(ev.h, limit)
 		ev.list(h)
@@ -98,6 +101,11 @@ func (ev *Evolution) edge(j int, f *Flux) stream {
 	return out
 }
 
+// thinFoot is the thickness in m of rock of the base, where none comes or goes, that is
+// taken out again: a thinner cell's flow is the difference of nearly equal temperatures,
+// and costs the balance of energy more than 1e-10.
+const thinFoot = 0.1
+
 // basal adds the stream that keeps the foot of the column at its depth: rock of the base
 // comes in where the column thins, and goes before the column's own rock sinks deeper.
 func (ev *Evolution) basal(lost, h float64) {
@@ -114,13 +122,17 @@ func (ev *Evolution) basal(lost, h float64) {
 	last := len(ev.strata) - 1
 	there := ev.strata[last].below
 	if s := &ev.strata[last]; there && last > 0 && s.hi-s.lo == 1 {
-		if c := &ev.cells[s.lo]; ev.thickness(c) < sliver/4 {
+		d := ev.thickness(&ev.cells[s.lo])
+		rests := ev.loss == 0 && d < thinFoot && ev.gap+d < ev.dmax*finest/2
+		if d < sliver/4 || rests {
 			ev.takeOut(s.lo, "pushed out at the column's foot", true)
 			there = false
 		}
 	}
 	if !there {
 		switch {
+		case ev.gap == 0 && ev.loss > 0 && ev.loss*(ev.Next()-ev.t) < sliver:
+			return // it stays within what a column may be too short by
 		case ev.gap < 0 || ev.loss <= 0 && ev.gap < ev.dmax*finest:
 			if ev.gap < 0 && ev.loss > 0 { // to where rock of the base begins to come in
 				ev.h = min(ev.h, (2*sliver-ev.gap)/ev.loss)

@@ -5,8 +5,6 @@ import (
 	"fmt"
 	"math"
 	"slices"
-
-	"keelfall/solver/drip"
 )
 
 // mostLayers is the number of layers up to which a run looks for what would change
@@ -29,6 +27,10 @@ func (r *Result) flips(ctx context.Context, say func(string)) error {
 	p, v := r.Problem, &r.Verdict
 	if n := len(p.Column.Layers); n > mostLayers {
 		r.Warnings = append(r.Warnings, fmt.Sprintf("what would change the verdict was not looked for: %d layers, and it is done up to %d", n, mostLayers))
+		return ctx.Err()
+	}
+	if p.Moving() { // a drip time of a second each, a few hundred of them
+		r.Warnings = append(r.Warnings, "what would change the verdict was not looked for: the column changes with time, and each try would follow it anew")
 		return ctx.Err()
 	}
 	near := r.Drip.Wavelength
@@ -76,9 +78,7 @@ func (p *Problem) outcome(ctx context.Context, near float64, now string) string 
 	if err != nil {
 		return now
 	}
-	o := p.dripOptions()
-	o.Near = near
-	t, err := drip.Time(ctx, s, p.Drip, o)
+	t, err := p.dripTime(ctx, s, near)
 	if err != nil {
 		return now
 	}

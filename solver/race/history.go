@@ -28,12 +28,13 @@ func reacts(d column.Density) bool {
 	return false
 }
 
-// still refuses events where the column is taken as it is at the start.
-func (p *Problem) still() error {
-	if len(p.Events) == 0 {
+// zonesStill refuses shear zones in a column with events: what zones cut is computed for
+// the column as it is at the start.
+func (p *Problem) zonesStill() error {
+	if len(p.Events) == 0 || len(p.Zones) == 0 {
 		return nil
 	}
-	return fmt.Errorf("%w: events: run, drip and excise keep the column as it is at the start; keelfall history follows it", ErrInput)
+	return fmt.Errorf("%w: events and shear zones together: what zones cut out is computed for the column as it is at the start; leave one of them out (keelfall history follows the events)", ErrInput)
 }
 
 // brings are the verbs that do nothing at the rate 0, where a sweep may well begin.

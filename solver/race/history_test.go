@@ -3,10 +3,12 @@ package race_test
 import (
 	"context"
 	"errors"
+	"math"
 	"strings"
 	"testing"
 
 	"keelfall/column"
+	"keelfall/solver/excision"
 	"keelfall/solver/heat"
 	"keelfall/solver/race"
 )
@@ -19,25 +21,45 @@ func warmProblem() *race.Problem {
 	return p
 }
 
-// Events are never read and ignored: what keeps the column as it is refuses them.
-func TestEventsRefused(t *testing.T) {
+// Events with shear zones are never read and ignored: they are refused. Without zones
+// the root drips, through time; cold rock on top (an erosion that cools) changes the time.
+func TestEventsAndZones(t *testing.T) {
 	p := warmProblem()
 	p.Events = []heat.Event{{Verb: "erode", To: 1e13, Rate: 1e-11}}
+	p.Zones = []excision.Zone{{Name: "zone", Dip: 0.5, Cuts: []string{"root"}, To: 1e15, SlipRate: 1e-12}}
 	s, err := race.Prepare(p)
 	if err != nil {
 		t.Fatal(err)
 	}
 	_, run := race.Run(context.Background(), p)
-	_, dripped := race.Drip(context.Background(), p, s)
 	_, excised := race.Excise(p, s)
-	for _, err := range []error{run, dripped, excised} {
-		if !errors.Is(err, race.ErrInput) || !strings.Contains(err.Error(), "events: run, drip and excise keep the column as it is at the start; keelfall history follows it") {
+	for _, err := range []error{run, excised} {
+		if !errors.Is(err, race.ErrInput) || !strings.Contains(err.Error(), "events and shear zones together") {
 			t.Errorf("%v", err)
 		}
 	}
-	p.Events = nil
 	if _, err := race.Drip(context.Background(), p, s); err != nil {
-		t.Errorf("without events: %v", err)
+		t.Errorf("a drip with events: %v", err)
+	}
+}
+
+// A strained root drips: stretching by β carries its undulation away as it thins.
+func TestStrainedDrip(t *testing.T) {
+	still, stretched := problem(0), problem(0)
+	stretched.Strain.ExtensionRate = 3e-15
+	stretched.Strain.Wavevector = race.AlongStrike
+	still.Strain.Wavevector = race.AlongStrike
+	a, b := run(t, still), run(t, stretched)
+	if a.Drip.Outcome != "drips" || b.Drip.Outcome != "drips" || len(b.Drip.Drips) == 0 || a.Drip.Time == b.Drip.Time {
+		t.Fatalf("%s at %g Myr, stretched %s at %g Myr", a.Drip.Outcome, a.Drip.Time/myr, b.Drip.Outcome, b.Drip.Time/myr)
+	}
+	if b.Drip.Wavelength != b.Drip.InitialWavelength || b.Drip.Drips[0].Time != b.Drip.Time {
+		t.Errorf("along strike λ %g to %g m; drips %+v", b.Drip.InitialWavelength, b.Drip.Wavelength, b.Drip.Drips[0])
+	}
+	stretched.Strain.Wavevector = race.AlongStretch
+	c := run(t, stretched)
+	if want := c.Drip.InitialWavelength * math.Exp(3e-15*c.Drip.Time); math.Abs(c.Drip.Wavelength/want-1) > 1e-9 {
+		t.Errorf("along the stretch λ %g to %g m, want %g", c.Drip.InitialWavelength, c.Drip.Wavelength, want)
 	}
 }
 

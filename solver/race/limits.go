@@ -39,8 +39,15 @@ func (v Peeling) words() string {
 func (p *Problem) limits(peel Peeling) []string {
 	l := []string{
 		"linear theory carried to a full drip: about 10 % slow for Newtonian rock beside two-dimensional solutions (ratio 0.89 to 0.93, derived)",
-		"the column is frozen: no cooling, heating, reaction, melting or stretching while the root drips or is cut",
-		"one drip only: what one drip removes stands in for the share that counts as removal",
+	}
+	if p.Moving() {
+		l = append(l, "heat, reaction, strain and events go on while the root drips; nothing is followed beyond the window, and the verdict's clock stops at the first drip")
+		if len(p.Zones) > 0 {
+			l = append(l, "what shear zones cut out is that of the column as it is at the start")
+		}
+	} else {
+		l = append(l, "the column is frozen: no cooling, heating, reaction, melting or stretching while the root drips or is cut",
+			"one drip only: what one drip removes stands in for the share that counts as removal")
 	}
 	var soft, warm bool
 	for i := range p.Column.Layers {
@@ -55,7 +62,11 @@ func (p *Problem) limits(peel Peeling) []string {
 	case column.Inviscid:
 		warm = warm || b.Density.NeedsTemperature()
 	}
-	if soft {
+	if p.softens() {
+		l[0] = "softening by the drip itself: the variational closure of one harmonic, too slow by 2 to 32 % in rate for n of 2 to 5, which the best estimate puts right with what two-dimensional solutions showed for uniform rock over a fluid; so it does for the finite amplitude of a full drip (derived)"
+	} else if soft && p.Strain.ExtensionRate != 0 {
+		l = append(l, "power-law softening by the drip itself is left out: viscosities are those of the background strain rate, with the tangent response of power-law rock; once the drip strains its rock faster than the background, it drips sooner")
+	} else if soft {
 		l = append(l, "power-law softening by the drip itself is left out: viscosities are isotropic, at the reference strain rate; rock drips sooner or later than that as its own strain rate is above or below it")
 	}
 	if warm {

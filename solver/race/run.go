@@ -8,7 +8,6 @@ import (
 	"math"
 	"slices"
 
-	"keelfall/column"
 	"keelfall/solver/drip"
 	"keelfall/solver/excision"
 	"keelfall/solver/growth"
@@ -35,36 +34,6 @@ func Spectrum(ctx context.Context, p *Problem, s *state.State) (*growth.Spectrum
 	return growth.Compute(ctx, GrowthColumn(p, s), growth.Options{From: p.SpectrumFrom, To: p.SpectrumTo, Workers: p.Workers})
 }
 
-// Drip returns when the root of a prepared column drips.
-func Drip(ctx context.Context, p *Problem, s *state.State) (*drip.Result, error) {
-	if err := p.still(); err != nil {
-		return nil, err
-	}
-	if err := p.canDrip(); err != nil {
-		return nil, err
-	}
-	return drip.Solve(ctx, s, p.Drip, p.dripOptions())
-}
-
-// canDrip refuses what no drip can be asked of: no root, a root on a wall, an
-// undulation that already is the drip.
-func (p *Problem) canDrip() error {
-	if e := p.Strain.ExtensionRate; e != 0 {
-		return fmt.Errorf("%w: strain.extension-rate is %.3g 1/s, and drips in a column that is strained are not in this version of keelfall; keelfall spectrum and keelfall mode take it", ErrInput, e)
-	}
-	_, last, ok := p.Column.RootSpan()
-	if !ok {
-		return fmt.Errorf("%w: %w", ErrInput, drip.ErrNoRoot)
-	}
-	if last == len(p.Column.Layers)-1 && p.Column.Base.Boundary != column.HalfSpace && p.Column.Base.Boundary != column.Inviscid {
-		return fmt.Errorf("%w: the root lies on a wall that cannot move; give it a half-space or inviscid base, or a layer below", ErrInput)
-	}
-	if tip := p.Drip.Criterion * p.Column.RootThickness(); p.Drip.Amplitude >= tip {
-		return fmt.Errorf("%w: an undulation of %.4g m already is the drip: %g × the root's thickness is %.4g m", ErrInput, p.Drip.Amplitude, p.Drip.Criterion, tip)
-	}
-	return nil
-}
-
 // Limit returns the longest wavelength in m that the arc has room for and what that
 // is, in words: the arc's length along strike, its width along the stretch; 0 where
 // the experiment does not give it.
@@ -86,7 +55,7 @@ func (p *Problem) dripOptions() drip.Options {
 
 // Excise returns when the zones have taken the verdict's share of the root.
 func Excise(p *Problem, s *state.State) (*excision.Result, error) {
-	if err := p.still(); err != nil {
+	if err := p.zonesStill(); err != nil {
 		return nil, err
 	}
 	r, err := excision.Solve(p.Zones, p.excisionSetting(s))
@@ -127,7 +96,7 @@ func Run(ctx context.Context, p *Problem) (*Result, error) {
 
 // RunSaying is Run; it calls say with what is computed next, in words.
 func RunSaying(ctx context.Context, p *Problem, say func(string)) (*Result, error) {
-	if err := p.still(); err != nil {
+	if err := p.zonesStill(); err != nil {
 		return nil, err
 	}
 	_, _, root := p.Column.RootSpan()
@@ -180,45 +149,11 @@ func RunSaying(ctx context.Context, p *Problem, say func(string)) (*Result, erro
 // Warnings returns what a prepared column is warned about, whatever is asked of it.
 func Warnings(p *Problem, s *state.State) []string {
 	w := append(slices.Clone(s.Warnings), p.measured(s)...)
-	if p.Strain.ExtensionRate == 0 && p.Drip.Softening != "self" && drip.RateDependent(s) {
+	if p.Strain.ExtensionRate == 0 && !p.softens() && drip.RateDependent(s) {
 		w = append(w, fmt.Sprintf("stress exponents above 1, nothing that strains the column and no softening by the drip: viscosities are isotropic, those of the reference rate of %.3g 1/s", s.StrainRate))
 	}
 	return w
 }
 
-// strainRates computes the drip time at three times and a third of the reference
-// strain rate.
-func (r *Result) strainRates(ctx context.Context) error {
-	p := r.Problem
-	r.Rate = RateBand{Used: drip.RateDependent(r.State), AtThrice: math.Inf(1), AtOneThird: math.Inf(1)}
-	if !r.Rate.Used {
-		r.Rate.AtThrice, r.Rate.AtOneThird = r.Drip.Time, r.Drip.Time
-		return nil
-	}
-	for _, f := range []float64{3, 1.0 / 3} {
-		q := *p
-		q.Strain.ReferenceRate *= f
-		t, err := dripTime(ctx, &q, r.Drip.Wavelength)
-		if err != nil {
-			return err
-		}
-		if f > 1 {
-			r.Rate.AtThrice = t
-		} else {
-			r.Rate.AtOneThird = t
-		}
-	}
-	return nil
-}
-
-// dripTime returns the drip time of a problem alone; near, where not 0, is a
-// wavelength in m to look around.
-func dripTime(ctx context.Context, p *Problem, near float64) (float64, error) {
-	s, err := Prepare(p)
-	if err != nil {
-		return 0, err
-	}
-	o := p.dripOptions()
-	o.Near = near
-	return drip.Time(ctx, s, p.Drip, o)
-}
+// softens says whether the drip's own strain rate softens its rock.
+func (p *Problem) softens() bool { return p.Drip.Softening == "self" }

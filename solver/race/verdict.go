@@ -143,6 +143,8 @@ func (r *Result) sentence() string {
 	}
 	drips := "it would never drip"
 	switch {
+	case math.IsInf(d.Time, 1) && r.Problem.Moving(): // not followed beyond the window
+		drips = "it does not drip before then"
 	case d.Time >= 1000*myr && d.Outcome != "buoyant":
 		drips = "it would take more than 1000 Myr to drip"
 	case !math.IsInf(d.Time, 1):
@@ -161,6 +163,9 @@ func (r *Result) sentence() string {
 		cuts := " cuts"
 		if plural {
 			cuts = " cut"
+		}
+		if math.IsInf(d.Time, 1) && r.Problem.Moving() {
+			drips = fmt.Sprintf("it does not drip within the window of %s", when(r.Problem.Drip.Window))
 		}
 		return strings.ToUpper(name[:1]) + name[1:] + cuts + " the root out first, " + share + " by " + when(v.Time) + "; " + drips + "."
 	}

@@ -71,17 +71,27 @@ type Profile struct{ Points []Point }
 //
 // Errors: those of Validate and package heat, and the layer and depth where a creep
 // law or a density has no value.
-func New(c *column.Column, strainRate float64) (*State, error) {
+func New(c *column.Column, strainRate float64) (*State, error) { return From(c, nil, strainRate) }
+
+// From is New with the temperatures and pressures of a profile of this very column, as
+// heat.Evolution.Snapshot returns them; nil: those of heat.Solve.
+func From(c *column.Column, hp *heat.Profile, strainRate float64) (*State, error) {
 	if err := c.Validate(); err != nil {
 		return nil, fmt.Errorf("state: %w", err)
 	}
 	if !(strainRate >= 0) || math.IsInf(strainRate, 1) {
 		return nil, fmt.Errorf("state: strain rate %g 1/s, must be >= 0", strainRate)
 	}
-	hp, err := heat.Solve(c)
-	if err != nil {
-		return nil, fmt.Errorf("state: %w", err)
+	if hp == nil {
+		var err error
+		if hp, err = heat.Solve(c); err != nil {
+			return nil, fmt.Errorf("state: %w", err)
+		}
 	}
+	if len(hp.Layers) != len(c.Layers) {
+		return nil, fmt.Errorf("state: a profile of %d layers for a column of %d", len(hp.Layers), len(c.Layers))
+	}
+	var err error
 	s := &State{
 		Column: c, StrainRate: strainRate, HasTemperature: hp.HasTemperature,
 		SurfaceFlow: hp.SurfaceFlow, BaseFlow: hp.BaseFlow,

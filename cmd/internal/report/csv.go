@@ -113,7 +113,11 @@ func DripTable(r *race.Result) Table {
 	t := Table{Name: "drip", Header: []string{"wavelength_km", "drip_time_Myr", "drip_time_amplitude_x3_Myr", "drip_time_amplitude_third_Myr"}}
 	c := r.Drip.Curve
 	for i := range c.Wavelength {
-		t.Rows = append(t.Rows, []string{cell(c.Wavelength[i] / km), cell(c.Time[i] / Myr), cell(c.Low[i] / Myr), cell(c.High[i] / Myr)})
+		low, high := math.NaN(), math.NaN() // a drip that softens itself is followed from one amplitude
+		if i < len(c.Low) {
+			low, high = c.Low[i], c.High[i]
+		}
+		t.Rows = append(t.Rows, []string{cell(c.Wavelength[i] / km), cell(c.Time[i] / Myr), cell(low / Myr), cell(high / Myr)})
 	}
 	return t
 }

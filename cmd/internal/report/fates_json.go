@@ -25,8 +25,22 @@ type DripJSON struct {
 	Growth            number      `json:"growth_rate_per_s"`
 	StrainRate        number      `json:"strain_rate_start_per_s"`
 	StrainRateEnd     number      `json:"strain_rate_end_per_s"`
+	Softened          *softJSON   `json:"softened"`
 	Curve             curveJSON   `json:"curve"`
 	Warnings          []string    `json:"warnings"`
+}
+
+// softJSON is how a time was found where the drip softens its own rock.
+type softJSON struct {
+	Slow     number   `json:"slow_bound_s"`
+	BestLow  number   `json:"best_low_s"`
+	BestHigh number   `json:"best_high_s"`
+	Exponent number   `json:"stress_exponent"`
+	Centre   number   `json:"closure_over_2d_rate"`
+	Finite   number   `json:"finite_amplitude_factor"`
+	Inside   bool     `json:"within_2d_solutions"`
+	Failed   int      `json:"wavelengths_left_out"`
+	Warnings []string `json:"warnings"`
 }
 
 type eventJSON struct {
@@ -34,6 +48,9 @@ type eventJSON struct {
 	Wavelength number `json:"wavelength_m"`
 	Share      number `json:"removed_share"`
 	Thickness  number `json:"removed_thickness_m"`
+	Initial    number `json:"initial_wavelength_m"`
+	Depth      number `json:"root_base_depth_m"`
+	Base       number `json:"root_base_temperature_K"`
 }
 
 type curveJSON struct {
@@ -64,8 +81,12 @@ func Drip(p *race.Problem, s *state.State, d *drip.Result) DripJSON {
 		StrainRate: or(d.StrainRate), StrainRateEnd: or(d.StrainRateEnd),
 		Curve:    curveJSON{numbers(d.Curve.Wavelength), numbers(d.Curve.Time), numbers(d.Curve.Low), numbers(d.Curve.High)},
 		Warnings: list(DripWarnings(p, s, d))}
+	if s := d.Soft; s != nil {
+		j.Softened = &softJSON{number(s.Slow), number(s.BestLow), number(s.BestHigh), number(s.Exponent),
+			number(s.Correction.Centre), number(s.Correction.Finite), s.Correction.Inside, s.Failed, list(nil)}
+	}
 	if d.Outcome == "drips" {
-		j.Events = append(j.Events, eventJSON{number(d.Time), number(d.Wavelength), number(p.Drip.Removes), number(p.Column.RootThickness() * p.Drip.Removes)})
+		j.Events = dripEvents(p, s, d)
 	}
 	return j
 }
@@ -122,4 +143,31 @@ func Excision(p *race.Problem, s *state.State, x *excision.Result) ExcisionJSON 
 		j.CutSlip, j.CutHeave = number(x.CutThroughSlip), number(x.CutThroughHeave)
 	}
 	return j
+}
+
+// dripEvents lists the drips: one of a frozen column, as many as the window holds of one
+// that moves.
+func dripEvents(p *race.Problem, s *state.State, d *drip.Result) []eventJSON {
+	share := number(p.Drip.Removes)
+	if d.Drips == nil {
+		base := none
+		depth := none
+		if _, last, ok := s.Column.RootSpan(); ok {
+			pts := s.Layers[last].Points
+			depth = number(pts[len(pts)-1].Depth)
+			if s.HasTemperature {
+				base = number(pts[len(pts)-1].T)
+			}
+		}
+		return []eventJSON{{number(d.Time), number(d.Wavelength), share, number(p.Column.RootThickness() * p.Drip.Removes), number(d.InitialWavelength), depth, base}}
+	}
+	var out []eventJSON
+	for _, e := range d.Drips {
+		base := none
+		if e.BaseTemperature > 0 {
+			base = number(e.BaseTemperature)
+		}
+		out = append(out, eventJSON{number(e.Time), number(e.Wavelength), share, number(e.Lost), number(e.Initial), number(e.Depth), base})
+	}
+	return out
 }

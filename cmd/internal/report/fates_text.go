@@ -5,6 +5,7 @@ import (
 	"math"
 	"strings"
 
+	"keelfall/solver/drip"
 	"keelfall/solver/race"
 )
 
@@ -44,9 +45,40 @@ func dripText(p *page, r *race.Result) {
 		p.say("Viscosities at %.1e 1/s%s: at three times that %s, at a third %s.", pb.Strain.ReferenceRate, star(pb, "strain.reference-rate"), myr(r.Rate.AtThrice), myr(r.Rate.AtOneThird))
 	}
 	p.say("\"Dripped\" = tip %s km%s below the old base; the drip takes %.0f %%%s of the root's mass.", short(pb.Drip.Criterion*pb.Column.RootThickness()/km), star(pb, "drip.criterion"), 100*pb.Drip.Removes, star(pb, "drip.removes"))
+	for i, e := range d.Drips {
+		of := ""
+		if i > 0 {
+			of = " after the undulation began anew"
+		}
+		base := ""
+		if e.BaseTemperature > 0 {
+			base = fmt.Sprintf(" at %.0f degC", e.BaseTemperature-zero)
+		}
+		p.say("Drip %d at %s%s: %s km of wavelength (%s km when it began), %s km of the root goes, whose base was at %s km%s.", i+1, when(pb, e.Time), of,
+			short(e.Wavelength/km), short(e.Initial/km), short(e.Lost/km), short(e.Depth/km), base)
+	}
+	if d.Soft != nil {
+		softText(p, d.Soft)
+		return
+	}
+	if d.StrainRateEnd == 0 { // of a column that moves they are not known
+		return
+	}
 	p.say("Strain rate in the root %.1e 1/s at the start, %.1e at the drip.", d.StrainRate, d.StrainRateEnd)
 	if w := shares(r.State, d.Mode); w != "" {
 		p.say("Resistance at this wavelength: %s.", w)
+	}
+}
+
+// softText says how a time was found where the drip softens its own rock.
+func softText(p *page, s *drip.SelfSoftened) {
+	p.say("The drip softens its own rock, and nothing else strains it: growth is faster than exponential. The closure gives %s, a slow bound; the best estimate, for a mean stress exponent of %.2g, is %s to %s.",
+		myr(s.Slow), s.Exponent, myr(s.BestLow), myr(s.BestHigh))
+	if !s.Correction.Inside {
+		p.say("The stress exponent or the wavelength lies beyond the solutions that the estimate rests on (n of 1 to 5, k times the root's thickness 1 to 3); their edge is used.")
+	}
+	if s.Failed > 0 {
+		p.say("%s left out: their viscosities did not settle.", Count(s.Failed, "wavelength"))
 	}
 }
 

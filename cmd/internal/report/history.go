@@ -128,6 +128,18 @@ func (p *Past) reacted(i int) float64 {
 	return p.History.Reacted[i]
 }
 
+// leastMass in kg/m2 is a third of a millimetre of rock: of less, the balance of mass would
+// show but the round-off of all the rest.
+const leastMass = 1.0
+
+// closedMass is closed of the mass.
+func closedMass(m *heat.Mass) (share float64, ok bool) {
+	if m.Moved < leastMass {
+		return 0, false
+	}
+	return closed(m.Missing, m.Moved)
+}
+
 // closed is what is missing of what moved, and whether anything did.
 func closed(missing, moved float64) (share float64, ok bool) {
 	if !(moved > 0) {
@@ -138,19 +150,10 @@ func closed(missing, moved float64) (share float64, ok bool) {
 
 // hottest is when a path is hottest, deepest when its pressure is highest, s.
 func hottest(p *heat.Path) (hot, deep float64) {
-	for i := range p.Time {
-		if p.T[i] == slices.Max(p.T) {
-			hot = p.Time[i]
-			break
-		}
+	if len(p.Time) == 0 {
+		return 0, 0
 	}
-	for i := range p.Time {
-		if p.P[i] == slices.Max(p.P) {
-			deep = p.Time[i]
-			break
-		}
-	}
-	return hot, deep
+	return p.Time[slices.Index(p.T, slices.Max(p.T))], p.Time[slices.Index(p.P, slices.Max(p.P))]
 }
 
 // eventWords says in a sentence's end what an event does.

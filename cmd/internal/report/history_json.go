@@ -146,7 +146,7 @@ func History(p *Past) HistoryJSON {
 	if s, ok := closed(e.Missing, e.Moved); ok {
 		j.EnergyError = number(s)
 	}
-	if s, ok := closed(h.Mass.Missing, h.Mass.Moved); ok {
+	if s, ok := closedMass(&h.Mass); ok {
 		j.MassError = number(s)
 	}
 	return j

@@ -240,7 +240,7 @@ func (p *Past) balance(pg *page) {
 	if !ok {
 		pg.say("No heat moved.")
 	} else {
-		pg.say("The energy balance is closed to %.0e of the heat that moved%s, in %s.", share, massWords(closed(m.Missing, m.Moved)), Count(p.History.Steps, "step"))
+		pg.say("The energy balance is closed to %.0e of the heat that moved%s, in %s.", share, massWords(closedMass(m)), Count(p.History.Steps, "step"))
 	}
 	var words []string
 	for _, t := range energyTerms(e) {

@@ -79,9 +79,6 @@ func ExcisionPage(p *race.Problem, r *race.Result) string {
 func CheckPage(name string, p *race.Problem) string {
 	var b strings.Builder
 	fmt.Fprintf(&b, "%s: in order. %s, %s km deep, %s.\n", name, Count(len(p.Column.Layers), "layer"), sig(p.Column.Depth()/km, 4), Count(len(p.Zones), "shear zone"))
-	if p.Strain.ExtensionRate != 0 {
-		b.WriteString("The column is strained: spectrum and mode take that; run and drip do not in this version.\n")
-	}
 	if len(p.Defaults) > 0 {
 		b.WriteString("Defaults taken (* bears on the verdict, and nobody has measured it):\n")
 		for _, d := range p.Defaults {

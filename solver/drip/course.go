@@ -1,0 +1,253 @@
+package drip
+
+import (
+	"cmp"
+	"context"
+	"errors"
+	"fmt"
+	"math"
+	"slices"
+
+	"keelfall/solver/growth"
+	"keelfall/solver/state"
+)
+
+// Plan is a column through time and how it is strained.
+type Plan struct {
+	Begin       func() (Motion, error) // the column at time 0, the same every time
+	AlongStrike bool                   // the wavevector runs along strike
+	Reference   float64                // 1/s, at which creep is evaluated where nothing strains the column
+}
+
+const (
+	// stepTolerance is what the second-order solution of a span may be off by in ln
+	// amplitude. The fourth-order one that is used is off by less than 1e-4: by 5e-5 of brute force, and by 7e-6 where the
+	// tests halve all steps.
+	stepTolerance = 1e-3
+	// leastStep is the shortest step, of the span: where something in the column ends
+	// between two nodes, it is passed with one of these.
+	leastStep = 1e-4
+	// courseTolerance is that of the growth rates at one time.
+	courseTolerance = 1e-6
+)
+
+// course is a column through time, kept as states at nodes. It is extended together
+// with the undulations that follow it, whose error sets its steps, and can then be
+// followed again by others.
+type course struct {
+	plan   Plan
+	tape   *tape
+	span   float64         // s, what the tolerance is for
+	ends   []float64       // of the pairs, where not chosen by error: for tests
+	graded map[string]bool // layers whose composition grades, or has
+	first  *node
+	legs   []leg
+	h      float64 // next step, s
+}
+
+// leg is a pair of equal steps or, where mid is nil, a jump.
+type leg struct{ from, mid, end *node }
+
+// last is the node the course has come to.
+func (c *course) last() *node {
+	if n := len(c.legs); n > 0 {
+		return c.legs[n-1].end
+	}
+	return c.first
+}
+
+// node is the column at one time.
+type node struct {
+	t      float64
+	mark   int // of the tape
+	s      *state.State
+	model  *growth.Column
+	form   *growth.Template
+	lay    layout  // without parts
+	root   float64 // thickness, m
+	strain float64 // ∫ e_k dt since time 0, e_k the strain rate along the wavevector
+}
+
+// newCourse begins a course where the tape is.
+func newCourse(p Plan, t *tape, until float64) (*course, error) {
+	c := &course{plan: p, tape: t, span: until - t.motion.Time(), graded: map[string]bool{}}
+	c.h = c.span / 200
+	n, err := c.look()
+	if err != nil {
+		return nil, err
+	}
+	c.first = n
+	return c, c.refine(n)
+}
+
+// look returns the column where the tape is now.
+func (c *course) look() (*node, error) {
+	m := c.tape.motion
+	col, profile, err := m.Snapshot()
+	if err != nil {
+		return nil, err
+	}
+	e := m.ExtensionRate()
+	col.Sense = float64(cmp.Compare(e, 0))
+	rate := math.Abs(e)
+	if rate == 0 {
+		rate = c.plan.Reference
+	}
+	s, err := state.From(col, profile, rate)
+	if err != nil {
+		return nil, fmt.Errorf("at %.4g Myr: %w", m.Time()/1e6/year, err)
+	}
+	n := &node{t: m.Time(), mark: c.tape.mark(), s: s, lay: layout{rootBase: -1, parts: make([]int, len(col.Layers))}}
+	if !c.plan.AlongStrike {
+		n.strain = c.tape.strain
+	}
+	for i := range col.Layers {
+		n.lay.names = append(n.lay.names, col.Layers[i].Name)
+	}
+	if _, last, ok := col.RootSpan(); ok {
+		n.lay.rootBase, n.root = last+1, col.RootThickness()
+	}
+	n.model = Strained(s, Background{ExtensionRate: e, AlongStrike: c.plan.AlongStrike}, "none")
+	return n, nil
+}
+
+const year = 365.25 * 86400 // s
+
+// refine gives a node its growth solver. Layers whose composition grades somewhere carry
+// a field from then on, also where it does not.
+func (c *course) refine(n *node) error {
+	for i, name := range n.lay.names {
+		if n.model.Layers[i].Gradient != nil {
+			c.graded[name] = true
+		} else if c.graded[name] {
+			n.model.Layers[i].Gradient = func(float64) float64 { return 0 }
+		}
+	}
+	var err error
+	if n.form, err = growth.NewTemplate(n.model, courseTolerance); err != nil {
+		return fmt.Errorf("at %.4g Myr: %w", n.t/1e6/year, err)
+	}
+	n.lay.surface, n.lay.base = n.form.Movable()
+	return nil
+}
+
+// errChanged says that the layers changed between two nodes that were to be one pair.
+var errChanged = errors.New("drip: the layers changed")
+
+// pair drives the column over two steps h.
+func (c *course) pair(ctx context.Context, h float64) (leg, error) {
+	l := leg{from: c.last()}
+	before := len(c.graded)
+	for i, n := range []**node{&l.mid, &l.end} {
+		if err := c.tape.advance(ctx, l.from.t+h*float64(i+1)); err != nil {
+			return l, err
+		}
+		var err error
+		if *n, err = c.look(); err != nil {
+			return l, err
+		}
+		if err := c.refine(*n); err != nil {
+			return l, err
+		}
+		if !(*n).lay.same(&l.from.lay) {
+			return l, errChanged
+		}
+	}
+	if len(c.graded) > before { // the leg before keeps its own
+		again := *l.from
+		model := *again.model
+		model.Layers = slices.Clone(model.Layers)
+		again.model = &model
+		l.from = &again
+		for _, n := range []*node{l.from, l.mid} {
+			if err := c.refine(n); err != nil {
+				return l, err
+			}
+		}
+	}
+	return l, nil
+}
+
+// jumpTo drives the column to t and appends what it is there, beyond a jump.
+func (c *course) jumpTo(ctx context.Context, t float64) error {
+	if err := c.tape.advance(ctx, t); err != nil {
+		return err
+	}
+	n, err := c.look()
+	if err != nil {
+		return err
+	}
+	if err := c.refine(n); err != nil {
+		return err
+	}
+	c.legs = append(c.legs, leg{from: c.last(), end: n})
+	return nil
+}
+
+// extend adds one leg, with the followers that go along, up to until at most.
+func (c *course) extend(ctx context.Context, g *group, until float64) error {
+	from := c.last()
+	tiny := 1e-7 * c.span
+	next := c.tape.motion.Next()
+	if next-from.t <= 2*tiny && next <= until {
+		if err := c.jumpTo(ctx, next); err != nil {
+			return err
+		}
+		return g.jump(c.legs[len(c.legs)-1])
+	}
+	room := math.Min(until, next-tiny) - from.t
+	h := math.Max(c.h, leastStep*c.span)
+	for len(c.ends) > 0 && c.ends[0] < from.t+leastStep*c.span {
+		c.ends = c.ends[1:]
+	}
+	forced := len(c.ends) > 0
+	if forced {
+		h = (c.ends[0] - from.t) / 2
+	}
+	for {
+		last := 2*h > room*0.999
+		if last {
+			h = room / 2
+		} else if 4*h > room && !forced {
+			h = room / 4 // two pairs rather than one and a sliver
+		}
+		l, err := c.pair(ctx, h)
+		least := h <= leastStep*c.span*1.001
+		if err == errChanged {
+			if err := c.tape.back(ctx, from.mark); err != nil {
+				return err
+			}
+			if !least {
+				h /= 4
+				continue
+			}
+			if err := c.jumpTo(ctx, from.t+2*h); err != nil {
+				return err
+			}
+			return g.jump(c.legs[len(c.legs)-1])
+		}
+		if err != nil {
+			return err
+		}
+		off, err := g.try(ctx, l)
+		if err != nil {
+			return err
+		}
+		allowed := stepTolerance*2*h/c.span + stepTolerance/50
+		factor := math.Min(2.5, math.Max(0.25, 0.8*math.Cbrt(allowed/(off+1e-300))))
+		if off > allowed*1.5 && !least && !forced {
+			if err := c.tape.back(ctx, from.mark); err != nil {
+				return err
+			}
+			h *= factor
+			continue
+		}
+		c.h = math.Max(h*factor, leastStep*c.span)
+		if last { // a short last step says nothing of the next
+			c.h = math.Max(c.h, h)
+		}
+		c.legs = append(c.legs, l)
+		g.accept(l)
+		return nil
+	}
+}

@@ -1,0 +1,270 @@
+package drip
+
+import (
+	"context"
+	"fmt"
+	"math"
+
+	"keelfall/solver/growth"
+)
+
+// Event is one drip of a root that changes with time.
+type Event struct {
+	Time            float64 // s
+	Wavelength      float64 // m, at the drip
+	Initial         float64 // m, when its undulation began
+	Lost            float64 // thickness that goes, m
+	Depth           float64 // of the root's base just before, m
+	BaseTemperature float64 // there, K; 0 without temperature
+}
+
+// through is a root followed through time.
+type through struct {
+	plan   Plan
+	set    Settings
+	o      Options
+	tape   *tape
+	course *course
+	grid   *group
+}
+
+// Through returns when the root of a column that changes with time drips, and again
+// after that, to the end of the window. Nothing is followed beyond it: Time and the
+// curve's times are +Inf where nothing drips before. An undulation of the first
+// amplitude begins at time 0 on the root's base, all other interfaces flat, and anew
+// after every drip; a drip takes set.Removes of the root's mass then, from its base.
+//
+// The displacements obey dξ/dt = A(k, t) ξ with A of the column at t and k moving with
+// the stretch. They are carried by exp(h A₁/2) exp(h A₀/2) over pairs of steps, held
+// against one of twice the length, whose difference sets the steps and gives Richardson's
+// fourth order. Options.Limit is held against the wavelength at the drip. Curve and
+// spacing have the wavelengths at the start.
+func Through(ctx context.Context, p Plan, set Settings, o Options) (*Result, error) {
+	d, err := newThrough(ctx, p, set, o)
+	if err != nil {
+		return nil, err
+	}
+	r := &Result{Outcome: "window", Time: math.Inf(1), TimeLow: math.Inf(1), TimeHigh: math.Inf(1), Unrestricted: Fastest{Time: math.Inf(1)}}
+	from, to := d.span()
+	if err := d.follow(ctx, from, to, 10, -1); err != nil {
+		return nil, err
+	}
+	for _, f := range d.grid.list {
+		r.Curve.Wavelength = append(r.Curve.Wavelength, f.first)
+		r.Curve.Low = append(r.Curve.Low, f.times[0])
+		r.Curve.Time = append(r.Curve.Time, f.times[1])
+		r.Curve.High = append(r.Curve.High, f.times[2])
+	}
+	if err := d.answer(ctx, r); err != nil {
+		return nil, err
+	}
+	if math.IsInf(r.Time, 1) {
+		return r, nil
+	}
+	return r, d.drips(ctx, r)
+}
+
+// ThroughTime returns only the first drip's time in s, +Inf where none comes before the
+// window ends: a quicker Through for searches. With o.Near only wavelengths within a
+// factor of two of that are looked at.
+func ThroughTime(ctx context.Context, p Plan, set Settings, o Options) (float64, error) {
+	d, err := newThrough(ctx, p, set, o)
+	if err != nil {
+		return 0, err
+	}
+	from, to := d.span()
+	if o.Near > 0 {
+		near := math.Max(from, math.Min(to, o.Near))
+		from, to = math.Max(from, near/2), math.Min(to, near*2)
+	}
+	if err := d.follow(ctx, from, math.Max(to, 1.01*from), 4, 1); err != nil {
+		return 0, err
+	}
+	best, err := d.best(ctx, 1, d.limit(), 2e-2)
+	return best.Time, err
+}
+
+func newThrough(ctx context.Context, p Plan, set Settings, o Options) (*through, error) {
+	t, err := newTape(p.Begin)
+	if err != nil {
+		return nil, err
+	}
+	d := &through{plan: p, set: set, o: o, tape: t}
+	if !(set.Window > 0) {
+		return nil, fmt.Errorf("drip: window %g s; must be positive", set.Window)
+	}
+	return d, d.restart()
+}
+
+// restart begins a course where the tape is.
+func (d *through) restart() error {
+	var err error
+	if d.course, err = newCourse(d.plan, d.tape, d.set.Window); err != nil {
+		return err
+	}
+	if d.course.first.lay.rootBase < 0 {
+		return ErrNoRoot
+	}
+	return d.set.check(d.course.first.root)
+}
+
+// span is the range of wavelengths asked for, or that of a spectrum.
+func (d *through) span() (from, to float64) {
+	from, to = d.course.first.form.Range()
+	if d.o.From > 0 {
+		from = d.o.From
+	}
+	if d.o.To > 0 {
+		to = d.o.To
+	}
+	return from, math.Max(to, 1.01*from)
+}
+
+func (d *through) limit() float64 {
+	if d.o.Limit > 0 {
+		return d.o.Limit
+	}
+	return math.Inf(1)
+}
+
+// follow extends the course to the window's end with a grid of wavelengths; with
+// stopAt 0 to 2 it ends when one within the limit drips from that amplitude.
+func (d *through) follow(ctx context.Context, from, to float64, perOctave, stopAt int) error {
+	n := max(2, int(math.Ceil(float64(perOctave)*math.Log2(to/from)))+1)
+	list := make([]float64, n)
+	for i := range list {
+		list[i] = from * math.Pow(to/from, float64(i)/float64(n-1))
+	}
+	var err error
+	if d.grid, err = newGroup(d.course, d.set, list, d.o.Workers); err != nil {
+		return err
+	}
+	d.grid.stopAt, d.grid.limit = stopAt, d.limit()
+	return d.toEnd(ctx)
+}
+
+// toEnd extends the course until the grid is done or the window ends.
+func (d *through) toEnd(ctx context.Context) error {
+	for d.course.last().t < d.set.Window*(1-1e-12) && !d.grid.finished() {
+		if err := d.course.extend(ctx, d.grid, d.set.Window); err == errRootGone {
+			break
+		} else if err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// answer fills all that is said of the first drip.
+func (d *through) answer(ctx context.Context, r *Result) error {
+	const fine = 1e-3 // of the wavelength; a time is good to about the square of that
+	var best [3]Fastest
+	var err error
+	for j := range best {
+		if best[j], err = d.best(ctx, j, d.limit(), fine); err != nil {
+			return err
+		}
+	}
+	r.TimeLow, r.Time, r.TimeHigh = best[0].Time, best[1].Time, best[2].Time
+	r.Unrestricted = best[1]
+	if d.o.Limit > 0 {
+		if r.Unrestricted, err = d.best(ctx, 1, math.Inf(1), fine); err != nil {
+			return err
+		}
+	}
+	r.Unrestricted.Wavelength *= d.stretched(r.Unrestricted.Time)
+	contrast := -d.course.first.s.Jumps[d.course.first.lay.rootBase]
+	if math.IsInf(r.Time, 1) {
+		r.Outcome, r.Reason = d.never(contrast, r.Unrestricted)
+		return nil
+	}
+	r.Outcome, r.Reason = "drips", "the root is "+Weigh(contrast)
+	if contrast <= 0 {
+		r.Reason += " at the start, and becomes denser or is carried down by denser rock above"
+	}
+	r.InitialWavelength, r.Wavelength = best[1].Wavelength, best[1].Wavelength*d.stretched(r.Time)
+	if d.o.Limit > 0 && r.Unrestricted.Time < 0.99*r.Time {
+		r.Excluded = fmt.Sprintf("wavelengths beyond %s, were computed and not used; the first of them to drip is %.3g km", d.o.LimitIs, r.Unrestricted.Wavelength/1e3)
+	}
+	r.SpacingFrom, r.SpacingTo = d.spacing(r.Time, r.InitialWavelength)
+	f, err := d.one(ctx, r.InitialWavelength, 1, true)
+	if err != nil {
+		return err
+	}
+	for i, t := range f.trace.Time {
+		if t < r.Time {
+			r.History.Time, r.History.Base = append(r.History.Time, t), append(r.History.Base, f.trace.Base[i])
+		}
+	}
+	return nil
+}
+
+// never says that nothing drips within the window, and why.
+func (d *through) never(contrast float64, free Fastest) (outcome, reason string) {
+	denser := contrast > 0
+	for _, l := range d.course.legs {
+		if b := l.end.lay.rootBase; b >= 0 {
+			denser = denser || -l.end.s.Jumps[b] > 0
+		}
+	}
+	switch {
+	case d.course.last().lay.rootBase < 0:
+		return "window", "the root was gone before it could drip"
+	case !math.IsInf(free.Time, 1):
+		return "window", fmt.Sprintf("no wavelength within %s, drips, though one of %.3g km would", d.o.LimitIs, free.Wavelength/1e3)
+	case !denser:
+		return "buoyant", "does not drip: the root is " + Weigh(contrast) + ", and never becomes denser"
+	}
+	return "window", "does not drip before the window ends, though the root is or becomes denser than what lies below it"
+}
+
+// at winds the course back to time t and returns the column there.
+func (d *through) at(ctx context.Context, t float64) (*node, error) {
+	mark := d.course.first.mark
+	for _, l := range d.course.legs {
+		for _, n := range []*node{l.from, l.mid, l.end} {
+			if n != nil && n.t <= t && n.mark > mark {
+				mark = n.mark
+			}
+		}
+	}
+	if err := d.tape.back(ctx, mark); err != nil {
+		return nil, err
+	}
+	if t > d.tape.motion.Time() {
+		if err := d.tape.advance(ctx, t); err != nil {
+			return nil, err
+		}
+	}
+	n, err := d.course.look()
+	if err != nil {
+		return nil, err
+	}
+	return n, d.course.refine(n)
+}
+
+// mode adds the leading mode and the strain rates of the first drip, in the column then.
+func (d *through) mode(n *node, r *Result) error {
+	s, err := growth.NewSolver(n.model, courseTolerance)
+	if err != nil {
+		return err
+	}
+	if r.Mode, err = s.Mode(r.Wavelength); err != nil {
+		return err
+	}
+	r.Rate = r.Mode.Growth
+	root := n.s.Column.Layers
+	if size := math.Abs(r.Mode.Displacement[n.lay.rootBase]); size > 0 {
+		for i, l := range root {
+			if l.Root {
+				perMetre := r.Mode.StrainRate[i] / size
+				r.StrainRate = math.Max(r.StrainRate, perMetre*d.set.Amplitude)
+				r.StrainRateEnd = math.Max(r.StrainRateEnd, perMetre*d.set.Criterion*n.root)
+			}
+		}
+	}
+	if w := rateCaution(n.s, r); w != "" && d.set.Softening != "self" {
+		r.Warnings = append(r.Warnings, w)
+	}
+	return nil
+}
