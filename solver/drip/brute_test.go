@@ -8,6 +8,9 @@ import (
 // A course is the same as many equal short steps taken one at a time, without pairs and
 // extrapolation, by the exponential of the matrix in the middle of each.
 func TestBruteForce(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and minutes under the race detector")
+	}
 	set := common()
 	set.Window = 20 * myr
 	const steps, lambda = 4000, 150e3

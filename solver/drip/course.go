@@ -108,6 +108,11 @@ func (c *course) look() (*node, error) {
 		n.lay.rootBase, n.root = last+1, col.RootThickness()
 	}
 	n.model = Strained(s, Background{ExtensionRate: e, AlongStrike: c.plan.AlongStrike}, "none")
+	for i := range n.model.Layers {
+		if n.model.Layers[i].Gradient != nil {
+			return nil, fmt.Errorf("%w: the composition of %s grades at %.4g Myr", ErrGrades, n.lay.names[i], m.Time()/1e6/year)
+		}
+	}
 	return n, nil
 }
 
@@ -130,6 +135,11 @@ func (c *course) refine(n *node) error {
 	n.lay.surface, n.lay.base = n.form.Movable()
 	return nil
 }
+
+// ErrGrades says that a column through time has a layer whose composition grades with
+// depth, by itself or as it reacts. The states for it are laid out (layout.parts), but
+// nothing has been checked against them yet.
+var ErrGrades = errors.New("drip: through time only layers of one composition each are followed")
 
 // errChanged says that the layers changed between two nodes that were to be one pair.
 var errChanged = errors.New("drip: the layers changed")

@@ -15,6 +15,9 @@ import (
 // or not: a descent has a time, finite or not. In one of a hundred, strained and with n = 8,
 // flow and viscosities may not settle, which is an error that says so; NaN never comes out.
 func TestSoftRandomColumns(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and minutes under the race detector")
+	}
 	r := rand.New(rand.NewPCG(7, 11))
 	unsettled := 0
 	for range 60 {

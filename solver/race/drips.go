@@ -33,7 +33,11 @@ func Drip(ctx context.Context, p *Problem, s *state.State) (*drip.Result, error)
 	if err != nil {
 		return nil, err
 	}
-	return drip.Through(ctx, plan, p.Drip, p.dripOptions())
+	r, err := drip.Through(ctx, plan, p.Drip, p.dripOptions())
+	if errors.Is(err, drip.ErrGrades) {
+		return nil, fmt.Errorf("%w: %w; keelfall history, spectrum and mode take it", ErrInput, err)
+	}
+	return r, err
 }
 
 // dripTime returns the drip time of a prepared column alone; near, where not 0, is a

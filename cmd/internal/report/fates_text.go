@@ -44,7 +44,11 @@ func dripText(p *page, r *race.Result) {
 	if r.Rate.Used {
 		p.say("Viscosities at %.1e 1/s%s: at three times that %s, at a third %s.", pb.Strain.ReferenceRate, star(pb, "strain.reference-rate"), myr(r.Rate.AtThrice), myr(r.Rate.AtOneThird))
 	}
-	p.say("\"Dripped\" = tip %s km%s below the old base; the drip takes %.0f %%%s of the root's mass.", short(pb.Drip.Criterion*pb.Column.RootThickness()/km), star(pb, "drip.criterion"), 100*pb.Drip.Removes, star(pb, "drip.removes"))
+	tip := fmt.Sprintf("%s km%s below the old base", short(pb.Drip.Criterion*pb.Column.RootThickness()/km), star(pb, "drip.criterion"))
+	if pb.Moving() {
+		tip = fmt.Sprintf("down by %s%s times the root's thickness at that time", short(pb.Drip.Criterion), star(pb, "drip.criterion"))
+	}
+	p.say("\"Dripped\" = tip %s; the drip takes %.0f %%%s of the root's mass.", tip, 100*pb.Drip.Removes, star(pb, "drip.removes"))
 	for i, e := range d.Drips {
 		of := ""
 		if i > 0 {
