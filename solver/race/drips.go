@@ -37,6 +37,9 @@ func Drip(ctx context.Context, p *Problem, s *state.State) (*drip.Result, error)
 	if errors.Is(err, drip.ErrGrades) {
 		return nil, fmt.Errorf("%w: %w; keelfall history, spectrum and mode take it", ErrInput, err)
 	}
+	if err == nil && r.Mode != nil && len(r.Mode.DissipationShare) != len(p.Column.Layers)+1 {
+		r.Mode = nil // of layers that are not those of the start
+	}
 	return r, err
 }
 
