@@ -23,7 +23,7 @@ func History(t *Thermal, width vg.Length) (Figure, error) {
 	if err := t.check(); err != nil {
 		return Figure{}, err
 	}
-	f := &historyFigure{Thermal: t, events: inOrder(t.Events)}
+	f := &historyFigure{Thermal: t, events: heat.InOrder(t.Events)}
 	f.depth = f.depthScale()
 	f.time = linear(0, f.end())
 	if n := len(f.events); n > mostRows {

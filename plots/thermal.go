@@ -158,18 +158,3 @@ func moments(e *heat.Event) []float64 {
 	}
 	return out
 }
-
-// inOrder returns the events by their beginning.
-func inOrder(events []heat.Event) []heat.Event {
-	out := slices.Clone(events)
-	slices.SortStableFunc(out, func(a, b heat.Event) int {
-		switch {
-		case a.From < b.From:
-			return -1
-		case a.From > b.From:
-			return 1
-		}
-		return 0
-	})
-	return out
-}

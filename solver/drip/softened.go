@@ -18,8 +18,7 @@ type SelfSoftened struct {
 	BestHigh   float64
 	Exponent   float64 // n weighted with dissipation, averaged over the time
 	Correction Correction
-	Failed     int    // wavelengths whose viscosities did not settle, and which are left out
-	Ended      string // why nothing drips at the quickest wavelength, in words; "" where it does
+	Failed     int // wavelengths whose viscosities did not settle, and which are left out
 }
 
 // softMargin is how many times longer than the quickest so far an undulation is followed:
@@ -50,7 +49,7 @@ func (p *problem) soften(ctx context.Context, s *state.State, set Settings, o Op
 	if err != nil {
 		return err
 	}
-	r.Soft = &SelfSoftened{Slow: math.Inf(1), Best: math.Inf(1), BestLow: math.Inf(1), BestHigh: math.Inf(1), Failed: run.failed, Ended: run.ended}
+	r.Soft = &SelfSoftened{Slow: math.Inf(1), Best: math.Inf(1), BestLow: math.Inf(1), BestHigh: math.Inf(1), Failed: run.failed}
 	r.Time, r.TimeLow, r.TimeHigh = math.Inf(1), math.Inf(1), math.Inf(1)
 	r.Mode, r.StrainRate, r.StrainRateEnd, r.Rate = nil, 0, 0, 0 // of viscosities at one strain rate
 	r.Excluded, r.Unrestricted = "", Fastest{Time: math.Inf(1)}
@@ -60,7 +59,10 @@ func (p *problem) soften(ctx context.Context, s *state.State, set Settings, o Op
 		r.Curve.Time = append(r.Curve.Time, run.best(d)) // other amplitudes are not followed
 	}
 	if math.IsInf(best.Time, 1) {
-		r.Outcome, r.Reason = "window", "does not drip in 1e5 Myr, softened by itself or not"
+		r.Outcome, r.Reason = "window", "does not drip in 1e5 Myr by its own softening, though the root is "+Weigh(-s.Jumps[p.base])
+		if run.ended != "" {
+			r.Reason = "does not drip: at " + run.ended
+		}
 		if contrast := -s.Jumps[p.base]; contrast <= 0 {
 			r.Outcome, r.Reason = never(contrast, r.Unrestricted, o)
 		}

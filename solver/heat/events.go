@@ -1,7 +1,9 @@
 package heat
 
 import (
+	"cmp"
 	"fmt"
+	"slices"
 
 	"keelfall/column"
 )
@@ -67,4 +69,11 @@ type Clock struct {
 	Diffusivity      float64 // m²/s
 	Radius           float64 // m
 	Geometry         string  // sphere, cylinder or sheet
+}
+
+// InOrder returns the events by their beginning; those of one time keep their order.
+func InOrder(events []Event) []Event {
+	out := slices.Clone(events)
+	slices.SortStableFunc(out, func(a, b Event) int { return cmp.Compare(a.From, b.From) })
+	return out
 }

@@ -193,18 +193,3 @@ func eventWords(e *heat.Event) string {
 	}
 	return e.Verb
 }
-
-// inOrder are the events by their beginning.
-func inOrder(events []heat.Event) []heat.Event {
-	out := slices.Clone(events)
-	slices.SortStableFunc(out, func(a, b heat.Event) int {
-		switch {
-		case a.From < b.From:
-			return -1
-		case a.From > b.From:
-			return 1
-		}
-		return 0
-	})
-	return out
-}

@@ -122,7 +122,7 @@ func History(p *Past) HistoryJSON {
 		j.RootThickness = append(j.RootThickness, number(h.RootThickness[i]))
 		j.Reacted = append(j.Reacted, number(p.reacted(i)))
 	}
-	for _, e := range inOrder(p.Problem.Events) {
+	for _, e := range heat.InOrder(p.Problem.Events) {
 		j.Events = append(j.Events, happeningJSON{e.Verb, e.Name, e.Layer, number(e.From), number(e.To), eventWords(&e)})
 	}
 	for _, s := range p.snapshots() {

@@ -62,7 +62,7 @@ func (p *Past) period(e *heat.Event) string {
 
 func (p *Past) events(pg *page) {
 	pg.section("EVENTS")
-	events := inOrder(p.Problem.Events)
+	events := heat.InOrder(p.Problem.Events)
 	if e := p.Problem.Strain.ExtensionRate; e != 0 {
 		word := "stretches"
 		if e < 0 {
