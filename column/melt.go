@@ -6,15 +6,6 @@ import "fmt"
 // melt in it, but melt with crystals: common practice, no single source.
 const MeltLimit = 0.25
 
-// Curve is a temperature that depends on pressure: Surface + Slope P.
-type Curve struct {
-	Surface float64 // K, at P = 0
-	Slope   float64 // K/Pa
-}
-
-// At returns the curve's temperature in K at P in Pa.
-func (c Curve) At(P float64) float64 { return c.Surface + c.Slope*P }
-
 // Melt is partial melt in a rock: a given fraction or, where Solidus and Liquidus are
 // there, the equilibrium one. A nil Melt is no melt.
 //
@@ -34,7 +25,8 @@ type Melt struct {
 //
 // Linear melting is a common simplification; real rocks melt in steps. On a curve the
 // derivative is that of the hotter side. Where the solidus is not below the liquidus
-// (Covers refuses it) φ steps from 0 to 1.
+// (Covers refuses it) φ steps from 0 to 1; beyond the pressures of a table (Covers refuses
+// them too) it is that of the table's end.
 func (m *Melt) At(T, P float64) (phi, perKelvin float64) {
 	phi, perKelvin, _ = m.state(T, P)
 	return phi, perKelvin
@@ -56,22 +48,53 @@ func (m *Melt) state(T, P float64) (phi, perKelvin, perPascal float64) {
 		return 1, 0, 0
 	}
 	phi = (T - solidus) / width
-	return phi, 1 / width, -(m.Solidus.Slope + phi*(m.Liquidus.Slope-m.Solidus.Slope)) / width
+	a, b := m.Solidus.PerPascal(P), m.Liquidus.PerPascal(P)
+	return phi, 1 / width, -(a + phi*(b-a)) / width
 }
 
 // NeedsTemperature says whether the fraction depends on temperature.
 func (m *Melt) NeedsTemperature() bool { return m != nil && m.Solidus != nil }
 
-// Covers returns an error with the numbers where the solidus is not below the liquidus
-// at P in Pa.
+// Covers returns an error with the numbers where P in Pa lies beyond the table of either
+// curve, or the solidus is not below the liquidus there.
 func (m *Melt) Covers(P float64) error {
 	if !m.NeedsTemperature() {
 		return nil
+	}
+	if err := m.Solidus.covers(P); err != nil {
+		return fmt.Errorf("melt: the solidus at %w", err)
+	}
+	if err := m.Liquidus.covers(P); err != nil {
+		return fmt.Errorf("melt: the liquidus at %w", err)
 	}
 	if s, l := m.Solidus.At(P), m.Liquidus.At(P); !(s < l) {
 		return fmt.Errorf("melt: the solidus, %.6g degC, is not below the liquidus, %.6g degC, at P = %.6g GPa", s-273.15, l-273.15, P/1e9)
 	}
 	return nil
+}
+
+// Common returns the pressures in Pa at which the solidus has to be below the liquidus for
+// it to be so wherever both are known: the ends of what their tables share and every row
+// between, increasing; 0 for two lines, of which Covers has to say more. An error where the
+// tables share no range of pressures. Only for a melt with both curves.
+func (m *Melt) Common() ([]float64, error) {
+	s, l := m.Solidus, m.Liquidus
+	if s.Table == nil && l.Table == nil {
+		return []float64{0}, nil
+	}
+	a, b := s.Span()
+	c, d := l.Span()
+	from, to := max(a, c), min(b, d)
+	if !(from < to) {
+		return nil, fmt.Errorf("melt: the tables share no pressures: the solidus covers %.6g to %.6g GPa, the liquidus %.6g to %.6g GPa", a/1e9, b/1e9, c/1e9, d/1e9)
+	}
+	out := []float64{from, to}
+	for _, t := range []*CurveTable{s.Table, l.Table} {
+		if t != nil {
+			out = append(out, t.within(from, to)...)
+		}
+	}
+	return increasing(out), nil
 }
 
 // ApparentHeatCapacity returns c_p + L (∂φ/∂T)_P in J/kg/K at T in K and P in Pa: where
@@ -105,31 +128,52 @@ func (r *Rock) Adiabat(T, P, x float64) float64 {
 	return (work - r.Melt.LatentHeat*perPascal) / (r.HeatCapacity + r.Melt.LatentHeat*perKelvin)
 }
 
-// Kinks are the solidus and the liquidus, at which ∂φ/∂T jumps.
+// Kinks are the solidus and the liquidus, at which ∂φ/∂T jumps, and the pressures of a
+// table at which its slope does.
 func (m *Melt) Kinks() []Kink {
 	if !m.NeedsTemperature() {
 		return nil
 	}
-	return []Kink{
+	out := []Kink{
 		func(T, P float64) float64 { return T - m.Solidus.At(P) },
 		func(T, P float64) float64 { return T - m.Liquidus.At(P) },
 	}
+	var corners []float64
+	for _, c := range []*Curve{m.Solidus, m.Liquidus} {
+		if c.Table != nil {
+			corners = append(corners, c.Table.corners()...)
+		}
+	}
+	for _, at := range increasing(corners) {
+		out = append(out, func(_, P float64) float64 { return P - at })
+	}
+	return out
 }
 
 // Validate returns what makes the melt unusable: one curve without the other, a solidus
-// that is not below the liquidus at P = 0, a number out of range.
+// that is not below the liquidus (of two lines at P = 0), a number out of range.
 func (m *Melt) Validate() error {
 	switch {
 	case (m.Solidus == nil) != (m.Liquidus == nil):
 		return fmt.Errorf("melt: a solidus and a liquidus belong together")
-	case m.Solidus != nil && !finite(m.Solidus.Surface, m.Solidus.Slope, m.Liquidus.Surface, m.Liquidus.Slope):
-		return fmt.Errorf("melt: solidus %g K + %g K/Pa, liquidus %g K + %g K/Pa", m.Solidus.Surface, m.Solidus.Slope, m.Liquidus.Surface, m.Liquidus.Slope)
 	case m.Solidus == nil && !(m.Fraction >= 0 && m.Fraction <= 1):
 		return fmt.Errorf("melt: fraction %g, must be 0 to 1", m.Fraction)
 	case !finite(m.LatentHeat, m.Density, m.Weakening) || m.LatentHeat < 0 || m.Density < 0 || m.Weakening < 0:
 		return fmt.Errorf("melt: latent heat %g J/kg, density %g kg/m³, weakening %g; must be >= 0", m.LatentHeat, m.Density, m.Weakening)
+	case m.Solidus == nil:
+		return nil
 	}
-	return m.Covers(0)
+	if err := m.Solidus.validate("solidus"); err != nil {
+		return err
+	}
+	if err := m.Liquidus.validate("liquidus"); err != nil {
+		return err
+	}
+	all, err := m.Common()
+	for i := 0; err == nil && i < len(all); i++ {
+		err = m.Covers(all[i])
+	}
+	return err
 }
 
 // Molten is the density of a rock with melt in it,
@@ -195,8 +239,8 @@ func (m Molten) NeedsTemperature() bool {
 	return m.Solid.NeedsTemperature() || m.Melt.NeedsTemperature()
 }
 
-// Covers returns the error of a solid asked outside its range, and of a solidus that is
-// not below the liquidus.
+// Covers returns the error of a solid or a melt asked outside its range, and of a solidus
+// that is not below the liquidus.
 func (m Molten) Covers(T, P float64) error {
 	if err := Covered(m.Solid, T, P); err != nil {
 		return err

@@ -63,8 +63,7 @@ func NewTable(rows []TableRow) (*Table, error) {
 		}
 		tab.t, tab.p = append(tab.t, r.T), append(tab.p, r.P)
 	}
-	distinct := func(x []float64) []float64 { slices.Sort(x); return slices.Compact(x) }
-	tab.t, tab.p = distinct(tab.t), distinct(tab.p)
+	tab.t, tab.p = increasing(tab.t), increasing(tab.p)
 	nt, np := len(tab.t), len(tab.p)
 	if nt < 2 || np < 2 {
 		return nil, &TableError{-1, fmt.Sprintf("is no grid: %d temperatures and %d pressures; needs two of each at least", nt, np)}

@@ -28,7 +28,8 @@ type Settings struct {
 	Criterion float64 // drip when the tip has descended by Criterion × root thickness
 	Window    float64 // s, > 0
 	Removes   float64 // share of the root's mass one drip takes
-	Spectrum  string  // "white": a₀ the same at all wavelengths
+	Spectrum  string  // what Rough is called: "white" where it is the zero value
+	Rough     Roughness
 	Softening string  // "none": viscosities of one strain rate; "self": the drip's own softens the rock
 }
 
@@ -63,6 +64,8 @@ type Result struct {
 	Unrestricted      Fastest // the same without the limit on wavelength
 	Curve             Curve
 	History           Amplitude // of the first drip
+	Traces            []Trace   // of all wavelengths of Curve, in its order
+	First             Trace     // of the first drip, with its strain rates and stresses
 	Excluded          string    // wavelengths that were computed and not used, in words
 	Reason            string
 	Warnings          []string

@@ -129,11 +129,17 @@ const (
 	tangentX = 3e-3 // costs 1e-7 of the density, where the parts' differ by a seventh
 )
 
-// settle makes T and the density agree with the cell's enthalpy and pressure.
+// settle makes T and the density agree with the cell's enthalpy and pressure, at which its
+// melt has to have a solidus and a liquidus.
 func (ev *Evolution) settle(c *cell) {
 	s := &ev.strata[c.layer]
 	if s.latent != 0 {
 		c.T = s.temperature(c.e, c.P)
+	}
+	if s.melt != nil && ev.err == nil {
+		if err := s.melt.Covers(c.P); err != nil {
+			ev.err = fmt.Errorf("heat: %s at %s: %w", s.name, inMyr(ev.t), err)
+		}
 	}
 	t := &c.solid
 	if math.Abs(c.X-t.X) <= tangentX && math.Abs(c.T-t.T) <= tangentT && math.Abs(c.P-t.P) <= tangentP {
@@ -154,8 +160,6 @@ func (ev *Evolution) touch(c *cell) {
 	if !(t.rho > 0) || math.IsInf(t.rho, 1) || math.IsNaN(t.perKelvin+t.perPascal) {
 		ev.err = fmt.Errorf("heat: %s: density %g kg/m³ at T = %.4g K, P = %.4g Pa", s.name, t.rho, c.T, c.P)
 	} else if err := column.Covered(s.rock.Density, c.T, c.P); err != nil {
-		ev.err = fmt.Errorf("heat: %s: %w", s.name, err)
-	} else if err := s.rock.Melt.Covers(c.P); err != nil {
 		ev.err = fmt.Errorf("heat: %s: %w", s.name, err)
 	}
 }
