@@ -30,7 +30,7 @@ type Settings struct {
 	Removes   float64 // share of the root's mass one drip takes
 	Spectrum  string  // what Rough is called: "white" where it is the zero value
 	Rough     Roughness
-	Softening string  // "none": viscosities of one strain rate; "self": the drip's own softens the rock
+	Softening string // "none": viscosities of one strain rate; "self": the drip's own softens the rock
 }
 
 // Options of a drip computation.
