@@ -43,7 +43,7 @@ func (d *through) drips(ctx context.Context, r *Result) error {
 			r.Drips = append(r.Drips, e)
 			return nil
 		}
-		if e.Lost, err = d.take(ctx, n); err != nil {
+		if e.Lost, err = d.take(n); err != nil {
 			return err
 		}
 		r.Drips = append(r.Drips, e)
@@ -68,7 +68,7 @@ func (d *through) drips(ctx context.Context, r *Result) error {
 
 // take removes the drip's share of the root's mass from its base up and returns the
 // thickness that went.
-func (d *through) take(ctx context.Context, n *node) (lost float64, err error) {
+func (d *through) take(n *node) (lost float64, err error) {
 	c := n.s.Column
 	mass := make([]float64, len(c.Layers))
 	var all float64
@@ -90,7 +90,7 @@ func (d *through) take(ctx context.Context, n *node) (lost float64, err error) {
 		if share > 1-1e-9 {
 			share = 1
 		}
-		if err := d.tape.remove(ctx, c.Layers[i].Name, share); err != nil {
+		if err := d.tape.remove(c.Layers[i].Name, share); err != nil {
 			return lost, err
 		}
 		left -= share * mass[i]

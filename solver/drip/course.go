@@ -224,9 +224,7 @@ func (c *course) extend(ctx context.Context, g *group, until float64) error {
 		l, err := c.pair(ctx, h)
 		least := h <= leastStep*c.span*1.001
 		if err == errChanged {
-			if err := c.tape.back(ctx, from.mark); err != nil {
-				return err
-			}
+			c.tape.back(from.mark)
 			if !least {
 				h /= 4
 				continue
@@ -246,9 +244,7 @@ func (c *course) extend(ctx context.Context, g *group, until float64) error {
 		allowed := stepTolerance*2*h/c.span + stepTolerance/50
 		factor := math.Min(2.5, math.Max(0.25, 0.8*math.Cbrt(allowed/(off+1e-300))))
 		if off > allowed*1.5 && !least && !forced {
-			if err := c.tape.back(ctx, from.mark); err != nil {
-				return err
-			}
+			c.tape.back(from.mark)
 			h *= factor
 			continue
 		}

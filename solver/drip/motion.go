@@ -9,7 +9,7 @@ import (
 	"keelfall/solver/heat"
 )
 
-// Motion is a column that changes with time; heat.Evolution is one.
+// Motion is a column that changes with time.
 type Motion interface {
 	Time() float64                                    // s
 	Advance(ctx context.Context, to float64) error    // s; what happens at that time has happened
@@ -17,7 +17,14 @@ type Motion interface {
 	ExtensionRate() float64                           // now, 1/s
 	Remove(layer string, share float64) error         // of its mass, from its base; base rock takes its place
 	Snapshot() (*column.Column, *heat.Profile, error) // now; a nil profile: that of heat.Solve
+	Copy() Motion                                     // as it is now, to go its own way
 }
+
+// Heated is a heat.Evolution as a Motion.
+type Heated struct{ *heat.Evolution }
+
+// Copy returns a copy of the evolution.
+func (h Heated) Copy() Motion { return Heated{h.Evolution.Copy()} }
 
 // Cold is the motion of a column without temperature that stretches at a constant rate e
 // in 1/s: every layer's thickness goes as exp(−et), and a half-space or inviscid base
@@ -31,6 +38,12 @@ type Cold struct {
 // NewCold returns a copy of c in motion.
 func NewCold(c *column.Column, e float64) *Cold {
 	return &Cold{column: *c, e: e}
+}
+
+// Copy returns the column as it is now.
+func (m *Cold) Copy() Motion {
+	c := *m
+	return &c
 }
 
 // Time returns the model time, s.

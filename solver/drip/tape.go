@@ -2,72 +2,56 @@ package drip
 
 import "context"
 
-// tape drives a motion and remembers how, so that it can be wound back: a motion only
-// goes forwards, and is begun again and driven the same way.
+// tape drives a motion and keeps copies of it, so that it can be wound back: a motion
+// only goes forwards.
 type tape struct {
-	begin  func() (Motion, error)
 	motion Motion
 	strain float64 // ∫ e dt since the beginning, e the extension rate
-	done   []act
+	kept   []kept
 }
 
-// act is an advance to a time or, with a layer, a removal.
-type act struct {
-	to    float64
-	layer string
-	share float64
+// kept is a motion as it was.
+type kept struct {
+	motion Motion
+	strain float64
 }
 
 func newTape(begin func() (Motion, error)) (*tape, error) {
 	m, err := begin()
-	return &tape{begin: begin, motion: m}, err
+	return &tape{motion: m}, err
 }
 
-// mark is where the tape is now, for back.
-func (t *tape) mark() int { return len(t.done) }
+// mark keeps the motion as it is now, for back.
+func (t *tape) mark() int {
+	t.kept = append(t.kept, kept{t.motion.Copy(), t.strain})
+	return len(t.kept) - 1
+}
 
 // back winds the tape back to a mark.
-func (t *tape) back(ctx context.Context, mark int) error {
-	if mark == len(t.done) {
-		return nil
-	}
-	again := t.done[:mark]
-	m, err := t.begin()
-	if err != nil {
-		return err
-	}
-	t.motion, t.strain, t.done = m, 0, nil
-	for _, a := range again {
-		if err := t.do(ctx, a); err != nil {
-			return err
-		}
-	}
-	return nil
+func (t *tape) back(mark int) {
+	k := t.kept[mark]
+	t.motion, t.strain = k.motion.Copy(), k.strain
+	clear(t.kept[mark+1:])
+	t.kept = t.kept[:mark+1]
 }
 
-func (t *tape) do(ctx context.Context, a act) error {
-	t.done = append(t.done, a)
-	if a.layer != "" {
-		return t.motion.Remove(a.layer, a.share)
-	}
-	for { // the rate is constant between events
+// advance drives the motion to a time in s; its rate is constant between events.
+func (t *tape) advance(ctx context.Context, end float64) error {
+	for {
 		now, e := t.motion.Time(), t.motion.ExtensionRate()
-		to := min(a.to, t.motion.Next())
+		to := min(end, t.motion.Next())
 		if to <= now {
-			to = a.to
+			to = end
 		}
 		if err := t.motion.Advance(ctx, to); err != nil {
 			return err
 		}
 		t.strain += e * (to - now)
-		if to == a.to {
+		if to == end {
 			return nil
 		}
 	}
 }
 
-func (t *tape) advance(ctx context.Context, to float64) error { return t.do(ctx, act{to: to}) }
-
-func (t *tape) remove(ctx context.Context, layer string, share float64) error {
-	return t.do(ctx, act{layer: layer, share: share})
-}
+// remove takes a share of a layer's mass from its base.
+func (t *tape) remove(layer string, share float64) error { return t.motion.Remove(layer, share) }

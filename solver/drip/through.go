@@ -228,9 +228,7 @@ func (d *through) at(ctx context.Context, t float64) (*node, error) {
 			}
 		}
 	}
-	if err := d.tape.back(ctx, mark); err != nil {
-		return nil, err
-	}
+	d.tape.back(mark)
 	if t > d.tape.motion.Time() {
 		if err := d.tape.advance(ctx, t); err != nil {
 			return nil, err

@@ -188,8 +188,9 @@ const hot = 1800.0
 
 func cooling(tol, e float64, events ...heat.Event) Plan {
 	return Plan{Reference: 1e-15, Begin: func() (Motion, error) {
-		return heat.Begin(heat.Plan{Column: creeping(hot), Tolerance: tol, ExtensionRate: e,
+		ev, err := heat.Begin(heat.Plan{Column: creeping(hot), Tolerance: tol, ExtensionRate: e,
 			Events: append([]heat.Event{{Verb: "change-base", From: 0, To: 0, Temperature: hot - 150}}, events...)})
+		return Heated{ev}, err
 	}}
 }
 

@@ -79,7 +79,7 @@ func (p *Problem) dripPlan() (drip.Plan, error) {
 		if err != nil {
 			return nil, fmt.Errorf("%w: %w", ErrInput, err)
 		}
-		return ev, nil
+		return drip.Heated{Evolution: ev}, nil
 	}
 	return plan, nil
 }
