@@ -29,10 +29,6 @@ func (r *Result) flips(ctx context.Context, say func(string)) error {
 		r.Warnings = append(r.Warnings, fmt.Sprintf("what would change the verdict was not looked for: %d layers, and it is done up to %d", n, mostLayers))
 		return ctx.Err()
 	}
-	if p.Moving() { // a drip time of a second each, a few hundred of them
-		r.Warnings = append(r.Warnings, "what would change the verdict was not looked for: the column changes with time, and each try would follow it anew")
-		return ctx.Err()
-	}
 	near := r.Drip.Wavelength
 	if near == 0 {
 		near = r.Spectrum.Fastest.Wavelength
