@@ -44,13 +44,13 @@ func (c *Curve) Span() (least, most float64) {
 	return math.Inf(-1), math.Inf(1)
 }
 
-// covers returns an error with the numbers where P in Pa lies beyond the curve's table.
+// covers returns an *OutsideError where P in Pa lies beyond the curve's table.
 func (c *Curve) covers(P float64) error {
 	least, most := c.Span()
 	if slack := tableSlack * (most - least); c.Table == nil || P >= least-slack && P <= most+slack {
 		return nil
 	}
-	return fmt.Errorf("P = %.6g GPa lies outside the table %s, which covers %.6g to %.6g GPa; nothing is extrapolated", P/1e9, c.Table.Name, least/1e9, most/1e9)
+	return &OutsideError{fmt.Sprintf("P = %.6g GPa lies outside the table %s, which covers %.6g to %.6g GPa; nothing is extrapolated", P/1e9, c.Table.Name, least/1e9, most/1e9)}
 }
 
 // validate returns what makes the curve unusable.

@@ -56,7 +56,7 @@ func (m *Melt) state(T, P float64) (phi, perKelvin, perPascal float64) {
 func (m *Melt) NeedsTemperature() bool { return m != nil && m.Solidus != nil }
 
 // Covers returns an error with the numbers where P in Pa lies beyond the table of either
-// curve, or the solidus is not below the liquidus there.
+// curve (an *OutsideError, wrapped), or the solidus is not below the liquidus there.
 func (m *Melt) Covers(P float64) error {
 	if !m.NeedsTemperature() {
 		return nil

@@ -48,6 +48,12 @@ type TableError struct {
 
 func (e *TableError) Error() string { return e.What }
 
+// OutsideError says that a column leaves what the user's table covers, with the numbers:
+// the table is too short, not the computation at fault.
+type OutsideError struct{ What string }
+
+func (e *OutsideError) Error() string { return e.What }
+
 // NewTable returns the table of the rows, in any order. Every temperature that occurs
 // needs every pressure that occurs, once; two of each at least. Errors are *TableError.
 func NewTable(rows []TableRow) (*Table, error) {
@@ -101,8 +107,8 @@ func (t *Table) Covers(T, P float64) error {
 	if T >= t.t[0]-dT && T <= t.t[nt-1]+dT && P >= t.p[0]-dP && P <= t.p[np-1]+dP {
 		return nil
 	}
-	return fmt.Errorf("outside the table of densities: %s; it covers %.6g to %.6g degC and %.6g to %.6g GPa",
-		where(T, P), t.t[0]-273.15, t.t[nt-1]-273.15, t.p[0]/1e9, t.p[np-1]/1e9)
+	return &OutsideError{fmt.Sprintf("outside the table of densities: %s; it covers %.6g to %.6g degC and %.6g to %.6g GPa",
+		where(T, P), t.t[0]-273.15, t.t[nt-1]-273.15, t.p[0]/1e9, t.p[np-1]/1e9)}
 }
 
 // cell returns the interval of the axis that holds x and where x lies in it, 0 to 1;

@@ -168,18 +168,26 @@ func (e *Experiment) densitySources() (minerals, tables []any) {
 			}
 		}
 	}
-	for i := range e.data.Layers {
-		if l := e.data.Layers[i].Layer; l != nil {
-			add(l.rock.Density)
-		}
-	}
-	add(e.data.Base.rock.Density)
-	for i := range e.data.Events {
-		if r := e.data.Events[i].rock(); r != nil {
-			add(r.Density)
-		}
+	for _, r := range e.rocks() {
+		add(r.Density)
 	}
 	return minerals, tables
+}
+
+// rocks are those of the layers, the base and the events, in this order.
+func (e *Experiment) rocks() (out []*rock) {
+	for i := range e.data.Layers {
+		if l := e.data.Layers[i].Layer; l != nil {
+			out = append(out, &l.rock)
+		}
+	}
+	out = append(out, &e.data.Base.rock)
+	for i := range e.data.Events {
+		if r := e.data.Events[i].rock(); r != nil {
+			out = append(out, r)
+		}
+	}
+	return out
 }
 
 func mineral(m column.Mineral) map[string]any {

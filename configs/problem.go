@@ -123,7 +123,7 @@ func (e *Experiment) rock(w *walker, r *rock) column.Rock {
 		out.Viscosity.Top, out.Viscosity.Bottom = v.Value.SI, v.Value.SI
 	}
 	if r.Melt != nil {
-		out.Melt = r.Melt.column()
+		out.Melt = e.melt(w, r.Melt)
 		if out.Density != nil && out.Melt.Density > 0 {
 			out.Density = column.Molten{Solid: out.Density, Melt: out.Melt}
 		}

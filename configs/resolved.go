@@ -11,7 +11,7 @@ import (
 // its default, in SI with the unit in the key's name (thickness_m, temperature_K;
 // times in s since the start), the creep laws and minerals it uses with their
 // constants and how those are known, the defaults taken, the edits, name and SHA-256 of
-// every table of densities, measured section and extra catalogue, and how the rows of the
+// every table of densities and of a solidus or liquidus, measured section and extra catalogue, and how the rows of the
 // sections scatter, and the fit of the geotherm to samples (null where there is none). It is ready for JSON and holds no NaN or infinity.
 func (e *Experiment) Resolved() map[string]any {
 	_, tree := e.resolved(e.filled, schema)
@@ -25,6 +25,7 @@ func (e *Experiment) Resolved() map[string]any {
 	out["defaults"] = defaults
 	out["creep_laws"] = e.creepLaws()
 	out["minerals"], out["density_tables"] = e.densitySources()
+	out["melt_tables"] = e.meltSources()
 	out["geotherm_fit"] = e.fitResult()
 	out["sections"], out["section_scatter"] = e.sectionSources()
 	catalogues := []any{}

@@ -199,12 +199,18 @@ type meltCurve struct {
 	_     struct{}   `kind:"union"`
 	Value quantity   `form:"scalar" dim:"temperature" range:"[0 K,5000 K]"`
 	Line  *meltSlope `form:"map"`
+	Table *meltTable `form:"map"`
 }
 
 type meltSlope struct {
 	block
 	Surface quantity `key:"surface,required" dim:"temperature" range:"[0 K,5000 K]" doc:"at zero pressure"`
 	Slope   quantity `key:"slope,required" dim:"kelvin-per-pressure" range:"[-1e-5 K/Pa,1e-5 K/Pa]" doc:"the curve is surface + slope x pressure"`
+}
+
+type meltTable struct {
+	block
+	Table text `key:"table,required" as:"file" doc:"CSV file with the columns pressure_GPa and temperature_degC (or other units), pressures increasing from row to row; straight between the rows, and nothing is extrapolated"`
 }
 
 type conductivity struct {

@@ -1,22 +1,17 @@
 package configs
 
 import (
-	"bytes"
 	"crypto/sha256"
-	"encoding/csv"
 	"encoding/hex"
-	"errors"
 	"fmt"
-	"io"
 	"strings"
 
 	"keelfall/solver/heat"
 	"keelfall/solver/race"
 )
 
-// sampleColumns are the columns of a file of samples: the word before the unit in the
-// column's name, longer ones first, and what it measures; "" for a text.
-var sampleColumns = []struct{ word, dim string }{
+// sampleColumns are the columns of a file of samples.
+var sampleColumns = []csvColumn{
 	{"temperature_error", "temperature-difference"},
 	{"pressure_error", "pressure"},
 	{"depth_error", "length"},
@@ -30,115 +25,26 @@ var sampleColumns = []struct{ word, dim string }{
 
 const sampleNeeds = "a CSV file of samples with the columns temperature_degC, pressure_GPa or depth_km, and their errors (temperature_error_K, pressure_error_GPa, depth_error_km), and name, source, notes"
 
-// sampleReader reads one file of samples; mistakes go to w.
+// sampleReader reads one file of samples.
 type sampleReader struct {
-	w     *walker
-	file  string
-	depth float64  // of the column, m
-	words []string // of the columns
-	units []string
-	heads []string
-}
-
-func (r *sampleReader) add(line int, path, format string, args ...any) {
-	r.w.addf(&node{line: line, file: r.file}, path, format, args...)
+	csvReader
+	depth float64 // of the column, m
 }
 
 // samples reads the file that geotherm.fit names; nil where it has mistakes.
-func (e *Experiment) samples(w *walker, f *fit, depth float64) []heat.Sample {
-	b, err := e.file(f.Fit.Value, sampleNeeds)
-	r := sampleReader{w: w, file: e.beside(f.Fit.Value), depth: depth}
-	var wrong *lineError
-	switch {
-	case errors.As(err, &wrong): // it could be read and is no text
-		r.add(wrong.line, "", "%s", wrong.what)
-		return nil
-	case err != nil:
-		w.addf(f.Fit.n, f.path+".fit", "%s; needs %s", err, sampleNeeds)
+func (e *Experiment) samples(w *walker, f *fit, depth float64) (out []heat.Sample) {
+	r := sampleReader{csvReader{w: w, file: e.beside(f.Fit.Value), needs: sampleNeeds, rows: "samples", known: sampleColumns}, depth}
+	b, ok := r.open(e, f.Fit.Value, f.Fit.n, f.path+".fit")
+	if !ok {
 		return nil
 	}
 	before := len(w.mistakes)
-	out := r.read(b)
+	r.read(b, func(has func(string) bool) bool { return has("temperature") && (has("pressure") || has("depth")) },
+		func(record []string, line int) bool { out = append(out, r.row(record, line)); return true })
 	if len(w.mistakes) > before {
 		return nil
 	}
 	return out
-}
-
-func (r *sampleReader) read(b []byte) (out []heat.Sample) {
-	c := csv.NewReader(bytes.NewReader(b))
-	c.Comment, c.TrimLeadingSpace, c.FieldsPerRecord = '#', true, -1
-	line, rows := 0, 0
-	for {
-		record, err := c.Read()
-		switch {
-		case errors.Is(err, io.EOF):
-			if rows == 0 {
-				r.add(line, "", "has no samples; needs %s", sampleNeeds)
-			}
-			return out
-		case err != nil:
-			var p *csv.ParseError
-			if errors.As(err, &p) {
-				line, err = p.Line, p.Err
-			}
-			r.add(line, "", "is no CSV: %s", err)
-			return nil
-		}
-		line, _ = c.FieldPos(0)
-		switch {
-		case r.words == nil:
-			if !r.columns(record, line) {
-				return nil
-			}
-			continue
-		case strings.TrimSpace(strings.Join(record, "")) == "": // as spreadsheets leave them at the end
-			continue
-		case len(record) != len(r.words):
-			r.add(line, "", "has %d cells; the header has %d columns", len(record), len(r.words))
-		case len(out) == maxLayers:
-			r.add(line, "", "is one of more than %d rows", maxLayers)
-			return nil
-		default:
-			out = append(out, r.row(record, line))
-		}
-		rows++
-	}
-}
-
-// columns reads the header.
-func (r *sampleReader) columns(head []string, line int) bool {
-	if len(head) == 1 && strings.ContainsAny(head[0], ";\t") {
-		r.add(line, "", "has columns that are not separated by commas; save the file with commas between cells and points in numbers")
-		return false
-	}
-	seen := map[string]bool{}
-	good := true
-	for _, h := range head {
-		h = strings.TrimSpace(h)
-		word, unit := "", ""
-		for _, c := range sampleColumns {
-			rest, ok := strings.CutPrefix(h, c.word)
-			if word == "" && ok && (rest == "" || c.dim != "" && rest[0] == '_') {
-				word, unit = c.word, strings.TrimPrefix(rest, "_")
-			}
-		}
-		switch {
-		case word == "":
-			r.add(line, shorten(h), "is a column not known here; needs %s", sampleNeeds)
-			good = false
-		case seen[word]:
-			r.add(line, shorten(h), "stands twice; a column may stand once")
-			good = false
-		}
-		seen[word] = true
-		r.words, r.units, r.heads = append(r.words, word), append(r.units, unit), append(r.heads, h)
-	}
-	if good && (!seen["temperature"] || !seen["pressure"] && !seen["depth"]) {
-		r.add(line, "", "has the columns %s; needs %s", shorten(strings.Join(head, ", ")), sampleNeeds)
-		return false
-	}
-	return good
 }
 
 // row reads one sample. An empty cell is a value that is not given.
@@ -150,12 +56,7 @@ func (r *sampleReader) row(record []string, line int) (s heat.Sample) {
 			continue
 		}
 		word := r.words[i]
-		var dim *dimension
-		for _, c := range sampleColumns {
-			if c.word == word {
-				dim = dimensions[c.dim]
-			}
-		}
+		dim := r.dimension(i)
 		if dim == nil {
 			if err := readable(text, map[bool]string{true: "name", false: "prose"}[word == "name"]); err != nil {
 				r.add(line, word, "%s", err)

@@ -209,7 +209,7 @@ func (s *spec) keyNames() []string {
 }
 
 // pick chooses the form of a union that a value has: by shape, and among maps the
-// one that knows most of the keys (the first, where several do).
+// one that knows most of the keys, a mistyped one by half (the first, where several do).
 func (s *spec) pick(n *node) *form {
 	var best *form
 	bestKnown := -1
@@ -220,7 +220,11 @@ func (s *spec) pick(n *node) *form {
 		}
 		known := 0
 		for _, k := range n.keys {
-			if f.spec.key(k) != nil && k != "source" && k != "notes" {
+			switch {
+			case k == "source" || k == "notes":
+			case f.spec.key(k) != nil:
+				known += 2
+			case f.shape == mapNode && f.spec.kind == recordSpec && nearest(k, f.spec.keyNames()) != "": // mistyped
 				known++
 			}
 		}

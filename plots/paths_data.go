@@ -45,7 +45,8 @@ func flatten(ms []measured) []float64 {
 	return out
 }
 
-// findSolidi finds the solidus of every marker's rock that melts by one.
+// findSolidi finds the solidus of every marker's rock that melts by one, as far as it is
+// known.
 func (f *pathsFigure) findSolidi() {
 	var seen []string
 	for _, path := range f.paths {
@@ -55,11 +56,12 @@ func (f *pathsFigure) findSolidi() {
 		seen = append(seen, path.Layer)
 		if m := f.melting(path.Layer); m != nil {
 			s := solidus{name: literal(path.Layer)}
-			for i := range 41 {
-				p := f.y.lo + (f.y.hi-f.y.lo)*float64(i)/40
-				s.p, s.t = append(s.p, p), append(s.t, m.Solidus.At(p*gpa)-zeroCelsius)
+			for _, P := range m.Solidus.Between(f.y.lo*gpa, f.y.hi*gpa, 41) {
+				s.p, s.t = append(s.p, P/gpa), append(s.t, m.Solidus.At(P)-zeroCelsius)
 			}
-			f.solidi = append(f.solidi, s)
+			if len(s.t) > 0 {
+				f.solidi = append(f.solidi, s)
+			}
 		}
 	}
 }

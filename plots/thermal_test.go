@@ -178,6 +178,39 @@ func TestPathsData(t *testing.T) {
 	}
 }
 
+// TestTabulatedSolidus: a table is drawn through its rows and no further, and not at all
+// where it says nothing of the figure's pressures.
+func TestTabulatedSolidus(t *testing.T) {
+	for most, want := range map[float64]bool{2e9: true, 0.02e9: false} {
+		tab, err := column.NewCurveTable("wet.csv", []column.CurvePoint{{P: 0, T: 1100}, {P: most / 2, T: 1050}, {P: most, T: 1200}})
+		if err != nil {
+			t.Fatal(err)
+		}
+		th := madeUpThermal(t)
+		for i := range th.History.Snapshots {
+			for j := range th.History.Snapshots[i].Column.Layers {
+				if l := &th.History.Snapshots[i].Column.Layers[j]; l.Melt != nil {
+					l.Melt = &column.Melt{Solidus: &column.Curve{Table: tab}, Liquidus: l.Melt.Liquidus}
+				}
+			}
+		}
+		f := pathsFigure{Thermal: th}
+		for i := range th.History.Paths {
+			f.paths = append(f.paths, &th.History.Paths[i])
+		}
+		f.scales()
+		if (len(f.solidi) > 0) != want {
+			t.Fatalf("to %g Pa: %d solidi, the figure spans %g to %g GPa", most, len(f.solidi), f.y.lo, f.y.hi)
+		}
+		for _, s := range f.solidi {
+			if !slices.Contains(s.p, 1) || s.p[0] < f.y.lo || s.p[len(s.p)-1] > math.Min(f.y.hi, 2) || !slices.IsSorted(s.p) {
+				t.Errorf("drawn at %v GPa", s.p)
+			}
+		}
+		checkFigure(t, thermalFigures(t, th, 0)[1])
+	}
+}
+
 // thermalOdd are histories that lack something or have too much of it.
 var thermalOdd = []struct {
 	name    string

@@ -11,6 +11,7 @@ import (
 	"github.com/spf13/cobra"
 
 	"keelfall/cmd/internal/report"
+	"keelfall/column"
 	"keelfall/configs"
 	"keelfall/solver/race"
 )
@@ -50,7 +51,8 @@ func Main(ctx context.Context, args []string, s Streams) int {
 	}
 	fmt.Fprintln(s.Err, "keelfall:", err)
 	var usage usageError
-	if errors.As(err, &usage) || errors.Is(err, race.ErrInput) {
+	var outside *column.OutsideError
+	if errors.As(err, &usage) || errors.As(err, &outside) || errors.Is(err, race.ErrInput) {
 		return exitInput
 	}
 	return exitFailed

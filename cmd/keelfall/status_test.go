@@ -20,6 +20,9 @@ func TestStatus(t *testing.T) {
 	write("good.yaml", "surface: {boundary: rigid}\nbase: {boundary: rigid}\nlayers:\n  - {name: a, root: true, thickness: 10 km, density: 3300 kg/m3, viscosity: 1e21 Pa s}\n  - {name: b, thickness: 10 km, density: 3200 kg/m3, viscosity: 1e21 Pa s}\n")
 	write("bad.yaml", "layers: []\n")
 	write("wall.yaml", "surface: {boundary: rigid}\nbase: {boundary: rigid}\nlayers:\n  - {name: a, root: true, thickness: 10 km, density: 3300 kg/m3, viscosity: 1e21 Pa s}\n")
+	// 10 km of 3300 kg/m3 press with 0.324 GPa, after another 3 km with 0.42 GPa.
+	write("short.yaml", "base: {boundary: rigid, temperature: 500 degC}\nlayers:\n  - {name: a, thickness: 10 km, density: 3300 kg/m3, viscosity: 1e21 Pa s, melt: {solidus: {table: short.csv}, liquidus: 1200 degC}}\nevents:\n  - accumulate: {layer: a, rate: 1 mm/yr, from: 0 Myr, to: 3 Myr}\n")
+	write("short.csv", "pressure_GPa,temperature_degC\n0,900\n0.35,800\n")
 	write("file", "not a folder")
 	if err := os.MkdirAll("theirs/keep", 0o755); err != nil {
 		t.Fatal(err)
@@ -35,6 +38,8 @@ func TestStatus(t *testing.T) {
 		{exitInput, []string{"run", "bad.yaml"}},
 		{exitInput, []string{"run", "wall.yaml"}},
 		{exitInput, []string{"run", "absent.yaml"}},
+		{exitDone, []string{"column", "short.yaml"}},
+		{exitInput, []string{"history", "short.yaml"}}, // on its way the column leaves the user's table
 		{exitInput, []string{"run", "a", "b"}},
 		{exitInput, []string{"run", "--nonsense"}},
 		{exitInput, []string{"nonsense"}},

@@ -68,6 +68,7 @@ func reactionChecks() []Check {
 				return z, nil
 			}},
 		{"growth rate of a root that melts at its base, over that of the same cut at its solidus", "", 1, 5e-6, "one flow, two meshes; λ = 60 km, heat diffusing, α = 30. Pressure is integrated in steps that straddle the solidus in the one", Derived, cutAtSolidus},
+		{"growth rate of a molten root whose tabulated solidus has a corner in it, over that of the same cut there", "", 1, 1e-6, "one flow, two meshes; λ = 60 km, heat diffusing, α = 30", Derived, cutAtCorner},
 	}
 }
 
@@ -133,6 +134,23 @@ func garnetShare(context.Context) (float64, error) {
 // cutAtSolidus compares a root with melt in its lower part on one mesh with the same
 // root as two layers that meet where melting begins.
 func cutAtSolidus(context.Context) (float64, error) {
+	return cutAtKink(&column.Curve{Surface: 870, Slope: 1e-7})
+}
+
+// cutAtCorner compares a root that is molten throughout, its solidus a table with a corner
+// amid the root's pressures, 1.1 to 1.6 GPa, with the same root as two layers that meet
+// there.
+func cutAtCorner(context.Context) (float64, error) {
+	t, err := column.NewCurveTable("invented", []column.CurvePoint{{P: 0, T: 950}, {P: 1.35e9, T: 830}, {P: 4e9, T: 1150}})
+	if err != nil {
+		return 0, err
+	}
+	return cutAtKink(&column.Curve{Table: t})
+}
+
+// cutAtKink is the growth rate of a root whose state has one kink over that of the same
+// root as two layers that meet there.
+func cutAtKink(solidus *column.Curve) (float64, error) {
 	law, err := rheology.Find("dry eclogite Zhang 2007")
 	if err != nil {
 		return 0, err
@@ -141,7 +159,7 @@ func cutAtSolidus(context.Context) (float64, error) {
 		return column.EquationOfState{Reference: rho, Expansivity: 3e-5, Compressibility: 1e-11, ReferenceTemperature: 293.15}
 	}
 	c := twoRocks(expands(2850), expands(3330))
-	melt := &column.Melt{Solidus: &column.Curve{Surface: 870, Slope: 1e-7}, Liquidus: &column.Curve{Surface: 1500, Slope: 8e-8}, Density: 2750, Weakening: 30}
+	melt := &column.Melt{Solidus: solidus, Liquidus: &column.Curve{Surface: 1500, Slope: 8e-8}, Density: 2750, Weakening: 30}
 	root := column.Layer{Name: "root", Thickness: 15e3, Root: true, Rock: c.Layers[0].Rock}
 	root.Density, root.Melt = column.Molten{Solid: expands(3500), Melt: melt}, melt
 	root.Viscosity = column.Viscosity{Creep: &rheology.Creep{Laws: []rheology.Law{law}}}
@@ -162,7 +180,7 @@ func cutAtSolidus(context.Context) (float64, error) {
 	}
 	kinks := s.Kinks(1)
 	if len(kinks) != 1 {
-		return 0, fmt.Errorf("checks: the solidus crosses the root at %v", kinks)
+		return 0, fmt.Errorf("checks: the root has the kinks %v, not one", kinks)
 	}
 	dry, molten := root, root
 	dry.Thickness = kinks[0] - 40e3

@@ -42,7 +42,7 @@ func meltMethods(w func(string, ...any), name string, m *column.Melt) {
 	}
 	s := fmt.Sprintf("Melt in %s: φ = %s of the volume", name, share(m.Fraction))
 	if m.NeedsTemperature() {
-		s = fmt.Sprintf("Melt in %s: φ = (T − T_s)/(T_l − T_s) of the volume between the solidus T_s = %s and the liquidus T_l = %s", name, curve(m.Solidus), curve(m.Liquidus))
+		s = fmt.Sprintf("Melt in %s: φ = (T − T_s)/(T_l − T_s) of the volume between the solidus T_s %s and the liquidus T_l %s", name, curve(m.Solidus), curve(m.Liquidus))
 	}
 	if m.Density > 0 {
 		s += fmt.Sprintf("; ρ = (1 − φ) ρ_s + φ ρ_m with ρ_m = %.4g kg/m³", m.Density)
@@ -60,10 +60,14 @@ func meltMethods(w func(string, ...any), name string, m *column.Melt) {
 
 // curve writes a temperature that depends on pressure.
 func curve(c *column.Curve) string {
-	if c.Slope == 0 {
-		return fmt.Sprintf("%.4g °C", c.Surface-zero)
+	if t := c.Table; t != nil {
+		least, most := c.Span()
+		return fmt.Sprintf("of the table %s (%d rows, %.4g to %.4g GPa, straight between them, nothing beyond)", t.Name, t.Rows(), least/1e9, most/1e9)
 	}
-	return fmt.Sprintf("%.4g °C + %.4g K/GPa × P", c.Surface-zero, c.Slope*1e9)
+	if c.Slope == 0 {
+		return fmt.Sprintf("= %.4g °C", c.Surface-zero)
+	}
+	return fmt.Sprintf("= %.4g °C + %.4g K/GPa × P", c.Surface-zero, c.Slope*1e9)
 }
 
 // modesMethods says which end-members make a density, of which part of the rock.

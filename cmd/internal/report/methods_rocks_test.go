@@ -120,6 +120,20 @@ func TestMineralSources(t *testing.T) {
 	}
 }
 
+// TestMethodsOfTable: a tabulated solidus is named with what it covers.
+func TestMethodsOfTable(t *testing.T) {
+	tab, err := column.NewCurveTable("wet.csv", []column.CurvePoint{{P: 0, T: 1100}, {P: 0.5e9, T: 950}, {P: 3.2e9, T: 1000}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	var got string
+	meltMethods(func(f string, a ...any) { got = fmt.Sprintf(f, a...) }, "root", &column.Melt{Solidus: &column.Curve{Table: tab}, Liquidus: &column.Curve{Surface: 1573.15}, Density: 2700})
+	const want = "between the solidus T_s of the table wet.csv (3 rows, 0 to 3.2 GPa, straight between them, nothing beyond) and the liquidus T_l = 1300 °C; ρ ="
+	if !strings.Contains(got, want) {
+		t.Errorf("no %q in %s", want, got)
+	}
+}
+
 // TestMeltCounts: the table of weights says where a number counts the melt that forms.
 func TestMeltCounts(t *testing.T) {
 	const said = "modulus of the root count the melt that forms"
