@@ -42,11 +42,16 @@ func fill(root *node) []race.Default {
 	still := root.get("strain").get("extension-rate").isZero()
 	f.scalar("1e-15 1/s", still && slices.ContainsFunc(append(layers, root.get("base")), flows), "strain", "reference-rate")
 	f.scalar(thermalBuoyancy(root, layers, warm), false, "buoyancy", "thermal")
-	f.scalar("500 m", true, "drip", "amplitude")
+	table := f.roughness()
+	if !table {
+		f.scalar("500 m", true, "drip", "amplitude")
+	}
 	f.scalar("1.0", true, "drip", "criterion")
 	f.scalar("30 Myr", false, "drip", "window")
 	f.scalar("0.3", true, "drip", "removes")
-	f.scalar("white", false, "drip", "spectrum")
+	if !table {
+		f.scalar("white", false, "drip", "spectrum")
+	}
 	f.scalar("none", false, "drip", "softening")
 	f.scalar("0.5", false, "race", "removed")
 	f.scalar("1e16 Pa s", false, "viscosity-limits", "lowest")

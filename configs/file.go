@@ -100,12 +100,12 @@ type base struct {
 
 type dripping struct {
 	block
-	Amplitude quantity `key:"amplitude" dim:"length" range:"(0 m,100 km]" eg:"500 m" doc:"initial undulation of the root's base, less than criterion times the root's thickness; 500 m if left out"`
-	Criterion quantity `key:"criterion" dim:"number" range:"(0,10]" eg:"1.0" doc:"a drip when the tip has descended by this times the root's thickness; 1.0 if left out"`
-	Window    quantity `key:"window" dim:"duration" range:"(0 Myr,5000 Myr]" doc:"time available to both fates; 30 Myr if left out"`
-	Spectrum  text     `key:"spectrum" one:"white" doc:"the undulation against wavelength; white if left out"`
-	Removes   quantity `key:"removes" dim:"number" range:"(0,1]" eg:"0.3" doc:"share of the root's mass one drip takes; 0.3 if left out"`
-	Softening text     `key:"softening" one:"self|none" doc:"whether the drip's own strain rate softens the rock"`
+	Amplitude quantity   `key:"amplitude" dim:"length" range:"(0 m,100 km]" eg:"500 m" doc:"initial undulation of the root's base, less than criterion times the root's thickness, of a red spectrum that at its wavelength; 500 m if left out, and not to be given beside a table"`
+	Criterion quantity   `key:"criterion" dim:"number" range:"(0,10]" eg:"1.0" doc:"a drip when the tip has descended by this times the root's thickness; 1.0 if left out"`
+	Window    quantity   `key:"window" dim:"duration" range:"(0 Myr,5000 Myr]" doc:"time available to both fates; 30 Myr if left out"`
+	Spectrum  *roughness `key:"spectrum" doc:"the undulation against wavelength: white, the same at all; red, growing with it; or a table of its own; white if left out"`
+	Removes   quantity   `key:"removes" dim:"number" range:"(0,1]" eg:"0.3" doc:"share of the root's mass one drip takes; 0.3 if left out"`
+	Softening text       `key:"softening" one:"self|none" doc:"whether the drip's own strain rate softens the rock"`
 }
 
 type spectrum struct {

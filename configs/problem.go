@@ -29,7 +29,7 @@ func (e *Experiment) build(w *walker) race.Problem {
 		ThermalBuoyancy: d.Buoyancy.Thermal.Value,
 		Drip: drip.Settings{
 			Amplitude: d.Drip.Amplitude.SI, Criterion: d.Drip.Criterion.SI, Window: d.Drip.Window.SI,
-			Removes: d.Drip.Removes.SI, Spectrum: d.Drip.Spectrum.Value, Softening: d.Drip.Softening.Value,
+			Removes: d.Drip.Removes.SI, Softening: d.Drip.Softening.Value,
 		},
 		Removed:  d.Race.Removed.SI,
 		Defaults: slices.Clone(e.taken),
@@ -46,6 +46,7 @@ func (e *Experiment) build(w *walker) race.Problem {
 	if d.Spectrum != nil {
 		p.SpectrumFrom, p.SpectrumTo = d.Spectrum.From.SI, d.Spectrum.To.SI
 	}
+	e.spectrum(w, &p)
 	e.fitGeotherm(w, &p)
 	p.Events = e.events(w)
 	p.Markers, p.Clocks = e.markers()

@@ -26,6 +26,7 @@ func (e *Experiment) Resolved() map[string]any {
 	out["creep_laws"] = e.creepLaws()
 	out["minerals"], out["density_tables"] = e.densitySources()
 	out["melt_tables"] = e.meltSources()
+	out["drip_spectrum_table"] = e.spectrumSource()
 	out["geotherm_fit"] = e.fitResult()
 	out["sections"], out["section_scatter"] = e.sectionSources()
 	catalogues := []any{}

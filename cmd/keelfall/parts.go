@@ -189,15 +189,12 @@ func lengths(list string) ([]float64, error) {
 func newDripCmd(s Streams) *cobra.Command {
 	cmd, _ := newPartCmd(s, "drip FILE", "When the root drips, and at what spacing",
 		func(ctx context.Context, _ *options, p *race.Problem, st *state.State) (*part, error) {
-			r := &race.Result{Problem: p, State: st}
-			var err error
-			if r.Drip, err = race.Drip(ctx, p, st); err != nil {
+			r, err := race.DripStudy(ctx, p, st)
+			if err != nil {
 				return nil, err
 			}
-			return &part{name: "drip", text: report.DripPage(p, r), value: report.Drip(p, st, r.Drip), table: report.DripTable(r),
-				figures: one(func(w vg.Length) (plots.Figure, error) {
-					return plots.Spectrum(nil, r.Drip, plots.SettingOf(p), w)
-				}),
+			return &part{name: "drip", text: report.DripPage(p, r), value: report.Drip(r), table: report.DripTable(r), more: report.DripTables(r),
+				figures:  func(w vg.Length) ([]plots.Figure, error) { return plots.Drips(r, w) },
 				warnings: report.DripWarnings(p, st, r.Drip)}, nil
 		})
 	return cmd

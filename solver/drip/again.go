@@ -30,8 +30,9 @@ func (d *through) drips(ctx context.Context, r *Result) error {
 			if err := d.mode(n, r); err != nil {
 				return err
 			}
-			r.History.Time = append(r.History.Time, r.Time)
-			r.History.Base = append(r.History.Base, d.set.Criterion*n.root)
+			if r.Time > d.set.Window {
+				return nil
+			}
 			first = false
 		}
 		e := Event{Time: next.Time, Wavelength: next.Wavelength * grown, Initial: next.Wavelength}

@@ -5,15 +5,18 @@ import (
 	"math"
 )
 
-// one follows undulations of given first wavelengths through the course that is there.
-func (d *through) one(ctx context.Context, wavelength float64, stopAt int, trace bool) (*follower, error) {
+// one follows an undulation of a given first wavelength through the course that is there;
+// with keep its displacements are stored.
+func (d *through) one(ctx context.Context, wavelength float64, stopAt int, keep bool) (*follower, error) {
 	g, err := newGroup(d.course, d.set, []float64{wavelength}, 1)
 	if err != nil {
 		return nil, err
 	}
 	g.stopAt = stopAt
-	if trace {
-		g.list[0].trace = &Amplitude{Time: []float64{d.course.first.t}, Base: []float64{d.set.Amplitude}}
+	if f := g.list[0]; keep {
+		f.trace, f.keep, f.every = &Trace{}, true, traceSpan*d.course.span
+		f.note(g, d.course.first, 0)
+		f.store(g, d.course.first, f.y, f.log)
 	}
 	return g.list[0], g.again(ctx, d.course)
 }

@@ -42,7 +42,7 @@ func TestBruteForce(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			if err := c.refine(m); err != nil {
+			if err := c.refine(m, nil, true); err != nil {
 				t.Fatal(err)
 			}
 			if !m.lay.same(&lay) {

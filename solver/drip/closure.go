@@ -32,6 +32,7 @@ type Soft struct {
 	tolerance  float64 // of W, relative
 	span       float64 // of an element: growth.NewDriven
 	stepError  float64 // of a step of Time: softError
+	coarse     bool    // laws are tabulated as what is asked seldom needs it
 
 	Iterations int // sweeps so far
 }
@@ -49,6 +50,7 @@ type softBand struct {
 	start []float64 // x where the last undulation began
 	begun bool      // start is that of this undulation
 	n     float64   // dissipation's mean exponent at the last point
+	over  float64   // the flow's strain rate over the background's there, root mean square over dissipation
 }
 
 // edge is one side of an interface.
@@ -92,10 +94,10 @@ func (f *Soft) band(k float64) (*softBand, error) {
 	}
 	b := &softBand{flow: flow}
 	for i, z := range flow.Depth {
-		b.laws = append(b.laws, newNodeLaw(f.state, flow.Layer[i], z))
+		b.laws = append(b.laws, newNodeLaw(f.state, flow.Layer[i], z, f.coarse))
 	}
 	if f.background.d != 0 {
-		b.addEdges(f.state)
+		b.addEdges(f.state, f.coarse)
 	}
 	nodes := len(flow.Depth)
 	b.x = make([]float64, len(b.laws)+nodes)
@@ -116,18 +118,18 @@ func (f *Soft) band(k float64) (*softBand, error) {
 }
 
 // addEdges adds both sides of every interface that have a viscosity.
-func (b *softBand) addEdges(s *state.State) {
+func (b *softBand) addEdges(s *state.State, coarse bool) {
 	n := len(s.Layers)
 	z := 0.0
 	for i := range n + 1 {
 		if i > 0 {
 			z += s.Column.Layers[i-1].Thickness
 			b.edges = append(b.edges, edge{i, true})
-			b.laws = append(b.laws, newNodeLaw(s, i-1, z))
+			b.laws = append(b.laws, newNodeLaw(s, i-1, z, coarse))
 		}
 		if b.flow.Below[i] > 0 {
 			b.edges = append(b.edges, edge{i, false})
-			b.laws = append(b.laws, newNodeLaw(s, i, z))
+			b.laws = append(b.laws, newNodeLaw(s, i, z, coarse))
 		}
 	}
 }
@@ -233,7 +235,7 @@ func (f *Soft) respond(b *softBand) (miss float64, err error) {
 	w := b.flow
 	nodes := len(w.Depth)
 	least := f.least(b)
-	var total, exponents float64
+	var total, exponents, squares float64
 	for i := range b.laws {
 		l := &b.laws[i]
 		var shear, normal float64
@@ -262,6 +264,7 @@ func (f *Soft) respond(b *softBand) (miss float64, err error) {
 		total += ds + dn
 		miss += ds*math.Abs(m.lnS-b.x[i]) + dn*math.Abs(m.lnN-b.x[len(b.laws)+i])
 		exponents += (ds + dn) * m.exponent
+		squares += (ds + dn) * (shear*shear/4 + normal*normal) / 2
 	}
 	for i, e := range b.edges { // the couple on an interface, against all of it
 		if drop := math.Abs(w.Above[e.contact] - w.Below[e.contact]); drop > 0 {
@@ -271,7 +274,7 @@ func (f *Soft) respond(b *softBand) (miss float64, err error) {
 	if total == 0 {
 		return 0, nil // nothing flows
 	}
-	b.n = exponents / total
+	b.n, b.over = exponents/total, math.Sqrt(squares/total)/f.background.second
 	if miss /= total; math.IsNaN(miss) {
 		return 0, fmt.Errorf("%w: dissipation %g", errConverge, total)
 	}

@@ -7,18 +7,19 @@ import "math"
 // the number: no logarithm, no exponential. They are filled from nodeLaw.at.
 const (
 	pieceBits    = 4
-	pieces       = 1 << pieceBits
+	coarseBits   = 2    // of a coarse law
 	lowestBinade = -290 // of ε_II²: e⁻²⁰⁰ is above
 	binades      = 290 + 60
-	fastAccuracy = 1e-6
+	fastAccuracy = 1e-6 // of η; of a coarse law 64 times that
 )
 
 // binade is η at the ends of the pieces, with its slope per piece, and d ln η/d ln ε_II.
 type binade struct {
-	node  [pieces + 1]struct{ eta, step float64 }
-	slope [pieces + 1]float64
+	node  []binadeEnd
 	rough bool // the cubics are not good enough here
 }
+
+type binadeEnd struct{ eta, step, slope float64 }
 
 // eta returns η and about d ln η/d ln ε_II at ε_II² = e2, which must lie between the
 // table's ends.
@@ -28,22 +29,23 @@ func (l *nodeLaw) eta(e2 float64) (eta, slope float64, err error) {
 	if i < 0 || i >= binades {
 		return l.slow(e2)
 	}
-	b := l.fast[i]
+	b := l.fast.at(i)
 	if b == nil {
 		if b, err = l.fillBinade(i); err != nil {
 			return 0, 0, err
 		}
-		l.fast[i] = b
+		l.fast.put(i, b)
 	}
 	if b.rough {
 		return l.slow(e2)
 	}
-	j := int(bits>>(52-pieceBits)) & (pieces - 1)
-	const rest = 1<<(52-pieceBits) - 1
-	t := float64(bits&rest) * (1.0 / (rest + 1))
+	shift := 52 - l.bits
+	j := int(bits>>shift) & (1<<l.bits - 1)
+	rest := uint64(1)<<shift - 1
+	t := float64(bits&rest) / float64(rest+1)
 	a, c := &b.node[j], &b.node[j+1]
 	d := c.eta - a.eta
-	return a.eta + t*(a.step+t*(3*d-2*a.step-c.step+t*(a.step+c.step-2*d))), b.slope[j], nil
+	return a.eta + t*(a.step+t*(3*d-2*a.step-c.step+t*(a.step+c.step-2*d))), a.slope, nil
 }
 
 func (l *nodeLaw) slow(e2 float64) (eta, slope float64, err error) {
@@ -54,24 +56,53 @@ func (l *nodeLaw) slow(e2 float64) (eta, slope float64, err error) {
 // fillBinade tabulates one power of two. Cubics over two pieces at a time miss the value
 // between them by sixteen times what one piece misses.
 func (l *nodeLaw) fillBinade(i int) (*binade, error) {
-	b := new(binade)
 	left := math.Ldexp(1, lowestBinade+i)
-	for j := range b.node {
-		e2 := left * (1 + float64(j)/pieces)
+	n := 1 << l.bits
+	b := &binade{node: make([]binadeEnd, n+1)}
+	for j := range n + 1 {
+		e2 := left * (1 + float64(j)/float64(n))
 		eta, slope, err := l.slow(e2)
 		if err != nil {
 			return nil, err
 		}
-		cell := int((math.Min(math.Max(0.5*math.Log(e2), lowestLnRate), highestLnRate) - lowestLnRate) / lawCell)
-		if p := l.cells[min(cell, lawCells-1)]; p.parts == 0 {
-			b.rough = true // the law's own exponent may be held at a limit
-		}
-		b.node[j].eta, b.node[j].step, b.slope[j] = eta, eta*slope/(2*e2)*left/pieces, slope
+		b.rough = b.rough || l.exactly(0.5*math.Log(e2)) // the law's own exponent may be held at a limit
+		b.node[j] = binadeEnd{eta, eta * slope / (2 * e2) * left / float64(n), slope}
 	}
-	for j := 0; j+2 <= pieces; j++ {
+	accuracy := fastAccuracy
+	if l.wide != nil {
+		accuracy *= 64
+	}
+	for j := 0; j+2 <= n; j++ {
 		n := b.node[j : j+3]
 		y, _ := hermite(0.5, n[0].eta, n[2].eta, 2*n[0].step, 2*n[2].step)
-		b.rough = b.rough || math.Abs(y-n[1].eta) > 16*fastAccuracy*n[1].eta
+		b.rough = b.rough || math.Abs(y-n[1].eta) > 16*accuracy*n[1].eta
 	}
 	return b, nil
+}
+
+// binadeRow holds the binades from low on that were asked.
+type binadeRow struct {
+	low  int
+	list []*binade
+}
+
+func (r *binadeRow) at(i int) *binade {
+	if i -= r.low; i >= 0 && i < len(r.list) {
+		return r.list[i]
+	}
+	return nil
+}
+
+func (r *binadeRow) put(i int, b *binade) {
+	if len(r.list) == 0 {
+		r.low, r.list = i, make([]*binade, 0, 8)
+	}
+	if i < r.low {
+		r.list = append(make([]*binade, r.low-i, r.low-i+len(r.list)+4), r.list...)
+		r.low = i
+	}
+	for len(r.list) <= i-r.low {
+		r.list = append(r.list, nil)
+	}
+	r.list[i-r.low] = b
 }

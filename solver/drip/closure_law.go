@@ -24,7 +24,9 @@ type nodeLaw struct {
 	layer int
 	z     float64
 	cells []*lawPiece
-	fast  []*binade
+	fast  binadeRow
+	bits  int      // of the pieces of a binade
+	wide  *wideLaw // nil where not coarse
 }
 
 // lawPiece is one cell: ln η and its slope times the part's width, at the ends of parts.
@@ -33,8 +35,13 @@ type lawPiece struct {
 	y, slope []float64
 }
 
-func newNodeLaw(s *state.State, layer int, z float64) nodeLaw {
-	return nodeLaw{state: s, layer: layer, z: z, cells: make([]*lawPiece, lawCells), fast: make([]*binade, binades)}
+// newNodeLaw makes a law of one depth; a coarse one is good to wideAccuracy and costs less
+// to make than to ask a hundred times.
+func newNodeLaw(s *state.State, layer int, z float64, coarse bool) nodeLaw {
+	if coarse {
+		return nodeLaw{state: s, layer: layer, z: z, bits: coarseBits, wide: &wideLaw{}}
+	}
+	return nodeLaw{state: s, layer: layer, z: z, bits: pieceBits, cells: make([]*lawPiece, lawCells)}
 }
 
 // exact returns ln η and d ln η/d ln ε_II from the law.
@@ -48,6 +55,9 @@ func (l *nodeLaw) exact(lnRate float64) (lnEta, slope float64, err error) {
 
 // at returns ln η and d ln η/d ln ε_II at ln ε_II.
 func (l *nodeLaw) at(lnRate float64) (lnEta, slope float64, err error) {
+	if l.wide != nil {
+		return l.wideAt(lnRate)
+	}
 	x := (math.Min(math.Max(lnRate, lowestLnRate), highestLnRate) - lowestLnRate) / lawCell
 	i := min(int(x), lawCells-1)
 	p := l.cells[i]
@@ -102,4 +112,14 @@ func (l *nodeLaw) fill(i int) (*lawPiece, error) {
 		}
 	}
 	return &lawPiece{}, nil
+}
+
+// exactly says whether the law itself is asked at ln ε_II, where at has been.
+func (l *nodeLaw) exactly(lnRate float64) bool {
+	if w := l.wide; w != nil {
+		i := int(math.Floor(math.Min(math.Max(lnRate, lowestLnRate), highestLnRate-1e-9)/wideCell)) - w.low
+		return w.cells[i].cut != nil && len(w.cells[i].cut) == 0
+	}
+	i := int((math.Min(math.Max(lnRate, lowestLnRate), highestLnRate) - lowestLnRate) / lawCell)
+	return l.cells[min(i, lawCells-1)].parts == 0
 }

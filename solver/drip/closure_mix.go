@@ -3,6 +3,8 @@ package drip
 import (
 	"math"
 	"slices"
+
+	"gonum.org/v1/gonum/mat"
 )
 
 // guess extrapolates the fixed points found to another amplitude, in ln of both.
@@ -46,6 +48,44 @@ func (b *softBand) forget() {
 	}
 	b.mix.restart()
 	b.begun = false
+}
+
+// flowing returns dξ/dt at displacements y of all interfaces.
+func (f *Soft) flowing(k float64, y []float64) (flowing, error) {
+	b, a, err := f.system(k, y)
+	if err != nil {
+		return flowing{}, err
+	}
+	n, states := len(y), 0
+	m := mat.NewDense(n, n, nil)
+	for _, p := range b.flow.Interface {
+		if p >= 0 {
+			states++
+		}
+	}
+	for i, p := range b.flow.Interface {
+		for j, q := range b.flow.Interface {
+			if p >= 0 && q >= 0 {
+				m.Set(i, j, a[p*states+q])
+			}
+		}
+	}
+	out := flowing{a: m, exponent: math.Max(1, b.n), over: b.over}
+	_, last, _ := f.state.Column.RootSpan()
+	for i, l := range b.flow.Layer {
+		if l == last { // the lowest node counts
+			out.strain, out.stress = b.own(i)
+		}
+	}
+	return out, nil
+}
+
+// own returns the second invariants of the flow's strain rate and stress at a node, each
+// the largest along it.
+func (b *softBand) own(i int) (strain, stress float64) {
+	w := b.flow
+	n, s := math.Abs(w.Normal[i]), math.Abs(w.Shear[i])
+	return math.Max(n, s/2), math.Max(2*w.EtaN[i]*n, w.EtaS[i]*s)
 }
 
 // again takes the last fixed point found as the next guess, after one that was not.

@@ -39,14 +39,19 @@ type course struct {
 	tape   *tape
 	span   float64         // s, what the tolerance is for
 	ends   []float64       // of the pairs, where not chosen by error: for tests
+	finer  int             // parts for each that is needed, where not 1: for tests
 	graded map[string]bool // layers whose composition grades, or has
 	first  *node
 	legs   []leg
+	relaid relaid
 	h      float64 // next step, s
 }
 
 // leg is a pair of equal steps or, where mid is nil, a jump.
 type leg struct{ from, mid, end *node }
+
+// relaid is a node with its parts laid out anew.
+type relaid struct{ of, node *node }
 
 // last is the node the course has come to.
 func (c *course) last() *node {
@@ -63,9 +68,12 @@ type node struct {
 	s      *state.State
 	model  *growth.Column
 	form   *growth.Template
-	lay    layout  // without parts
-	root   float64 // thickness, m
-	strain float64 // ∫ e_k dt since time 0, e_k the strain rate along the wavevector
+	lay    layout                    // without parts
+	root   float64                   // thickness, m
+	strain float64                   // ∫ e_k dt since time 0, e_k the strain rate along the wavevector
+	spread float64                   // the same of the extension
+	rocks  func(layer int) []float64 // marksOf
+	marks  [][]float64               // those known, by layer
 }
 
 // newCourse begins a course where the tape is.
@@ -77,7 +85,7 @@ func newCourse(p Plan, t *tape, until float64) (*course, error) {
 		return nil, err
 	}
 	c.first = n
-	return c, c.refine(n)
+	return c, c.refine(n, nil, true)
 }
 
 // look returns the column where the tape is now.
@@ -97,7 +105,7 @@ func (c *course) look() (*node, error) {
 	if err != nil {
 		return nil, fmt.Errorf("at %.4g Myr: %w", m.Time()/1e6/year, err)
 	}
-	n := &node{t: m.Time(), mark: c.tape.mark(), s: s, lay: layout{rootBase: -1, parts: make([]int, len(col.Layers))}}
+	n := &node{t: m.Time(), mark: c.tape.mark(), s: s, spread: c.tape.strain, lay: layout{rootBase: -1, parts: make([][]float64, len(col.Layers))}}
 	if !c.plan.AlongStrike {
 		n.strain = c.tape.strain
 	}
@@ -108,38 +116,31 @@ func (c *course) look() (*node, error) {
 		n.lay.rootBase, n.root = last+1, col.RootThickness()
 	}
 	n.model = Strained(s, Background{ExtensionRate: e, AlongStrike: c.plan.AlongStrike}, "none")
-	for i := range n.model.Layers {
-		if n.model.Layers[i].Gradient != nil {
-			return nil, fmt.Errorf("%w: the composition of %s grades at %.4g Myr", ErrGrades, n.lay.names[i], m.Time()/1e6/year)
-		}
-	}
+	n.lay.surface = n.model.Top == growth.Free
+	n.lay.base = n.model.Base == growth.HalfSpace || n.model.Base == growth.Inviscid
+	n.marks = make([][]float64, len(col.Layers))
+	n.rocks = func(i int) []float64 { return marksOf(s, i, profile, math.Exp(n.spread)) }
 	return n, nil
 }
 
 const year = 365.25 * 86400 // s
 
 // refine gives a node its growth solver. Layers whose composition grades somewhere carry
-// a field from then on, also where it does not.
-func (c *course) refine(n *node) error {
+// a field from then on, also where it does not; its parts are in the rock of the node
+// before, where there is one, or anew.
+func (c *course) refine(n, before *node, anew bool) error {
 	for i, name := range n.lay.names {
 		if n.model.Layers[i].Gradient != nil {
 			c.graded[name] = true
-		} else if c.graded[name] {
-			n.model.Layers[i].Gradient = func(float64) float64 { return 0 }
 		}
 	}
+	c.lay(n, before, anew)
 	var err error
 	if n.form, err = growth.NewTemplate(n.model, courseTolerance); err != nil {
 		return fmt.Errorf("at %.4g Myr: %w", n.t/1e6/year, err)
 	}
-	n.lay.surface, n.lay.base = n.form.Movable()
 	return nil
 }
-
-// ErrGrades says that a column through time has a layer whose composition grades with
-// depth, by itself or as it reacts. The states for it are laid out (layout.parts), but
-// nothing has been checked against them yet.
-var ErrGrades = errors.New("drip: through time only layers of one composition each are followed")
 
 // errChanged says that the layers changed between two nodes that were to be one pair.
 var errChanged = errors.New("drip: the layers changed")
@@ -147,7 +148,9 @@ var errChanged = errors.New("drip: the layers changed")
 // pair drives the column over two steps h.
 func (c *course) pair(ctx context.Context, h float64) (leg, error) {
 	l := leg{from: c.last()}
-	before := len(c.graded)
+	if c.relaid.of == l.from {
+		l.from = c.relaid.node
+	}
 	for i, n := range []**node{&l.mid, &l.end} {
 		if err := c.tape.advance(ctx, l.from.t+h*float64(i+1)); err != nil {
 			return l, err
@@ -156,23 +159,29 @@ func (c *course) pair(ctx context.Context, h float64) (leg, error) {
 		if *n, err = c.look(); err != nil {
 			return l, err
 		}
-		if err := c.refine(*n); err != nil {
-			return l, err
-		}
 		if !(*n).lay.same(&l.from.lay) {
 			return l, errChanged
 		}
+		for i, name := range (*n).lay.names {
+			if c.graded[name] || (*n).model.Layers[i].Gradient != nil {
+				c.graded[name], (*n).marks[i] = true, (*n).rocks(i)
+			}
+		}
 	}
-	if len(c.graded) > before { // the leg before keeps its own
+	if c.drifted(l.from, l.end) { // the leg before keeps its own
 		again := *l.from
 		model := *again.model
-		model.Layers = slices.Clone(model.Layers)
+		model.Layers, again.marks = slices.Clone(model.Layers), slices.Clone(again.marks)
 		again.model = &model
 		l.from = &again
-		for _, n := range []*node{l.from, l.mid} {
-			if err := c.refine(n); err != nil {
-				return l, err
-			}
+		if err := c.refine(l.from, l.from, true); err != nil {
+			return l, err
+		}
+		c.relaid = relaid{of: c.last(), node: l.from}
+	}
+	for _, n := range []*node{l.mid, l.end} {
+		if err := c.refine(n, l.from, false); err != nil {
+			return l, err
 		}
 	}
 	return l, nil
@@ -187,7 +196,7 @@ func (c *course) jumpTo(ctx context.Context, t float64) error {
 	if err != nil {
 		return err
 	}
-	if err := c.refine(n); err != nil {
+	if err := c.refine(n, c.last(), true); err != nil {
 		return err
 	}
 	c.legs = append(c.legs, leg{from: c.last(), end: n})

@@ -14,7 +14,9 @@ type layout struct {
 	names         []string // of the layers
 	surface, base bool     // these can move
 	rootBase      int      // interface below the lowest root layer; −1 without a root
-	parts         []int    // of each layer
+	// of each layer that grades, else nil: the marks of the ends of its parts, and of the
+	// rock that they are in, with the seam where rock came to its base
+	parts, cover [][]float64
 }
 
 // perPart is the number of states of a part: Gauss points of an element.
@@ -32,7 +34,7 @@ func (l *layout) places() (contact, inside []int, n int) {
 		}
 		if i < len(l.names) {
 			inside[i] = n
-			n += perPart * l.parts[i]
+			n += perPart * max(0, len(l.parts[i])-1)
 		}
 	}
 	return contact, inside, n
@@ -45,7 +47,7 @@ func (l *layout) same(m *layout) bool {
 // carry returns the states y of layout l as those of m. An interface is known by the
 // layer above it: one born by intrusion is flat; where layers below it have vanished,
 // it takes the amplitude of the lowest of theirs, but for rock of the base, which had
-// none of its own. Where new rock belongs to the root, the root's base keeps its
+// none of its own. What is inside a layer stays with the rock. Where new rock belongs to the root, the root's base keeps its
 // amplitude and what is now inside the root is flat.
 func (l *layout) carry(m *layout, y []float64) []float64 {
 	from, inside, _ := l.places()
@@ -68,9 +70,6 @@ func (l *layout) carry(m *layout, y []float64) []float64 {
 		if i < 0 {
 			continue
 		}
-		if m.parts[j] == l.parts[i] {
-			copy(out[into[j]:into[j]+perPart*m.parts[j]], y[inside[i]:])
-		}
 		at := i + 1
 		for q := i + 1; q < len(l.names) && !slices.Contains(m.names, l.names[q]); q++ {
 			if !footRock(l.names[q]) {
@@ -78,6 +77,9 @@ func (l *layout) carry(m *layout, y []float64) []float64 {
 			}
 		}
 		set(j+1, get(at))
+		if l.parts[i] != nil && m.parts[j] != nil {
+			l.follow(m, i, j, y[inside[i]:], out[into[j]:], get(i), get(at))
+		}
 	}
 	if b := m.rootBase; b > 0 && !slices.Contains(l.names, m.names[b-1]) && l.rootBase > 0 {
 		set(b, get(l.rootBase))

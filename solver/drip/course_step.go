@@ -1,14 +1,13 @@
 package drip
 
-import (
-	"math"
+import "math"
 
-	"gonum.org/v1/gonum/mat"
+// few is the number of states up to which a step is an exponential; beyond, it is made of
+// rational steps (course_rational.go), unless it takes more than mostFew of them.
+const (
+	few     = 16
+	mostFew = 24
 )
-
-// few is the number of states up to which a step is an exponential; beyond, it is
-// Radau IIA steps of third order, which are L-stable.
-const few = 16
 
 // stepper applies exp(h A) of one A at a time and holds the storage for it.
 type stepper struct {
@@ -17,28 +16,29 @@ type stepper struct {
 	scale      []float64
 	e          []float64 // exp(h A) e^-log of the balanced A
 	log        float64
-	lu         mat.LU // of Radau's denominator
-	steps      int
+	steps      int // rational ones, of (1 − γ h A)⁻¹ in b; 0: the exponential
+	row        []int
 	x, r       []float64
 }
 
 func (s *stepper) grow(n int) {
 	if s.n = n; len(s.b) < n*n {
 		s.b, s.u, s.v, s.w = make([]float64, n*n), make([]float64, n*n), make([]float64, n*n), make([]float64, n*n)
-		s.scale, s.x, s.r = make([]float64, n), make([]float64, n), make([]float64, n)
+		s.scale, s.x, s.r, s.row = make([]float64, n), make([]float64, n), make([]float64, n), make([]int, n)
 	}
 }
 
-// set prepares exp(h A) for n states. rate is a rough growth rate of what it will be
-// applied to, 1/s, for the number of Radau's steps.
+// set prepares exp(h A) for n states. rate bounds the growth rates of A, 1/s, roughly.
 func (s *stepper) set(a []float64, n int, h, rate float64) {
 	s.grow(n)
 	b := s.b[:n*n]
 	for i := range b {
 		b[i] = h * a[i]
 	}
-	if n > few {
-		s.radau(b, h*rate)
+	if s.steps = rationalSteps(h * rate); n <= few || s.steps > mostFew {
+		s.steps = 0
+	} else {
+		s.rational(b)
 		return
 	}
 	s.balance(b, n)
@@ -49,8 +49,8 @@ func (s *stepper) set(a []float64, n int, h, rate float64) {
 // may be y.
 func (s *stepper) apply(out, y []float64) (log float64) {
 	n := s.n
-	if n > few {
-		return s.radauApply(out, y)
+	if s.steps > 0 {
+		return s.rationalApply(out, y)
 	}
 	x := s.x[:n]
 	for j := range n {
@@ -222,43 +222,4 @@ func solve(a, x []float64, n int) {
 			x[i*n+j] = v / a[i*n+i]
 		}
 	}
-}
-
-// radau prepares equal steps of the two-stage Radau IIA method, whose stability function
-// is (1 + z/3)/(1 − 2z/3 + z²/6): third order and L-stable. Their number keeps each
-// below a growth of 1/8, where its error is z⁴/72 (Hairer & Wanner 1991, IV.5, from
-// memory).
-func (s *stepper) radau(b []float64, growth float64) {
-	n := s.n
-	s.steps = min(max(4, int(math.Ceil(8*math.Abs(growth)))), 4000)
-	for i := range b {
-		b[i] /= float64(s.steps)
-	}
-	bm, d := mat.NewDense(n, n, b), mat.NewDense(n, n, s.u[:n*n])
-	d.Mul(bm, bm)
-	d.Scale(1.0/6, d)
-	for i := range n {
-		for j := range n {
-			s.u[i*n+j] -= 2.0 / 3 * b[i*n+j]
-		}
-		s.u[i*n+i]++
-	}
-	s.lu.Factorize(d)
-}
-
-func (s *stepper) radauApply(out, y []float64) (log float64) {
-	n := s.n
-	copy(out, y)
-	bm, x, r := mat.NewDense(n, n, s.b[:n*n]), mat.NewVecDense(n, out), mat.NewVecDense(n, s.r[:n])
-	for range s.steps {
-		r.MulVec(bm, x)
-		r.AddScaledVec(x, 1.0/3, r)
-		if err := s.lu.SolveVecTo(x, false, r); err != nil {
-			if _, rough := err.(mat.Condition); !rough {
-				break
-			}
-		}
-		log += normalise(out)
-	}
-	return log
 }

@@ -110,6 +110,7 @@ func Solve(ctx context.Context, s *state.State, set Settings, o Options) (*Resul
 	if o.To > 0 {
 		to = o.To
 	}
+	from, to = set.within(from, to)
 	if err := p.curve(ctx, from, math.Max(to, 1.01*from), 10); err != nil {
 		return nil, err
 	}
@@ -118,21 +119,22 @@ func Solve(ctx context.Context, s *state.State, set Settings, o Options) (*Resul
 	if o.Limit > 0 {
 		limit = o.Limit
 	}
-	best, err := p.best(set.Amplitude, limit, fine)
+	best, err := p.best(1, limit, fine)
 	if err != nil {
 		return nil, err
 	}
-	if r.Unrestricted, err = p.best(set.Amplitude, math.Inf(1), fine); err != nil {
+	if r.Unrestricted, err = p.best(1, math.Inf(1), fine); err != nil {
 		return nil, err
 	}
 	contrast := -s.Jumps[p.base]
 	if math.IsInf(best.Time, 1) {
 		r.Outcome, r.Reason = never(contrast, r.Unrestricted, o)
+		r.Traces = p.traces(math.Inf(1))
 		return p.softened(ctx, s, set, o, r)
 	}
 	r.Time, r.Wavelength, r.InitialWavelength = best.Time, best.Wavelength, best.Wavelength
 	for i, a := range []float64{3, 1.0 / 3} {
-		b, err := p.best(set.Amplitude*a, limit, fine)
+		b, err := p.best(a, limit, fine)
 		if err != nil {
 			return nil, err
 		}
@@ -152,9 +154,10 @@ func Solve(ctx context.Context, s *state.State, set Settings, o Options) (*Resul
 		r.Reason = "it would drip, but only after the window has closed"
 	}
 	if o.Limit > 0 && r.Unrestricted.Time < 0.99*r.Time {
-		r.Excluded = fmt.Sprintf("wavelengths beyond %s, were computed and not used; the first of them to drip is %.3g km", o.LimitIs, r.Unrestricted.Wavelength/1e3)
+		r.Excluded = fmt.Sprintf("wavelengths beyond %s, were computed and not used; the first of them to drip is %.4g km", o.LimitIs, r.Unrestricted.Wavelength/1e3)
 	}
 	r.SpacingFrom, r.SpacingTo = p.spacing(r.Time, r.Wavelength, limit)
+	r.Traces = p.traces(r.Time)
 	if err := p.finish(r); err != nil {
 		return nil, err
 	}
@@ -174,7 +177,7 @@ func never(contrast float64, free Fastest, o Options) (outcome, reason string) {
 		}
 		return "buoyant", "never drips: the root is " + word + Weigh(contrast)
 	case !math.IsInf(free.Time, 1):
-		return "window", fmt.Sprintf("no wavelength within %s, drips, though one of %.3g km would", o.LimitIs, free.Wavelength/1e3)
+		return "window", fmt.Sprintf("no wavelength within %s, drips, though one of %.4g km would", o.LimitIs, free.Wavelength/1e3)
 	}
 	return "window", "does not drip in 1e5 Myr, though the root is " + Weigh(contrast)
 }

@@ -18,9 +18,15 @@ type follower struct {
 	log   float64
 	a     []float64  // A at the last node
 	times [3]float64 // of the drip, for the amplitude × 3, as it is, and ÷ 3; +Inf so far
-	rate  float64    // of growth in the last pair, 1/s
+	most  float64    // bound on the growth rates there are, roughly, 1/s
+	due   int        // pairs until it is looked at again
 	parts map[string]int
-	trace *Amplitude // of the base, where asked for
+	finer int         // parts for each that is needed; 2 in tests
+	size  float64     // amplitude at the start, m; 0: there is none, and it is not followed
+	trace *Trace      // of the base, where asked for
+	kept  []displaced // displacements at the nodes, where asked for
+	keep  bool
+	every float64 // s: points of the trace are no further apart
 
 	a1, a2     []float64
 	y1, y2, yd []float64
@@ -47,12 +53,12 @@ func newGroup(c *course, set Settings, wavelengths []float64, workers int) (*gro
 	n := c.first
 	g := &group{set: set, workers: workers, stopAt: -1, limit: math.Inf(1), strain0: n.strain, strain: n.strain}
 	for _, w := range wavelengths {
-		f := &follower{first: w, parts: map[string]int{}}
+		f := &follower{first: w, parts: map[string]int{}, finer: max(1, c.finer), size: set.Start(w, set.Criterion*n.root)}
 		for i := range f.times {
 			f.times[i] = math.Inf(1)
 		}
 		f.lay = n.lay
-		f.lay.parts = f.partsAt(n, w)
+		f.lay.parts = f.partsAt(n, w, n.lay.cover)
 		contact, _, states := f.lay.places()
 		f.y = make([]float64, states)
 		b := n.lay.rootBase
@@ -70,19 +76,22 @@ func (g *group) wavelength(f *follower, n *node) float64 {
 	return f.first * math.Exp(n.strain-g.strain0)
 }
 
-// partsAt returns the parts of a node's layers for a wavelength; what a layer once has
-// it keeps.
-func (f *follower) partsAt(n *node, wavelength float64) []int {
-	need := n.form.Parts(wavelength)
-	for i, p := range need {
-		name := n.lay.names[i]
-		if had, ok := f.parts[name]; ok && p > 0 {
-			need[i] = had
-		} else if p > 0 {
-			f.parts[name] = p
+// partsAt returns the parts of a node's layers for a wavelength, in the rock that cover
+// says. As many as a layer once has it keeps, until it needs more than the margin that
+// Parts gives it.
+func (f *follower) partsAt(n *node, wavelength float64, cover [][]float64) [][]float64 {
+	out := make([][]float64, len(cover))
+	for i, p := range n.form.Parts(wavelength) {
+		if p == 0 {
+			continue
 		}
+		name := n.lay.names[i]
+		if had := f.parts[name]; 2*had < p*f.finer {
+			f.parts[name] = p * f.finer
+		}
+		out[i] = cut(cover[i], f.parts[name], f.finer)
 	}
-	return need
+	return out
 }
 
 // enter fits the followers to a node: its layers, its parts, its A.
@@ -93,18 +102,19 @@ func (g *group) enter(n *node) error {
 		for _, f := range list {
 			w := g.wavelength(f, n)
 			to := n.lay
-			to.parts = f.partsAt(n, w)
+			to.parts = f.partsAt(n, w, n.lay.cover)
 			f.y = f.lay.carry(&to, f.y)
 			f.lay = to
 			if err := matrix(&f.a, form, w, to.parts); err != nil {
 				return err
 			}
+			f.bound()
 		}
 		return nil
 	})
 }
 
-func matrix(dst *[]float64, form *growth.Template, wavelength float64, parts []int) error {
+func matrix(dst *[]float64, form *growth.Template, wavelength float64, parts [][]float64) error {
 	a, _, err := form.Matrix(wavelength, parts)
 	*dst = append((*dst)[:0], a...)
 	return err
@@ -132,4 +142,5 @@ func (g *group) each(do func([]*follower) error) error {
 	return errors.Join(errs...)
 }
 
-func (f *follower) done() bool { return !math.IsInf(f.times[2], 1) }
+// done says whether there is nothing more to follow.
+func (f *follower) done() bool { return f.size == 0 || !math.IsInf(f.times[2], 1) }

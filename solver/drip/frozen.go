@@ -22,6 +22,10 @@ type Frozen struct {
 	Wavelength float64   // m
 	Rates      []float64 // λ, 1/s
 	Share      []float64 // displacement of the root's base per a₀ and per t φ₁(λt), 1/s
+
+	states, base int       // of the system, and which of them is the root's base
+	driven       []int     // states that exert a force
+	shape        []float64 // displacement of driven state i per a₀ and per t φ₁(λ_j t), 1/s, at i n + j
 }
 
 // NewFrozen prepares the solution for interface base (0 is the surface) of sys.
@@ -55,7 +59,7 @@ func NewFrozen(sys *growth.System, base int) (*Frozen, error) {
 			size[i] = math.Sqrt(math.Abs(sys.Weight[i]))
 		}
 	}
-	f := &Frozen{Wavelength: sys.Wavelength}
+	f := &Frozen{Wavelength: sys.Wavelength, states: n, base: b}
 	if sys.Weight[b] == 0 || len(driven) == 0 {
 		return f, nil // an undulation that exerts no force stays as it is
 	}
@@ -107,6 +111,13 @@ func NewFrozen(sys *growth.System, base int) (*Frozen, error) {
 	for j := range d { // ξ' = Dξ: the scale of the base cancels
 		f.Share[j] = -lq.At(at, j) * lq.At(at, j) * math.Copysign(1, sys.Weight[b])
 	}
+	f.driven, f.shape = driven, make([]float64, d*d)
+	for i, k := range driven {
+		scale := size[b] / size[k] * math.Copysign(1, sys.Weight[b])
+		for j := range d {
+			f.shape[i*d+j] = -lq.At(i, j) * lq.At(at, j) * scale
+		}
+	}
 	return f, nil
 }
 
@@ -117,6 +128,21 @@ func (f *Frozen) Base(t float64) float64 {
 	for j, q := range f.Rates {
 		x += f.Share[j] * t * phi1(q*t)
 	}
+	return x
+}
+
+// States returns the displacements at time t (s) for a unit undulation at the start, in
+// the order of growth.System. Those that exert no force are left at 0: they drive nothing.
+func (f *Frozen) States(t float64) []float64 {
+	x := make([]float64, f.states)
+	n := len(f.Rates)
+	for j, q := range f.Rates {
+		grown := t * phi1(q*t)
+		for i, k := range f.driven {
+			x[k] += f.shape[i*n+j] * grown
+		}
+	}
+	x[f.base]++
 	return x
 }
 

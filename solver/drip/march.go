@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"math"
+	"slices"
 	"sync"
 
 	"keelfall/solver/growth"
@@ -26,8 +27,8 @@ func (g *group) try(ctx context.Context, l leg) (float64, error) {
 		}
 		for _, f := range list {
 			to := from.lay
-			to.parts = f.partsAt(end, g.wavelength(f, end))
-			if !sameParts(to.parts, f.lay.parts) { // a layer begins to grade
+			to.parts = f.partsAt(end, g.wavelength(f, end), from.lay.cover)
+			if !sameParts(&to, &f.lay) { // a layer begins to grade, or its rock has come and gone
 				f.y = f.lay.carry(&to, f.y)
 				f.lay = to
 				if err := matrix(&f.a, forms[0], g.wavelength(f, from), to.parts); err != nil {
@@ -36,6 +37,9 @@ func (g *group) try(ctx context.Context, l leg) (float64, error) {
 			}
 		}
 		for _, f := range list {
+			if f.due <= 0 {
+				f.bound()
+			}
 			if err := matrix(&f.a1, forms[1], g.wavelength(f, mid), f.lay.parts); err != nil {
 				return err
 			}
@@ -58,13 +62,9 @@ func (g *group) try(ctx context.Context, l leg) (float64, error) {
 	return worst, err
 }
 
-func sameParts(a, b []int) bool {
-	for i := range a {
-		if a[i] != b[i] {
-			return false
-		}
-	}
-	return len(a) == len(b)
+// sameParts says whether two layouts of the same layers have the same parts.
+func sameParts(a, b *layout) bool {
+	return slices.EqualFunc(a.parts, b.parts, slices.Equal[[]float64])
 }
 
 // pair fills the states after each of two steps, y ← exp(h A₁/2) exp(h A₀/2) y, and with
@@ -77,13 +77,13 @@ func (f *follower) pair(s *stepper, h float64) float64 {
 	if len(f.y1) != n {
 		f.y1, f.y2, f.yd = make([]float64, n), make([]float64, n), make([]float64, n)
 	}
-	s.set(f.a, n, h/2, f.rate)
-	l := s.apply(f.y1, f.y)
-	f.ld = l + s.apply(f.yd, f.y1)
-	s.set(f.a1, n, h/2, f.rate)
-	f.l1 = l + s.apply(f.y1, f.y1)
+	s.set(f.a, n, h/2, f.most)
+	half := s.apply(f.y1, f.y)
+	f.ld = half + s.apply(f.yd, f.y1)
+	s.set(f.a1, n, h/2, f.most)
+	f.l1 = half + s.apply(f.y1, f.y1)
 	f.l2 = f.l1 + s.apply(f.y2, f.y1)
-	s.set(f.a2, n, h/2, f.rate)
+	s.set(f.a2, n, h/2, f.most)
 	f.l2 += s.apply(f.y2, f.y2)
 	f.ld += s.apply(f.yd, f.yd)
 	f.ld += s.apply(f.yd, f.yd)
@@ -125,23 +125,30 @@ func (g *group) accept(l leg) {
 		b := f.base()
 		fix := f.fix / 2
 		begun, half, done := f.log+logSize(f.y[b]), f.log+f.l1+logSize(f.y1[b])+fix, f.log+f.l2+logSize(f.y2[b])
-		f.drips(&s, g.set, stride{from, mid, false, f.y, f.log, f.a, f.a1, f.a2, begun, half, 0}, b)
-		f.drips(&s, g.set, stride{mid, end, true, f.y1, f.log + f.l1, f.a, f.a1, f.a2, half, done, fix}, b)
-		f.rate = math.Max(f.l2, f.ld) / (2 * h)
-		f.note(mid.t, half, g.set)
+		first := stride{from, mid, false, f.y, f.log, f.a, f.a1, f.a2, begun, half, 0, nil}
+		second := stride{mid, end, true, f.y1, f.log + f.l1, f.a, f.a1, f.a2, half, done, fix, nil}
+		f.curves(&first, &second, b)
+		f.drips(&s, g.set, first, b)
+		f.drips(&s, g.set, second, b)
+		f.inside(&s, g, first, b)
+		f.note(g, mid, half)
+		f.store(g, mid, f.y1, f.log+f.l1+fix)
+		f.inside(&s, g, second, b)
+		f.most, f.due = math.Max(f.most, 1.5*math.Max(f.l2, f.ld)/(2*h)), f.due-1
 		f.y, f.y2 = f.y2, f.y
 		f.log += f.l2 + normalise(f.y)
-		f.note(end.t, done, g.set)
+		f.note(g, end, done)
+		f.store(g, end, f.y, f.log)
 		f.a, f.a2 = f.a2, f.a
 	}
 }
 
 func logSize(x float64) float64 { return math.Log(math.Abs(x)) }
 
-func (f *follower) note(t, log float64, set Settings) {
+// note adds ln |base| at a node to the trace.
+func (f *follower) note(g *group, n *node, log float64) {
 	if f.trace != nil {
-		f.trace.Time = append(f.trace.Time, t)
-		f.trace.Base = append(f.trace.Base, set.Amplitude*math.Exp(log))
+		f.trace.add(n.t, g.wavelength(f, n), f.size*math.Exp(log))
 	}
 }
 
@@ -161,11 +168,11 @@ func (g *group) jump(l leg) error {
 		}
 		b := f.base()
 		out := make([]float64, len(f.y))
-		s.set(f.a, len(out), h, f.rate)
+		s.set(f.a, len(out), h, f.most)
 		d := s.apply(out, f.y)
 		same := *from
 		same.t = to.t
-		f.drips(&s, g.set, stride{from, &same, false, f.y, f.log, f.a, f.a, f.a, f.log + logSize(f.y[b]), f.log + d + logSize(out[b]), 0}, b)
+		f.drips(&s, g.set, stride{from, &same, false, f.y, f.log, f.a, f.a, f.a, f.log + logSize(f.y[b]), f.log + d + logSize(out[b]), 0, nil}, b)
 		f.y, f.log = out, f.log+d
 	}
 	if to.lay.rootBase < 0 {
@@ -179,10 +186,12 @@ func (g *group) jump(l leg) error {
 			continue
 		}
 		for j, m := range amplitudes {
-			if b := f.base(); math.IsInf(f.times[j], 1) && f.log+logSize(f.y[b]) >= math.Log(g.set.Criterion*to.root/(g.set.Amplitude*m)) {
+			if b := f.base(); math.IsInf(f.times[j], 1) && f.log+logSize(f.y[b]) >= math.Log(g.set.Criterion*to.root/(f.size*m)) {
 				f.times[j] = to.t
 			}
 		}
+		f.note(g, to, f.log+logSize(f.y[f.base()]))
+		f.store(g, to, f.y, f.log)
 	}
 	return nil
 }

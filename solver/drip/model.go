@@ -58,6 +58,8 @@ func Strained(s *state.State, b Background, thermal string) *growth.Column {
 		}
 		if graded(s, i) {
 			l.Gradient = func(z float64) float64 { return s.GradientAt(i, z) }
+			top, _ := s.Span(i)
+			l.Breaks = breaks(c.Layers[i].Density, top, l.Thickness)
 		}
 		m.Layers = append(m.Layers, l)
 	}

@@ -19,7 +19,7 @@ type problem struct {
 	first, last int     // root layers
 	base        int     // interface below the lowest root layer
 	thickness   float64 // of the root, m
-	ratio       float64 // criterion × thickness / amplitude
+	stop        float64 // m: descent that counts as a drip
 	workers     int
 	points      []*Frozen // by increasing wavelength
 }
@@ -58,18 +58,22 @@ func (p *problem) curve(ctx context.Context, from, to float64, perOctave int) er
 	return errors.Join(errs...)
 }
 
-// time returns when wavelength f drips from an amplitude a.
-func (p *problem) time(f *Frozen, a float64) float64 {
-	return f.Time(p.ratio*p.set.Amplitude/a, Horizon)
+// time returns when wavelength f drips from m times its amplitude; +Inf without one.
+func (p *problem) time(f *Frozen, m float64) float64 {
+	a := m * p.set.Start(f.Wavelength, p.stop/m)
+	if a == 0 {
+		return math.Inf(1)
+	}
+	return f.Time(p.stop/a, Horizon)
 }
 
 func (p *problem) curveOf() Curve {
 	var c Curve
 	for _, f := range p.points {
 		c.Wavelength = append(c.Wavelength, f.Wavelength)
-		c.Time = append(c.Time, p.time(f, p.set.Amplitude))
-		c.Low = append(c.Low, p.time(f, 3*p.set.Amplitude))
-		c.High = append(c.High, p.time(f, p.set.Amplitude/3))
+		c.Time = append(c.Time, p.time(f, 1))
+		c.Low = append(c.Low, p.time(f, 3))
+		c.High = append(c.High, p.time(f, 1.0/3))
 	}
 	return c
 }
@@ -84,7 +88,7 @@ func newProblem(s *state.State, set Settings, workers int) (*problem, error) {
 	if err := set.check(thickness); err != nil {
 		return nil, err
 	}
-	p := &problem{set: set, ratio: set.Criterion * thickness / set.Amplitude, first: first, last: last,
+	p := &problem{set: set, stop: set.Criterion * thickness, first: first, last: last,
 		base: last + 1, thickness: thickness, workers: workers}
 	var err error
 	p.solver, err = growth.NewSolver(Model(s), 0)
@@ -93,15 +97,19 @@ func newProblem(s *state.State, set Settings, workers int) (*problem, error) {
 
 // check refuses settings that mean nothing for a root so thick, m.
 func (set *Settings) check(thickness float64) error {
+	if err := set.Rough.check(); err != nil {
+		return err
+	}
+	a := set.Least()
 	switch {
-	case !(set.Amplitude > 0) || math.IsInf(set.Amplitude, 0):
-		return fmt.Errorf("drip: amplitude %g m; must be positive", set.Amplitude)
+	case !(a > 0) || math.IsInf(a, 0):
+		return fmt.Errorf("drip: amplitude %g m; must be positive", a)
 	case !(set.Criterion > 0):
 		return fmt.Errorf("drip: criterion %g; must be positive", set.Criterion)
 	case !(set.Window > 0):
 		return fmt.Errorf("drip: window %g s; must be positive", set.Window)
-	case set.Amplitude >= set.Criterion*thickness:
-		return fmt.Errorf("drip: an amplitude of %.4g m already is the drip: %g × the root's %.4g m", set.Amplitude, set.Criterion, thickness)
+	case set.Dripped(set.Criterion * thickness):
+		return fmt.Errorf("drip: an amplitude of %.4g m already is the drip: %g × the root's %.4g m", a, set.Criterion, thickness)
 	}
 	return nil
 }
@@ -111,7 +119,7 @@ func (set *Settings) check(thickness float64) error {
 func (p *problem) spacing(t, wavelength, limit float64) (from, to float64) {
 	var list []Fastest
 	for _, f := range p.points {
-		list = append(list, Fastest{p.time(f, p.set.Amplitude), f.Wavelength})
+		list = append(list, Fastest{p.time(f, 1), f.Wavelength})
 	}
 	return around(list, t, wavelength, limit)
 }
@@ -164,11 +172,15 @@ func (p *problem) finish(r *Result) error {
 		return err
 	}
 	r.Rate = f.Fastest()
+	a := p.set.AmplitudeAt(r.Wavelength)
 	const n = 200
 	for i := 0; i <= n; i++ {
 		t := r.Time * float64(i) / n
 		r.History.Time = append(r.History.Time, t)
-		r.History.Base = append(r.History.Base, p.set.Amplitude*math.Abs(f.Base(t)))
+		r.History.Base = append(r.History.Base, a*math.Abs(f.Base(t)))
+	}
+	if r.First, err = p.firstTrace(f, a, r.Time); err != nil {
+		return err
 	}
 	if r.Mode, err = p.solver.Mode(r.Wavelength); err != nil {
 		return err
@@ -176,7 +188,7 @@ func (p *problem) finish(r *Result) error {
 	if d := math.Abs(r.Mode.Displacement[p.base]); d > 0 {
 		for i := p.first; i <= p.last; i++ {
 			perMetre := r.Mode.StrainRate[i] / d
-			r.StrainRate = math.Max(r.StrainRate, perMetre*p.set.Amplitude)
+			r.StrainRate = math.Max(r.StrainRate, perMetre*a)
 			r.StrainRateEnd = math.Max(r.StrainRateEnd, perMetre*p.set.Criterion*p.thickness)
 		}
 	}

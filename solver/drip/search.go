@@ -18,11 +18,12 @@ func Time(ctx context.Context, s *state.State, set Settings, o Options) (float64
 	const quick = 2e-3 // of the wavelength; a time is good to about the square of that
 	lowest, highest := p.solver.Range()
 	if o.From > 0 {
-		lowest = math.Max(lowest, o.From)
+		lowest = o.From
 	}
 	if o.To > 0 {
-		highest = math.Min(highest, o.To)
+		highest = o.To
 	}
+	lowest, highest = set.within(lowest, highest)
 	highest = math.Max(highest, 1.01*lowest)
 	limit := math.Inf(1)
 	if o.Limit > 0 {
@@ -35,7 +36,7 @@ func Time(ctx context.Context, s *state.State, set Settings, o Options) (float64
 			if err := p.curve(ctx, from, math.Max(to, 1.01*from), 4); err != nil {
 				return 0, err
 			}
-			best, err := p.best(set.Amplitude, limit, quick)
+			best, err := p.best(1, limit, quick)
 			if err != nil {
 				return 0, err
 			}
@@ -52,11 +53,11 @@ func Time(ctx context.Context, s *state.State, set Settings, o Options) (float64
 	if err := p.curve(ctx, lowest, highest, 10); err != nil {
 		return 0, err
 	}
-	best, err := p.best(set.Amplitude, limit, quick)
+	best, err := p.best(1, limit, quick)
 	return best.Time, err
 }
 
-// best returns the first drip from an amplitude a among wavelengths up to limit,
+// best returns the first drip from a times the amplitude among wavelengths up to limit,
 // refined to a relative width of its wavelength.
 func (p *problem) best(a, limit, width float64) (Fastest, error) {
 	best, at := Fastest{Time: math.Inf(1)}, -1

@@ -5,7 +5,7 @@ import (
 	"fmt"
 	"math"
 
-	"gonum.org/v1/gonum/mat"
+	"keelfall/column"
 )
 
 // Descent is how an undulation of the root's base grows under self-softening.
@@ -21,7 +21,11 @@ type Descent struct {
 	Best     float64
 	Exponent float64   // n weighted with dissipation, averaged over Time
 	At, Base []float64 // s, |ξ| of the root's base in m, at the steps taken
-	Steps    int
+	// Strain and Stress are the second invariants of the undulation's own strain rate,
+	// 1/s, and stress, Pa, at the root's base, each the largest along it, at the same steps.
+	Strain, Stress []float64
+	Steps          int
+	over           float64 // the undulation's strain rate over the background's, at the end
 	// Ended says why there is no Time though time went on: another interface has overturned
 	// first. Empty otherwise.
 	Ended string
@@ -29,7 +33,7 @@ type Descent struct {
 	Dropped bool
 }
 
-// Time is found by a commutator-free method of order 4 for dξ/dτ = A(ξ) ξ. With A exact in
+// Time is found by a commutator-free method of order 4 for dξ/dτ = A(ξ, t) ξ. With A exact in
 // each exponential, a surface that relaxes 1e7 times faster than the root grows costs no
 // steps. Source: Celledoni, Marthinsen & Owren 2003, Future Gener. Comput. Syst. 19,
 // 341 (from memory; against finer steps and closed forms it is tested).
@@ -61,127 +65,47 @@ func (f *Soft) Time(k, amplitude, stop, horizon float64) (Descent, error) {
 		return Descent{}, err
 	}
 	b.forget()
-	r := &softRun{soft: f, k: k, base: last + 1, xi: make([]float64, len(f.model.Layers)+1),
-		kh: k * f.state.Column.RootThickness()}
-	if b.flow.Interface[r.base] < 0 {
-		return Descent{}, errors.New("drip: the root's base cannot move: it lies on a wall")
+	if b.flow.Interface[last+1] < 0 {
+		return Descent{}, errWall
 	}
-	r.xi[r.base] = amplitude
-	return r.follow(stop, horizon)
+	m := &still{soft: f, k: k, kh: k * f.state.Column.RootThickness(), tip: stop}
+	r := newSoftRun(m, last+1, f.stepError, horizon)
+	r.y = make([]float64, len(f.model.Layers)+1)
+	r.y[r.base] = amplitude
+	r.d.Wavelength = 2 * math.Pi / k
+	why, err := r.follow()
+	if why == overturned {
+		r.d.Ended = overturn(f.state.Column, r.y)
+	}
+	return r.d, err
 }
 
-// softRun is one undulation on its way. It goes in steps not of time but of
-// τ = ∫ ρ dt, ρ = |dξ/dt|/|ξ|, in which nothing blows up.
-type softRun struct {
-	soft    *Soft
-	k, kh   float64
-	base    int
-	slowest float64 // ρ is at least that, 1/s
-	xi      []float64
+var errWall = errors.New("drip: the root's base cannot move: it lies on a wall")
+
+// still is a column that does not change.
+type still struct {
+	soft       *Soft
+	k, kh, tip float64
 }
 
-// system is dξ/dτ = A ξ at one ξ.
-type system struct {
-	a        *mat.Dense
-	pace     float64 // dt/dτ = 1/ρ, s
-	slope    float64 // d ln|ξ_base|/dτ
-	exponent float64 // of the dissipation
+func (m *still) flow(_ float64, y []float64) (flowing, error) { return m.soft.flowing(m.k, y) }
+func (m *still) unsettled(float64)                            { m.soft.again(m.k) }
+func (m *still) stop(float64) float64                         { return m.tip }
+func (m *still) depth(float64) float64                        { return m.soft.state.Column.Depth() }
+func (m *still) end(float64) (float64, error)                 { return math.Inf(1), nil }
+
+// share is what every stretch of the closure's time is multiplied with for the best
+// estimate.
+func (m *still) share(n float64) float64 {
+	if m.soft.background.second != 0 {
+		return 1
+	}
+	return Corrections(n, m.kh, 0).Centre
 }
 
-// matrix returns the system at displacements y.
-func (r *softRun) matrix(y []float64) (system, error) {
-	b, a, err := r.soft.system(r.k, y)
-	if err != nil {
-		return system{}, err
-	}
-	n := len(y)
-	m := mat.NewDense(n, n, nil)
-	states := 0
-	for _, i := range b.flow.Interface {
-		if i >= 0 {
-			states++
-		}
-	}
-	for i, p := range b.flow.Interface {
-		for j, q := range b.flow.Interface {
-			if p >= 0 && q >= 0 {
-				m.Set(i, j, a[p*states+q])
-			}
-		}
-	}
-	rate := make([]float64, n)
-	mat.NewVecDense(n, rate).MulVec(m, mat.NewVecDense(n, y))
-	rho := math.Max(r.slowest, math.Sqrt(dot(rate, rate)/dot(y, y)))
-	m.Scale(1/rho, m)
-	return system{m, 1 / rho, rate[r.base] / y[r.base] / rho, math.Max(1, b.n)}, nil
-}
-
-func (r *softRun) follow(stop, horizon float64) (Descent, error) {
-	d := Descent{Wavelength: 2 * math.Pi / r.k, Time: math.Inf(1), Best: math.Inf(1)}
-	r.slowest = 0.01 / horizon
-	y := r.xi
-	s, err := r.matrix(y)
-	if err != nil {
-		return d, err
-	}
-	var t, best, exponents float64
-	var tries int
-	d.At, d.Base = append(d.At, 0), append(d.Base, math.Abs(y[r.base]))
-	step := firstStep / mat.Norm(s.a, math.Inf(1))
-	for d.Steps = 1; d.Steps <= mostSoft; d.Steps++ {
-		if fast := mat.Norm(s.a, math.Inf(1)); !(step*fast < fastSpan) {
-			step = fastSpan / fast
-		}
-		next, dt, miss, err := r.step(s, y, step)
-		if err != nil {
-			if tries++; tries > mostTries {
-				return d, err
-			}
-			r.soft.again(r.k)
-			step /= 4
-			continue
-		}
-		if !(miss <= r.soft.stepError) {
-			step *= math.Max(0.2, 0.8*math.Cbrt(r.soft.stepError/miss))
-			continue
-		}
-		after, err := r.matrix(next)
-		if err != nil {
-			return d, err
-		}
-		ratio := 1.0
-		if r.soft.background.second == 0 {
-			ratio = Corrections(after.exponent, r.kh, 0).Centre
-		}
-		if math.Abs(next[r.base]) >= stop && next[r.base]*y[r.base] > 0 {
-			x := reach(math.Log(math.Abs(y[r.base])), math.Log(math.Abs(next[r.base])), math.Log(stop), step*s.slope, step*after.slope)
-			dt, _ = hermite(x, 0, dt, step*s.pace, step*after.pace)
-			if t+dt > horizon {
-				return d, nil
-			}
-			d.Time, d.Best = t+dt, best+dt*ratio
-			d.Exponent = (exponents + dt*after.exponent) / d.Time
-			d.At, d.Base = append(d.At, d.Time), append(d.Base, stop)
-			return d, nil
-		}
-		if t += dt; t >= horizon || math.Sqrt(dot(next, next)) < gone*d.Base[0] {
-			return d, nil
-		}
-		if d.Ended = r.overturned(next); d.Ended != "" {
-			return d, nil
-		}
-		best, exponents = best+dt*ratio, exponents+dt*after.exponent
-		d.At, d.Base = append(d.At, t), append(d.Base, math.Abs(next[r.base]))
-		s, y = after, next
-		step *= math.Min(6, 0.8*math.Cbrt(r.soft.stepError/math.Max(miss, 1e-9)))
-	}
-	return d, fmt.Errorf("drip: wavelength %g m: %d steps reach %g s and an amplitude of %g m, not %g m", d.Wavelength, mostSoft, t, math.Abs(y[r.base]), stop)
-}
-
-// overturned says in words which interface has moved by more than the column is deep,
+// overturn says in words which interface of a column has moved by more than it is deep,
 // where linear theory has long ended.
-func (r *softRun) overturned(y []float64) string {
-	c := r.soft.state.Column
+func overturn(c *column.Column, y []float64) string {
 	var z float64
 	for i, v := range y {
 		if math.Abs(v) > c.Depth() {
@@ -192,99 +116,4 @@ func (r *softRun) overturned(y []float64) string {
 		}
 	}
 	return ""
-}
-
-// step takes one step of τ from y, where the system is s1, and returns where it leads,
-// the time it takes, and the distance to where the exponential midpoint rule would lead,
-// relative and in τ.
-func (r *softRun) step(s1 system, y []float64, h float64) (next []float64, dt, miss float64, err error) {
-	far := math.Inf(1)
-	y2 := flowed(y, h, part{0.5, s1.a})
-	if !bounded(y2) {
-		return nil, 0, far, nil
-	}
-	s2, err := r.matrix(y2)
-	if err != nil {
-		return nil, 0, 0, err
-	}
-	y3 := flowed(y, h, part{0.5, s2.a})
-	if !bounded(y3) {
-		return nil, 0, far, nil
-	}
-	s3, err := r.matrix(y3)
-	if err != nil {
-		return nil, 0, 0, err
-	}
-	y4 := flowed(y2, h, part{1, s3.a}, part{-0.5, s1.a})
-	if !bounded(y4) {
-		return nil, 0, far, nil
-	}
-	s4, err := r.matrix(y4)
-	if err != nil {
-		return nil, 0, 0, err
-	}
-	half := flowed(y, h, part{3. / 12, s1.a}, part{2. / 12, s2.a}, part{2. / 12, s3.a}, part{-1. / 12, s4.a})
-	next = flowed(half, h, part{-1. / 12, s1.a}, part{2. / 12, s2.a}, part{2. / 12, s3.a}, part{3. / 12, s4.a})
-	if !bounded(next) {
-		return nil, 0, far, nil
-	}
-	dt = h / 6 * (s1.pace + 2*s2.pace + 2*s3.pace + s4.pace)
-	var size float64
-	for i, v := range flowed(y, h, part{1, s3.a}) {
-		size = math.Max(size, math.Abs(next[i]))
-		miss = math.Max(miss, math.Abs(next[i]-v))
-	}
-	miss /= size
-	return next, dt, math.Max(miss, h*math.Abs(1-h*s3.pace/dt)), nil
-}
-
-// bounded says whether displacements are ones that a column could have: a step that was
-// far too long can lead anywhere.
-func bounded(y []float64) bool {
-	for _, v := range y {
-		if !(math.Abs(v) < 1e9) {
-			return false
-		}
-	}
-	return true
-}
-
-// flowed returns exp(h Σ c A) y.
-func flowed(y []float64, h float64, parts ...part) []float64 {
-	n := len(y)
-	var sum, e mat.Dense
-	for i, p := range parts {
-		if i == 0 {
-			sum.Scale(h*p.c, p.a)
-			continue
-		}
-		var t mat.Dense
-		t.Scale(h*p.c, p.a)
-		sum.Add(&sum, &t)
-	}
-	e.Exp(&sum)
-	out := make([]float64, n)
-	mat.NewVecDense(n, out).MulVec(&e, mat.NewVecDense(n, y))
-	return out
-}
-
-// reach returns the share of a step at which the cubic through a and b with slopes p
-// and q is at v between a and b.
-func reach(a, b, v, p, q float64) float64 {
-	lo, hi := 0.0, 1.0
-	for range 60 {
-		mid := (lo + hi) / 2
-		if y, _ := hermite(mid, a, b, p, q); y < v {
-			lo = mid
-		} else {
-			hi = mid
-		}
-	}
-	return hi
-}
-
-// part is a multiple of a matrix.
-type part struct {
-	c float64
-	a *mat.Dense
 }

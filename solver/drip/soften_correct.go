@@ -61,6 +61,28 @@ func Corrections(n, kh, amplitude float64) Correction {
 	return c
 }
 
+// strainedCorrections are Corrections in a background: over is the undulation's strain
+// rate over the background's, +Inf without one. As over → 0 the closure is exact; at 1 it is
+// short by Shortfall, its worst (derived); without background the table holds. Between,
+// what is missing is a parabola in u = over²/(1 + over²) on either side of its worst, since
+// neither end feels the sign of the other's strain: an interpolation, checked by nothing. The tip's lead over the
+// cos kx part is taken to come in as u.
+func strainedCorrections(n, kh, amplitude, over float64) Correction {
+	c := Corrections(n, kh, amplitude)
+	if math.IsInf(over, 1) {
+		return c
+	}
+	u := over * over / (1 + over*over)
+	worst, bare, lead := Shortfall(n, true), 1-c.Closure, c.Closure/c.Centre-1
+	short := 4 * worst * u * (1 - u)
+	if u > 0.5 {
+		short += bare * (2*u - 1) * (2*u - 1)
+	}
+	c.Closure = 1 - short
+	c.Centre = c.Closure / (1 + lead*u)
+	return c
+}
+
 // Shortfall returns by how much, relative to the two-dimensional rate, the closure is too
 // slow at most at a stress exponent n: without background in the cos kx part of the
 // descent at kh = 1, the worst of the table; with one where its strain rate equals the

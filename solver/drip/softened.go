@@ -6,6 +6,8 @@ import (
 	"fmt"
 	"math"
 
+	"keelfall/column"
+	"keelfall/rheology"
 	"keelfall/solver/state"
 )
 
@@ -18,7 +20,35 @@ type SelfSoftened struct {
 	BestHigh   float64
 	Exponent   float64 // n weighted with dissipation, averaged over the time
 	Correction Correction
-	Failed     int // wavelengths whose viscosities did not settle, and which are left out
+	// Strained says that a background strains the column: the correction is then
+	// interpolated between what is known of a background alone, of equal strain rates and
+	// of none. Correction is that at the drip.
+	Strained bool
+	Failed   int // wavelengths whose viscosities did not settle, and which are left out
+}
+
+// Newtonian says whether a rock's viscosity does not depend on strain rate at all: nothing
+// softens it, exactly.
+func Newtonian(r *column.Rock) bool {
+	c := r.Viscosity.Creep
+	if c == nil {
+		return r.Viscosity.Exponent == 1
+	}
+	linear := r.Friction == nil && r.Piezometer == nil && len(c.Mixtures) == 0
+	for i := range c.Laws {
+		linear = linear && c.Laws[i].N == 1 && c.Laws[i].Peierls == rheology.Peierls{}
+	}
+	return linear
+}
+
+// newtonian says so of a whole column.
+func newtonian(s *state.State) bool {
+	c := s.Column
+	all := c.Base.Boundary != column.HalfSpace || Newtonian(&c.Base.Rock)
+	for i := range c.Layers {
+		all = all && Newtonian(&c.Layers[i].Rock)
+	}
+	return all
 }
 
 // softMargin is how many times longer than the quickest so far an undulation is followed:
@@ -27,7 +57,7 @@ const softMargin = 1.3
 
 // softened is r, or what the closure makes of it where it is asked for.
 func (p *problem) softened(ctx context.Context, s *state.State, set Settings, o Options, r *Result) (*Result, error) {
-	if set.Softening != "self" {
+	if set.Softening != "self" || newtonian(s) {
 		return r, nil
 	}
 	return r, p.soften(ctx, s, set, o, r)
@@ -45,7 +75,8 @@ func (p *problem) soften(ctx context.Context, s *state.State, set Settings, o Op
 	if o.Limit > 0 {
 		limit = o.Limit
 	}
-	best, err := run.search(ctx, from, math.Min(to, math.Max(limit, from)), 6)
+	from, to = set.within(from, math.Min(to, math.Max(limit, from)))
+	best, err := run.search(ctx, from, to, 6)
 	if err != nil {
 		return err
 	}
@@ -53,7 +84,7 @@ func (p *problem) soften(ctx context.Context, s *state.State, set Settings, o Op
 	r.Time, r.TimeLow, r.TimeHigh = math.Inf(1), math.Inf(1), math.Inf(1)
 	r.Mode, r.StrainRate, r.StrainRateEnd, r.Rate = nil, 0, 0, 0 // of viscosities at one strain rate
 	r.Excluded, r.Unrestricted = "", Fastest{Time: math.Inf(1)}
-	r.Curve, r.History = Curve{}, Amplitude{}
+	r.Curve, r.History, r.Traces, r.First = Curve{}, Amplitude{}, nil, Trace{}
 	for _, d := range run.list {
 		r.Curve.Wavelength = append(r.Curve.Wavelength, d.Wavelength)
 		r.Curve.Time = append(r.Curve.Time, run.best(d)) // other amplitudes are not followed
@@ -74,12 +105,12 @@ func (p *problem) soften(ctx context.Context, s *state.State, set Settings, o Op
 	r.Time, r.Wavelength, r.InitialWavelength = r.Soft.Best, best.Wavelength, best.Wavelength
 	for i, a := range []float64{3, 1.0 / 3} {
 		t := 0.0 // three times the undulation may be the drip itself
-		if a*set.Amplitude < run.stop {
-			d, err := f.Time(2*math.Pi/best.Wavelength, a*set.Amplitude, run.stop, Horizon)
+		if from := a * set.AmplitudeAt(best.Wavelength); from < run.stop {
+			d, err := f.Time(2*math.Pi/best.Wavelength, from, run.stop, Horizon)
 			if err != nil {
 				return err
 			}
-			t = d.Best * Corrections(d.Exponent, 2*math.Pi/best.Wavelength*p.thickness, a*set.Amplitude/p.thickness).Finite
+			t = d.Best * Corrections(d.Exponent, 2*math.Pi/best.Wavelength*p.thickness, from/p.thickness).Finite
 		}
 		if i == 0 {
 			r.TimeLow = t
@@ -95,6 +126,7 @@ func (p *problem) soften(ctx context.Context, s *state.State, set Settings, o Op
 	for _, t := range best.At { // so that it ends at the best estimate
 		r.History.Time = append(r.History.Time, t*r.Soft.Best/r.Soft.Slow)
 	}
+	r.Traces, r.First = run.traces(r.Soft.Best/r.Soft.Slow), run.trace(best, r.Soft.Best/r.Soft.Slow)
 	r.SpacingFrom, r.SpacingTo = best.Wavelength, best.Wavelength
 	for _, d := range run.list {
 		if run.best(d) <= 1.1*r.Time {
@@ -127,6 +159,7 @@ func SoftenedTime(ctx context.Context, s *state.State, set Settings, o Options) 
 	if o.Limit > 0 {
 		to = math.Min(to, math.Max(o.Limit, from))
 	}
+	from, to = set.within(from, to)
 	perOctave := 4
 	if near := o.Near; near > 0 {
 		from, to = math.Max(from, near/1.5), math.Min(to, near*1.5)
@@ -154,7 +187,7 @@ type softSearch struct {
 
 // correction is that of a descent.
 func (q *softSearch) correction(d Descent) Correction {
-	return Corrections(d.Exponent, 2*math.Pi/d.Wavelength*q.depth, q.set.Amplitude/q.depth)
+	return Corrections(d.Exponent, 2*math.Pi/d.Wavelength*q.depth, q.set.AmplitudeAt(d.Wavelength)/q.depth)
 }
 
 // best is the best estimate of a descent's time, s.
@@ -203,7 +236,11 @@ func (q *softSearch) search(ctx context.Context, from, to float64, perOctave int
 // follow follows one wavelength; what does not settle is left out and counted.
 func (q *softSearch) follow(ctx context.Context, wavelength, quickest float64) (Descent, error) {
 	limit := math.Min(Horizon, softMargin*quickest)
-	d, err := q.soft.Time(2*math.Pi/wavelength, q.set.Amplitude, q.stop, limit)
+	from := q.set.Start(wavelength, q.stop)
+	if from == 0 { // no undulation
+		return Descent{Wavelength: wavelength, Time: math.Inf(1), Best: math.Inf(1)}, ctx.Err()
+	}
+	d, err := q.soft.Time(2*math.Pi/wavelength, from, q.stop, limit)
 	if err := ctx.Err(); err != nil {
 		return d, err
 	}

@@ -26,11 +26,12 @@ type through struct {
 	tape   *tape
 	course *course
 	grid   *group
+	traced bool // the grid's followers keep traces
 }
 
 // Through returns when the root of a column that changes with time drips, and again
-// after that, to the end of the window. Nothing is followed beyond it: Time and the
-// curve's times are +Inf where nothing drips before. An undulation of the first
+// after that, to the end of the window. Where nothing drips in it, the first drip is looked
+// for up to twice the window: Time and the curve's times are +Inf where none comes. An undulation of the first
 // amplitude begins at time 0 on the root's base, all other interfaces flat, and anew
 // after every drip; a drip takes set.Removes of the root's mass then, from its base.
 //
@@ -40,16 +41,25 @@ type through struct {
 // fourth order. Options.Limit is held against the wavelength at the drip. Curve and
 // spacing have the wavelengths at the start.
 func Through(ctx context.Context, p Plan, set Settings, o Options) (*Result, error) {
+	if set.Softening == "self" {
+		return throughSoft(ctx, p, set, o)
+	}
 	d, err := newThrough(ctx, p, set, o)
 	if err != nil {
 		return nil, err
 	}
 	r := &Result{Outcome: "window", Time: math.Inf(1), TimeLow: math.Inf(1), TimeHigh: math.Inf(1), Unrestricted: Fastest{Time: math.Inf(1)}}
 	from, to := d.span()
+	d.traced = true
 	if err := d.follow(ctx, from, to, 10, -1); err != nil {
 		return nil, err
 	}
+	d.traced = false
+	if err := d.beyond(ctx); err != nil {
+		return nil, err
+	}
 	for _, f := range d.grid.list {
+		r.Traces = append(r.Traces, d.traceOf(f))
 		r.Curve.Wavelength = append(r.Curve.Wavelength, f.first)
 		r.Curve.Low = append(r.Curve.Low, f.times[0])
 		r.Curve.Time = append(r.Curve.Time, f.times[1])
@@ -64,10 +74,24 @@ func Through(ctx context.Context, p Plan, set Settings, o Options) (*Result, err
 	return r, d.drips(ctx, r)
 }
 
-// ThroughTime returns only the first drip's time in s, +Inf where none comes before the
-// window ends: a quicker Through for searches. With o.Near only wavelengths within a
+// beyond goes on to twice the window where nothing within the limit has dripped in it.
+func (d *through) beyond(ctx context.Context) error {
+	for _, f := range d.grid.list {
+		if t := f.times[1]; !math.IsInf(t, 1) && f.first*d.stretched(t) <= d.limit() {
+			return nil
+		}
+	}
+	d.grid.stopAt = 1
+	return d.to(ctx, 2*d.set.Window)
+}
+
+// ThroughTime returns only the first drip's time in s, +Inf where none comes in twice the
+// window: a quicker Through for searches. With o.Near only wavelengths within a
 // factor of two of that are looked at.
 func ThroughTime(ctx context.Context, p Plan, set Settings, o Options) (float64, error) {
+	if set.Softening == "self" {
+		return throughSoftTime(ctx, p, set, o)
+	}
 	d, err := newThrough(ctx, p, set, o)
 	if err != nil {
 		return 0, err
@@ -78,6 +102,9 @@ func ThroughTime(ctx context.Context, p Plan, set Settings, o Options) (float64,
 		from, to = math.Max(from, near/2), math.Min(to, near*2)
 	}
 	if err := d.follow(ctx, from, math.Max(to, 1.01*from), 4, 1); err != nil {
+		return 0, err
+	}
+	if err := d.beyond(ctx); err != nil {
 		return 0, err
 	}
 	best, err := d.best(ctx, 1, d.limit(), 2e-2)
@@ -117,6 +144,7 @@ func (d *through) span() (from, to float64) {
 	if d.o.To > 0 {
 		to = d.o.To
 	}
+	from, to = d.set.within(from, to)
 	return from, math.Max(to, 1.01*from)
 }
 
@@ -140,13 +168,19 @@ func (d *through) follow(ctx context.Context, from, to float64, perOctave, stopA
 		return err
 	}
 	d.grid.stopAt, d.grid.limit = stopAt, d.limit()
-	return d.toEnd(ctx)
+	for _, f := range d.grid.list {
+		if d.traced && f.size > 0 {
+			f.trace, f.every = &Trace{}, traceSpan*d.course.span
+			f.note(d.grid, d.course.first, 0)
+		}
+	}
+	return d.to(ctx, d.set.Window)
 }
 
-// toEnd extends the course until the grid is done or the window ends.
-func (d *through) toEnd(ctx context.Context) error {
-	for d.course.last().t < d.set.Window*(1-1e-12) && !d.grid.finished() {
-		if err := d.course.extend(ctx, d.grid, d.set.Window); err == errRootGone {
+// to extends the course until the grid is done or a time in s is reached.
+func (d *through) to(ctx context.Context, end float64) error {
+	for d.course.last().t < end*(1-1e-12) && !d.grid.finished() {
+		if err := d.course.extend(ctx, d.grid, end); err == errRootGone {
 			break
 		} else if err != nil {
 			return err
@@ -182,20 +216,22 @@ func (d *through) answer(ctx context.Context, r *Result) error {
 	if contrast <= 0 {
 		r.Reason += " at the start, and becomes denser or is carried down by denser rock above"
 	}
+	if r.Time > d.set.Window {
+		r.Outcome, r.Reason = "window", "it would drip, but only after the window has closed"
+	}
 	r.InitialWavelength, r.Wavelength = best[1].Wavelength, best[1].Wavelength*d.stretched(r.Time)
 	if d.o.Limit > 0 && r.Unrestricted.Time < 0.99*r.Time {
-		r.Excluded = fmt.Sprintf("wavelengths beyond %s, were computed and not used; the first of them to drip is %.3g km", d.o.LimitIs, r.Unrestricted.Wavelength/1e3)
+		r.Excluded = fmt.Sprintf("wavelengths beyond %s, were computed and not used; the first of them to drip is %.4g km", d.o.LimitIs, r.Unrestricted.Wavelength/1e3)
 	}
 	r.SpacingFrom, r.SpacingTo = d.spacing(r.Time, r.InitialWavelength)
 	f, err := d.one(ctx, r.InitialWavelength, 1, true)
 	if err != nil {
 		return err
 	}
-	for i, t := range f.trace.Time {
-		if t < r.Time {
-			r.History.Time, r.History.Base = append(r.History.Time, t), append(r.History.Base, f.trace.Base[i])
-		}
+	if r.First, err = d.firstTrace(f); err != nil {
+		return err
 	}
+	r.History.Time, r.History.Base = r.First.Time, r.First.Base
 	return nil
 }
 
@@ -211,11 +247,11 @@ func (d *through) never(contrast float64, free Fastest) (outcome, reason string)
 	case d.course.last().lay.rootBase < 0:
 		return "window", "the root was gone before it could drip"
 	case !math.IsInf(free.Time, 1):
-		return "window", fmt.Sprintf("no wavelength within %s, drips, though one of %.3g km would", d.o.LimitIs, free.Wavelength/1e3)
+		return "window", fmt.Sprintf("no wavelength within %s, drips, though one of %.4g km would", d.o.LimitIs, free.Wavelength/1e3)
 	case !denser:
 		return "buoyant", "does not drip: the root is " + Weigh(contrast) + ", and never becomes denser"
 	}
-	return "window", "does not drip before the window ends, though the root is or becomes denser than what lies below it"
+	return "window", "does not drip within twice the window, though the root is or becomes denser than what lies below it"
 }
 
 // at winds the course back to time t and returns the column there.
@@ -238,7 +274,7 @@ func (d *through) at(ctx context.Context, t float64) (*node, error) {
 	if err != nil {
 		return nil, err
 	}
-	return n, d.course.refine(n)
+	return n, d.course.refine(n, nil, true)
 }
 
 // mode adds the leading mode and the strain rates of the first drip, in the column then.
@@ -256,7 +292,7 @@ func (d *through) mode(n *node, r *Result) error {
 		for i, l := range root {
 			if l.Root {
 				perMetre := r.Mode.StrainRate[i] / size
-				r.StrainRate = math.Max(r.StrainRate, perMetre*d.set.Amplitude)
+				r.StrainRate = math.Max(r.StrainRate, perMetre*d.set.AmplitudeAt(r.InitialWavelength))
 				r.StrainRateEnd = math.Max(r.StrainRateEnd, perMetre*d.set.Criterion*n.root)
 			}
 		}

@@ -121,7 +121,7 @@ func followed(t testing.TB, p Plan, set Settings, list []float64, halve *course)
 	if d.grid, err = newGroup(d.course, set, list, 0); err != nil {
 		t.Fatal(err)
 	}
-	if err := d.toEnd(ctx); err != nil {
+	if err := d.to(ctx, d.set.Window); err != nil {
 		t.Fatal(err)
 	}
 	return d
@@ -267,7 +267,7 @@ func BenchmarkCourse(b *testing.B) {
 		if d.grid, err = newGroup(d.course, set, list, 1); err != nil {
 			b.Fatal(err)
 		}
-		if err := d.toEnd(ctx); err != nil {
+		if err := d.to(ctx, d.set.Window); err != nil {
 			b.Fatal(err)
 		}
 		b.ReportMetric(float64(len(d.course.legs)), "legs")

@@ -22,6 +22,12 @@ type Layer struct {
 	// Gradient returns the compositional density gradient ρ_c in kg/m⁴ at depth z;
 	// nil where composition is uniform.
 	Gradient func(z float64) float64
+	// For Template. Breaks are depths in m, increasing, where the gradient's slope jumps.
+	// Place says by a number, increasing with depth, which rock is at a depth, and Where at
+	// which depth that rock is; nil: the share of the thickness that lies above. Rock beyond
+	// the parts, come since, moves with the edge it came to.
+	Breaks       []float64
+	Place, Where func(float64) float64
 	// HeatGradient says that Gradient is mostly that of temperature, carried without
 	// diffusion: for the names of modes and the budget.
 	HeatGradient bool

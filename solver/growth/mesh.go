@@ -65,6 +65,15 @@ func (g *segment) swing(a, b float64) float64 {
 	return s * (b - a)
 }
 
+// variation is the sum of all changes of ln η, up and down.
+func (g *segment) variation() float64 {
+	var s float64
+	for _, x := range g.slope {
+		s += x
+	}
+	return s * (g.bottom - g.top) / slopeParts
+}
+
 // divide fills m with a mesh for the band [low, high].
 func (s *Solver) divide(m *mesh, low, high float64, r rule) {
 	m.low, m.high = low, high

@@ -149,37 +149,43 @@ type coupling struct {
 	what []int     // of each displacement: its interface, or −1 − layer of a gradient
 }
 
+// add adds a displacement.
+func (c *coupling) add(what int, ez float64, load, rate []entry) {
+	c.load, c.rate = append(c.load, load), append(c.rate, rate)
+	c.ez, c.what = append(c.ez, ez), append(c.what, what)
+	c.n++
+}
+
+// enter adds interface i, where it is a state.
+func (s *Solver) enter(c *coupling, i int, k float64, p *ports) {
+	at := p.contact[i]
+	if at < 0 {
+		return
+	}
+	f := s.forces[i]
+	load := []entry{{at, f.buoyancy}}
+	if s.c.ShearRate != 0 {
+		load = append(load, entry{at + 1, f.viscous * k})
+	}
+	c.add(i, s.c.VerticalStrain, load, []entry{{at, 1}})
+}
+
 // couple lays out the states of a mesh: interfaces and, inside layers with a density
 // gradient, displacements at Gauss points, in the order of the ports; then the
 // coefficients of the temperature perturbation.
 func (s *Solver) couple(m *mesh, k float64, p *ports) *coupling {
 	c := &coupling{}
-	add := func(what int, load, rate []entry) {
-		c.load, c.rate = append(c.load, load), append(c.rate, rate)
-		c.ez, c.what = append(c.ez, s.c.VerticalStrain), append(c.what, what)
-		c.n++
-	}
-	contact := func(i int) {
-		if at := p.contact[i]; at >= 0 {
-			f := s.forces[i]
-			load := []entry{{at, f.buoyancy}}
-			if s.c.ShearRate != 0 {
-				load = append(load, entry{at + 1, f.viscous * k})
-			}
-			add(i, load, []entry{{at, 1}})
-		}
-	}
-	contact(0)
+	s.enter(c, 0, k, p)
 	for i := range m.elems {
 		e := &m.elems[i]
 		if e.gradient != nil {
 			for q, g := range e.gradient {
 				at := p.element[i] + q
-				add(-1-e.layer, []entry{{at, -s.c.Gravity * g}}, []entry{{at, 1}})
+				c.add(-1-e.layer, s.c.VerticalStrain, []entry{{at, -s.c.Gravity * g}}, []entry{{at, 1}})
 			}
 		}
 		if e.last {
-			contact(e.layer + 1)
+			s.enter(c, e.layer+1, k, p)
 		}
 	}
 	c.heat = c.n
@@ -194,6 +200,12 @@ func (s *Solver) assembleFields(m *mesh, k float64) {
 	p := s.layout(m)
 	s.comply(m, k, p)
 	c := s.couple(m, k, p)
+	s.evolve(c, p)
+	m.states = c.n
+}
+
+// evolve fills A from G and what couples the states to it.
+func (s *Solver) evolve(c *coupling, p *ports) {
 	s.grow(c.n)
 	n := c.n
 	a := s.a[:n*n]
@@ -223,5 +235,4 @@ func (s *Solver) assembleFields(m *mesh, k float64) {
 	if c.mass != nil {
 		c.mass.solve(a[c.heat*n:], n)
 	}
-	m.states = n
 }

@@ -4,16 +4,18 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 )
 
 // Template gives the evolution matrix of one column at many wavelengths, with states
 // that are the same in another column of the same layers: every movable interface and,
-// in a layer with parts, the displacements at the Gauss points of so many elements of
-// equal thickness. A history of a column that changes can therefore be carried from
-// one to the next. One goroutine at a time.
+// in a layer with a gradient, the displacements at the Gauss points of parts of its rock,
+// whatever the mesh of the flow. The ends of the parts are on the scale of Layer.Place. A history of a column that changes can
+// therefore be carried from one to the next. One goroutine at a time.
 type Template struct {
 	t     *Solver
-	parts []int
+	grade []*grading // of each layer; nil without a gradient
+	inner interior   // of the mesh there is
 }
 
 // NewTemplate checks c and prepares it to a relative tolerance tol (DefaultTolerance
@@ -22,7 +24,19 @@ func NewTemplate(c *Column, tol float64) (*Template, error) {
 	if c.Diffusion != nil {
 		return nil, errors.New("growth: a template with diffusing temperature is not offered")
 	}
-	s, err := NewSolver(c, tol)
+	own := *c
+	own.Layers = slices.Clone(c.Layers)
+	p := &Template{grade: make([]*grading, len(c.Layers))}
+	var top float64
+	for i := range own.Layers {
+		l := &own.Layers[i]
+		if l.Gradient != nil {
+			p.grade[i] = newGrading(l, top, c.Gravity)
+			l.Gradient = func(float64) float64 { return 0 } // the mesh need not ask
+		}
+		top += l.Thickness
+	}
+	s, err := NewSolver(&own, tol)
 	if err != nil {
 		return nil, err
 	}
@@ -32,12 +46,18 @@ func NewTemplate(c *Column, tol float64) (*Template, error) {
 			s.interfaces++
 		}
 	}
-	return &Template{t: s, parts: make([]int, len(c.Layers))}, nil
+	p.t = s
+	for i, g := range p.grade {
+		if g != nil && !finite(g.total()) {
+			return nil, fmt.Errorf("growth: layer %d: a density gradient is not finite", i)
+		}
+	}
+	return p, nil
 }
 
 // Twin returns a template of the same column with storage of its own, until Release.
 func (p *Template) Twin() *Template {
-	return &Template{t: p.t.twin(), parts: make([]int, len(p.parts))}
+	return &Template{t: p.t.twin(), grade: p.grade}
 }
 
 // Release gives a twin's storage to the next one; the twin is finished.
@@ -46,72 +66,76 @@ func (p *Template) Release() { p.t.release() }
 // Range is that of Solver.
 func (p *Template) Range() (from, to float64) { return p.t.Range() }
 
-// Parts returns how many equal elements each layer with a gradient needs at a
-// wavelength in m, 0 for other layers: the mesh rule with twice its margin, for what
-// the column may still become.
+// mostParts is how many parts a layer may have.
+const mostParts = 12
+
+// Parts returns how many equal parts each layer with a gradient needs at a wavelength in
+// m, 0 for other layers: displacements follow the flow, and that the viscosity, whose
+// ln may change by heatSwing. There is a margin of a half for what the column may still
+// become.
 func (p *Template) Parts(wavelength float64) []int {
-	k, n := 2*math.Pi/wavelength, make([]int, len(p.parts))
-	for i := range p.t.c.Layers {
-		if p.t.c.Layers[i].Gradient == nil {
+	k, n := 2*math.Pi/wavelength, make([]int, len(p.grade))
+	for i := range p.grade {
+		if p.grade[i] == nil {
 			continue
 		}
 		var swing float64
 		for j := range p.t.segments {
 			if g := &p.t.segments[j]; g.layer == i {
-				swing = math.Max(swing, g.swing(g.top, g.bottom)/(g.bottom-g.top))
+				swing += g.variation()
 			}
 		}
-		h := p.t.c.Layers[i].Thickness
-		n[i] = min(max(1, int(math.Ceil(2*(swing+k)*h/p.t.rule.span))), 12)
+		n[i] = min(max(2, int(math.Ceil(1.5*(k*p.t.c.Layers[i].Thickness/p.t.rule.span+swing/heatSwing)))), mostParts)
 	}
 	return n
 }
 
-// States returns the number of states with so many parts in each layer.
-func (p *Template) States(parts []int) int {
-	n := p.t.interfaces
-	for i, l := range p.t.c.Layers {
-		if l.Gradient != nil {
-			n += stages * parts[i]
-		}
-	}
-	return n
-}
+// PartNodes returns where in a part its states are, from 0 at its top to 1, and their
+// weights in the mean over the part: those of Gauss.
+func PartNodes() (at, weights []float64) { return slices.Clone(nodeC[:]), slices.Clone(nodeB[:]) }
 
-// Movable says whether the surface and the base of the column can move: whether they
-// are states.
-func (p *Template) Movable() (surface, base bool) {
-	return p.t.movable(0), p.t.movable(len(p.t.c.Layers))
-}
+// AcrossPart fills v with the weights that the states of a part have in the displacement
+// at x, 0 at its top and 1 at its base: Lagrange's polynomials, also beyond.
+func AcrossPart(x float64, v *[stages]float64) { lagrange(x, v) }
 
 // Matrix returns A of dy/dt = A y at a wavelength in m, row-major, valid until the next
-// call. States run from the surface down; a layer with a gradient and n parts has 8 n
-// between its two interfaces. Wavelengths asked in order share meshes.
-func (p *Template) Matrix(wavelength float64, parts []int) (a []float64, n int, err error) {
+// call; parts are the ends of each layer's, increasing, nil without a gradient. States run
+// from the surface down; a layer of n parts has 8 n between its two interfaces.
+// Wavelengths asked in order share meshes.
+//
+// The force of a gradient is that of the polynomials through a part's states, times the
+// gradient as it is, however rough: its integral is not left to the Gauss points.
+func (p *Template) Matrix(wavelength float64, parts [][]float64) (a []float64, n int, err error) {
 	if !positive(wavelength) {
 		return nil, 0, fmt.Errorf("%w: %g m", ErrWavelength, wavelength)
 	}
-	if len(parts) != len(p.parts) {
-		return nil, 0, fmt.Errorf("growth: parts of %d layers, the column has %d", len(parts), len(p.parts))
+	if len(parts) != len(p.grade) {
+		return nil, 0, fmt.Errorf("growth: parts of %d layers, the column has %d", len(parts), len(p.grade))
+	}
+	for i, q := range parts {
+		if p.grade[i] != nil && len(q) < 2 {
+			return nil, 0, fmt.Errorf("growth: layer %d has a gradient and no parts", i)
+		}
 	}
 	t, k := p.t, 2*math.Pi/wavelength
-	same := k >= t.mesh.low && k <= t.mesh.high
-	for i, q := range parts {
-		if t.c.Layers[i].Gradient == nil {
-			continue
-		}
-		if q < 1 {
-			return nil, 0, fmt.Errorf("growth: layer %d has a gradient and %d parts", i, q)
-		}
-		same = same && q == p.parts[i]
-	}
-	if !same {
+	if fresh := !(k >= t.mesh.low && k <= t.mesh.high); fresh {
 		low, high := t.bandOf(k)
-		copy(p.parts, parts)
-		p.divide(low, high)
+		t.divide(&t.mesh, low, high, t.rule)
 		t.room(&t.mesh)
+		p.inner.parts = nil
 	}
-	t.assemble(&t.mesh, k)
+	if !t.fields {
+		t.assemble(&t.mesh, k)
+	} else {
+		at := t.layout(&t.mesh)
+		if !slices.EqualFunc(p.inner.parts, parts, slices.Equal[[]float64]) {
+			p.interior(at, parts)
+		}
+		t.comply(&t.mesh, k, at)
+		c := p.couple(k, at)
+		t.evolve(c, at)
+		t.mesh.states = c.n
+	}
 	n = t.mesh.states
 	a = t.a[:n*n]
 	for _, v := range a {
@@ -120,35 +144,4 @@ func (p *Template) Matrix(wavelength float64, parts []int) (a []float64, n int, 
 		}
 	}
 	return a, n, nil
-}
-
-// divide meshes the column for a band: layers with a gradient in equal parts, the
-// others by the mesh rule.
-func (p *Template) divide(low, high float64) {
-	t := p.t
-	m := &t.mesh
-	m.low, m.high = low, high
-	m.spare, m.elems = m.elems, m.spare[:0]
-	m.old = 0
-	m.states = t.interfaces
-	for j := range t.segments {
-		g := &t.segments[j]
-		i := g.layer
-		if t.c.Layers[i].Gradient == nil {
-			t.split(m, g, g.top, g.bottom, t.rule)
-		} else if g.lower {
-			top, h := t.depths[i], t.c.Layers[i].Thickness
-			for q := range p.parts[i] {
-				a, b := top+h*float64(q)/float64(p.parts[i]), top+h*float64(q+1)/float64(p.parts[i])
-				if q == p.parts[i]-1 {
-					b = t.depths[i+1]
-				}
-				t.add(m, i, a, b)
-				m.states += stages
-			}
-		}
-		if g.lower {
-			m.elems[len(m.elems)-1].last = true
-		}
-	}
 }

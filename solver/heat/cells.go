@@ -21,6 +21,7 @@ type stratum struct {
 	melt   *column.Melt     // where its fraction follows T and P
 	latent float64          // J/kg; 0 without melt
 	lo, hi int
+	worn   float64 // mass that has gone from its top, less what came there, kg per m² of the present area
 	born   float64 // thickness in m of its relative depths, to which its heat production belongs
 }
 

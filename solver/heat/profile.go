@@ -16,6 +16,7 @@ type Layer struct {
 	Top, Bottom float64 // m
 	Nodes       []Node
 	Kinks       []float64 // depths inside the layer where a given geotherm's slope jumps, m
+	Worn        float64   // of Evolution: mass that has gone from its top, less what came there, kg per m² of the present area
 	spans       []span
 }
 

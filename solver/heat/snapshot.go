@@ -61,7 +61,7 @@ func (ev *Evolution) Snapshot() (*column.Column, *Profile, error) {
 func (ev *Evolution) curves(j int, top, P float64) Layer {
 	s := &ev.strata[j]
 	n := s.hi - s.lo
-	l := Layer{Top: top, Nodes: make([]Node, n+2)}
+	l := Layer{Top: top, Nodes: make([]Node, n+2), Worn: s.worn}
 	slope := make([]float64, n+2)
 	gradient := make([]float64, n+2)
 	z := top

@@ -241,6 +241,9 @@ func (ev *Evolution) accept(h float64) {
 	ev.follow(h)
 	for k := range ev.streams {
 		f := &ev.streams[k]
+		if f.top {
+			ev.strata[ev.cells[f.cell].layer].worn -= f.came
+		}
 		if f.mass > 0 {
 			c := &ev.cells[f.cell]
 			share := f.came / (c.m + f.came)
@@ -248,6 +251,9 @@ func (ev *Evolution) accept(h float64) {
 			c.X += share * (f.X - c.X)
 			c.x += share * (f.x - c.x)
 		}
+	}
+	for j := range ev.strata {
+		ev.strata[j].worn /= two.area
 	}
 	ev.t += h
 	ev.steps++

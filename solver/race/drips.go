@@ -23,24 +23,37 @@ func Drip(ctx context.Context, p *Problem, s *state.State) (*drip.Result, error)
 		return nil, err
 	}
 	if !p.Moving() {
-		r, err := drip.Solve(ctx, s, p.Drip, p.dripOptions())
-		if errors.Is(err, drip.ErrGraded) {
-			return nil, fmt.Errorf("%w: drip.softening: %w", ErrInput, err)
-		}
-		return r, err
+		r, err := drip.Solve(ctx, s, p.dripSettings(), p.dripOptions())
+		return r, asInput(err)
 	}
 	plan, err := p.dripPlan()
 	if err != nil {
 		return nil, err
 	}
-	r, err := drip.Through(ctx, plan, p.Drip, p.dripOptions())
-	if errors.Is(err, drip.ErrGrades) {
-		return nil, fmt.Errorf("%w: %w; keelfall history, spectrum and mode take it", ErrInput, err)
-	}
+	r, err := drip.Through(ctx, plan, p.dripSettings(), p.dripOptions())
+	err = asInput(err)
 	if err == nil && r.Mode != nil && len(r.Mode.DissipationShare) != len(p.Column.Layers)+1 {
 		r.Mode = nil // of layers that are not those of the start
 	}
 	return r, err
+}
+
+// asInput marks a column that the closure does not take as a mistake of the experiment.
+func asInput(err error) error {
+	if errors.Is(err, drip.ErrGraded) {
+		return fmt.Errorf("%w: %w; set drip.softening to none", ErrInput, err)
+	}
+	return err
+}
+
+// dripSettings are p.Drip, without softening where no rock can be softened: the closure
+// would find the same viscosities.
+func (p *Problem) dripSettings() drip.Settings {
+	set := p.Drip
+	if !p.softens() {
+		set.Softening = "none"
+	}
+	return set
 }
 
 // dripTime returns the drip time of a prepared column alone; near, where not 0, is a
@@ -50,15 +63,15 @@ func (p *Problem) dripTime(ctx context.Context, s *state.State, near float64) (f
 	o.Near = near
 	switch {
 	case !p.Moving() && p.softens():
-		return drip.SoftenedTime(ctx, s, p.Drip, o)
+		return drip.SoftenedTime(ctx, s, p.dripSettings(), o)
 	case !p.Moving():
-		return drip.Time(ctx, s, p.Drip, o)
+		return drip.Time(ctx, s, p.dripSettings(), o)
 	}
 	plan, err := p.dripPlan()
 	if err != nil {
 		return 0, err
 	}
-	return drip.ThroughTime(ctx, plan, p.Drip, o)
+	return drip.ThroughTime(ctx, plan, p.dripSettings(), o)
 }
 
 // dripPlan is the column through time as package drip follows it.
@@ -87,9 +100,6 @@ func (p *Problem) dripPlan() (drip.Plan, error) {
 // canDrip refuses what no drip can be asked of: no root, a root on a wall, an
 // undulation that already is the drip.
 func (p *Problem) canDrip() error {
-	if p.softens() && p.Moving() {
-		return fmt.Errorf("%w: drip.softening: self in a column that changes with time (events, a strain, a reaction) is not in this version of keelfall; set it to none", ErrInput)
-	}
 	_, last, ok := p.Column.RootSpan()
 	if !ok {
 		return fmt.Errorf("%w: %w", ErrInput, drip.ErrNoRoot)
@@ -97,8 +107,8 @@ func (p *Problem) canDrip() error {
 	if last == len(p.Column.Layers)-1 && p.immovable() {
 		return fmt.Errorf("%w: the root lies on a wall that cannot move; give it a half-space or inviscid base, or a layer below", ErrInput)
 	}
-	if tip := p.Drip.Criterion * p.Column.RootThickness(); p.Drip.Amplitude >= tip {
-		return fmt.Errorf("%w: an undulation of %.4g m already is the drip: %g × the root's thickness is %.4g m", ErrInput, p.Drip.Amplitude, p.Drip.Criterion, tip)
+	if tip := p.Drip.Criterion * p.Column.RootThickness(); p.Drip.Dripped(tip) {
+		return fmt.Errorf("%w: an undulation of %.4g m already is the drip: %g × the root's thickness is %.4g m", ErrInput, p.Drip.Least(), p.Drip.Criterion, tip)
 	}
 	return nil
 }

@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"keelfall/column"
+	"keelfall/solver/drip"
 )
 
 // peeling looks for the weakest rock above the root.
@@ -41,7 +42,7 @@ func (p *Problem) limits(peel Peeling) []string {
 		"linear theory carried to a full drip: about 10 % slow for Newtonian rock beside two-dimensional solutions (ratio 0.89 to 0.93, derived)",
 	}
 	if p.Moving() {
-		l = append(l, "heat, reaction, strain and events go on while the root drips; nothing is followed beyond the window, and the verdict's clock stops at the first drip")
+		l = append(l, "heat, reaction, strain and events go on while the root drips; nothing is followed beyond twice the window, and the verdict's clock stops at the first drip")
 		if len(p.Zones) > 0 {
 			l = append(l, "what shear zones cut out is that of the column as it is at the start")
 		}
@@ -51,19 +52,21 @@ func (p *Problem) limits(peel Peeling) []string {
 	}
 	var soft, warm bool
 	for i := range p.Column.Layers {
-		v := &p.Column.Layers[i].Viscosity
-		soft = soft || v.Creep != nil || v.Exponent > 1
+		soft = soft || !drip.Newtonian(&p.Column.Layers[i].Rock)
 		warm = warm || p.Column.Layers[i].Density.NeedsTemperature()
 	}
 	switch b := &p.Column.Base; b.Boundary {
 	case column.HalfSpace:
-		soft = soft || b.Viscosity.Creep != nil || b.Viscosity.Exponent > 1
+		soft = soft || !drip.Newtonian(&b.Rock)
 		warm = warm || b.Density.NeedsTemperature()
 	case column.Inviscid:
 		warm = warm || b.Density.NeedsTemperature()
 	}
 	if p.softens() {
 		l[0] = "softening by the drip itself: the variational closure of one harmonic, too slow by 2 to 32 % in rate for n of 2 to 5, which the best estimate puts right with what two-dimensional solutions showed for uniform rock over a fluid; so it does for the finite amplitude of a full drip (derived)"
+		if p.Strain.ExtensionRate != 0 {
+			l[0] += "; beside a background's strain rate the shortfall is interpolated, and checked by nothing"
+		}
 	} else if soft && p.Strain.ExtensionRate != 0 {
 		l = append(l, "power-law softening by the drip itself is left out: viscosities are those of the background strain rate, with the tangent response of power-law rock; once the drip strains its rock faster than the background, it drips sooner")
 	} else if soft {

@@ -17,6 +17,7 @@ type Result struct {
 	Excision *excision.Result
 	Verdict  Verdict
 	Rate     RateBand
+	Study    Study
 	Peeling  Peeling
 	Warnings []string
 	Limits   []string // what the method leaves out, in words

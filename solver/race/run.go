@@ -8,6 +8,7 @@ import (
 	"math"
 	"slices"
 
+	"keelfall/column"
 	"keelfall/solver/drip"
 	"keelfall/solver/excision"
 	"keelfall/solver/growth"
@@ -137,6 +138,9 @@ func RunSaying(ctx context.Context, p *Problem, say func(string)) (*Result, erro
 	if err := r.strainRates(ctx); err != nil {
 		return nil, err
 	}
+	if err := r.study(ctx, say); err != nil {
+		return nil, err
+	}
 	r.Warnings = append(r.Warnings, r.Drip.Warnings...)
 	r.Warnings = append(r.Warnings, r.Excision.Warnings...)
 	r.judge()
@@ -155,5 +159,20 @@ func Warnings(p *Problem, s *state.State) []string {
 	return w
 }
 
-// softens says whether the drip's own strain rate softens its rock.
-func (p *Problem) softens() bool { return p.Drip.Softening == "self" }
+// softens says whether the drip's own strain rate softens its rock: asked for, and some
+// rock's viscosity depends on it.
+func (p *Problem) softens() bool {
+	if p.Drip.Softening != "self" {
+		return false
+	}
+	c := &p.Column
+	stiff := c.Base.Boundary != column.HalfSpace || drip.Newtonian(&c.Base.Rock)
+	for i := range c.Layers {
+		stiff = stiff && drip.Newtonian(&c.Layers[i].Rock)
+	}
+	for i := range p.Events {
+		e := &p.Events[i]
+		stiff = stiff && (len(e.Names()) == 0 || drip.Newtonian(&e.Rock))
+	}
+	return !stiff
+}

@@ -86,10 +86,14 @@ func (r *Result) viscositySearch() search {
 // undulationSearch scales the first amplitude, up to half the way to a drip.
 func (r *Result) undulationSearch() search {
 	p := r.Problem
-	most := p.Drip.Criterion * p.Column.RootThickness() / 2 / p.Drip.Amplitude
-	return scaled(p, "drip.amplitude", "initial undulation", "m", p.Drip.Amplitude, most, func(q *Problem, x float64) {
-		q.Drip.Amplitude *= math.Exp(x)
-	})
+	change := func(q *Problem, x float64) { q.Drip = q.Drip.Scaled(math.Exp(x)) }
+	tip := p.Drip.Criterion * p.Column.RootThickness()
+	if t := p.Drip.Rough.Amplitude; len(t) > 0 { // no key scales a table
+		s := scaled(p, "drip.spectrum", "initial undulation", "x", 1, math.Max(1, tip/2/slices.Max(t)), change)
+		s.keys = func(float64) []Change { return nil }
+		return s
+	}
+	return scaled(p, "drip.amplitude", "initial undulation", "m", p.Drip.Amplitude, math.Max(1, tip/2/p.Drip.Amplitude), change)
 }
 
 // densitySearch adds to the density of all root layers.

@@ -108,29 +108,6 @@ func ModeTable(s *state.State, m *growth.Mode) Table {
 	return t
 }
 
-// DripTable is the drip time against wavelength.
-func DripTable(r *race.Result) Table {
-	t := Table{Name: "drip", Header: []string{"wavelength_km", "drip_time_Myr", "drip_time_amplitude_x3_Myr", "drip_time_amplitude_third_Myr"}}
-	c := r.Drip.Curve
-	for i := range c.Wavelength {
-		low, high := math.NaN(), math.NaN() // a drip that softens itself is followed from one amplitude
-		if i < len(c.Low) {
-			low, high = c.Low[i], c.High[i]
-		}
-		t.Rows = append(t.Rows, []string{cell(c.Wavelength[i] / km), cell(c.Time[i] / Myr), cell(low / Myr), cell(high / Myr)})
-	}
-	return t
-}
-
-// AmplitudeTable is the first drip's amplitude against time.
-func AmplitudeTable(r *race.Result) Table {
-	t := Table{Name: "amplitude", Header: []string{"time_Myr", "root_base_amplitude_km"}}
-	for i := range r.Drip.History.Time {
-		t.Rows = append(t.Rows, []string{cell(r.Drip.History.Time[i] / Myr), cell(r.Drip.History.Base[i] / km)})
-	}
-	return t
-}
-
 // ExcisionTable is what the zones did against time.
 func ExcisionTable(r *race.Result) Table {
 	t := Table{Name: "excision", Header: []string{"time_Myr", "root_thickness_km", "arc_mean_root_thickness_km", "slip_km", "heave_km", "throw_km", "root_mass_share_removed"}}
@@ -198,7 +175,9 @@ func VerdictTable(r *race.Result) Table {
 func Tables(r *race.Result) []Table {
 	t := []Table{ColumnTable(r.State), WeightTable(r.State), SpectrumTable(r.Spectrum.Rates), ControlsTable(r.State, r.Spectrum.Mode), ModeTable(r.State, r.Spectrum.Mode)}
 	if r.Drip != nil {
-		t = append(t, DripTable(r), AmplitudeTable(r), ExcisionTable(r), ReversalTable(r))
+		t = append(t, DripTable(r))
+		t = append(t, DripTables(r)...)
+		t = append(t, ExcisionTable(r), ReversalTable(r))
 	}
 	return append(t, VerdictTable(r))
 }

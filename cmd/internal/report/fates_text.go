@@ -3,17 +3,20 @@ package report
 import (
 	"fmt"
 	"math"
-	"strings"
 
 	"keelfall/solver/drip"
 	"keelfall/solver/race"
 )
 
-func dripText(p *page, r *race.Result) {
+// dripText is the drip on a page; with events each drip has its sentence.
+func dripText(p *page, r *race.Result, events bool) {
 	p.section("DRIP")
 	d, pb := r.Drip, r.Problem
 	if math.IsInf(d.Time, 1) {
 		p.say("%s.", upper(d.Reason))
+		if w := criticalWords(r); w != "" {
+			p.say("Thickness: %s.", w)
+		}
 		return
 	}
 	limit := ""
@@ -26,21 +29,11 @@ func dripText(p *page, r *race.Result) {
 	}
 	p.say("Drips %s%s. Spacing %s km; any between %s and %s km would follow within 10 %% of that time.", at, limit,
 		short(d.Wavelength/km), sig(d.SpacingFrom/km, 2), sig(d.SpacingTo/km, 2))
-	if n := math.Floor(pb.ArcLength / d.Wavelength); n >= 1 {
-		fit := Count(int(n), "drip") + " of it fit"
-		if n == 1 {
-			fit += "s"
-		}
-		fit += " along the arc's " + short(pb.ArcLength/km) + " km"
-		if pb.Strain.Wavevector != race.AlongStrike {
-			fit = "If that spacing holds along strike, " + strings.Replace(fit, " of it", "", 1)
-		}
-		p.say("%s.", fit)
-	}
+	room(p, r)
 	if d.Excluded != "" {
 		p.say("%s.", upper(d.Excluded))
 	}
-	p.say("From an undulation of %s m%s: three times that gives %s, a third %s.", short(pb.Drip.Amplitude), star(pb, "drip.amplitude"), myr(d.TimeLow), myr(d.TimeHigh))
+	p.say("From %s: three times that gives %s, a third %s.", undulation(pb, d), myr(d.TimeLow), later(pb, d.TimeHigh))
 	if r.Rate.Used {
 		p.say("Viscosities at %.1e 1/s%s: at three times that %s, at a third %s.", pb.Strain.ReferenceRate, star(pb, "strain.reference-rate"), myr(r.Rate.AtThrice), myr(r.Rate.AtOneThird))
 	}
@@ -49,7 +42,13 @@ func dripText(p *page, r *race.Result) {
 		tip = fmt.Sprintf("down by %s%s times the root's thickness at that time", short(pb.Drip.Criterion), star(pb, "drip.criterion"))
 	}
 	p.say("\"Dripped\" = tip %s; the drip takes %.0f %%%s of the root's mass.", tip, 100*pb.Drip.Removes, star(pb, "drip.removes"))
+	if w := criticalWords(r); w != "" {
+		p.say("Thickness: %s.", w)
+	}
 	for i, e := range d.Drips {
+		if !events {
+			break
+		}
 		of := ""
 		if i > 0 {
 			of = " after the undulation began anew"
@@ -76,8 +75,12 @@ func dripText(p *page, r *race.Result) {
 
 // softText says how a time was found where the drip softens its own rock.
 func softText(p *page, s *drip.SelfSoftened) {
-	p.say("The drip softens its own rock, and nothing else strains it: growth is faster than exponential. The closure gives %s, a slow bound; the best estimate, for a mean stress exponent of %.2g, is %s to %s.",
-		myr(s.Slow), s.Exponent, myr(s.BestLow), myr(s.BestHigh))
+	how := "nothing else strains it: growth is faster than exponential"
+	if s.Strained {
+		how = "so does what strains the column; how far the closure falls short of both together is interpolated between what is known of each"
+	}
+	p.say("The drip softens its own rock, and %s. The closure gives %s, a slow bound; the best estimate, for a mean stress exponent of %.2g, is %s to %s.",
+		how, myr(s.Slow), s.Exponent, myr(s.BestLow), myr(s.BestHigh))
 	if !s.Correction.Inside {
 		p.say("The stress exponent or the wavelength lies beyond the solutions that the estimate rests on (n of 1 to 5, k times the root's thickness 1 to 3); their edge is used.")
 	}
@@ -140,4 +143,12 @@ func excisionText(p *page, r *race.Result) {
 		}
 		p.say("%s, at %s. The rock moves, none is lost.", s, when(pb, x.CutThroughTime))
 	}
+}
+
+// later says a drip time that may lie beyond what was followed.
+func later(p *race.Problem, t float64) string {
+	if math.IsInf(t, 1) && p.Moving() {
+		return "none as far as it was followed"
+	}
+	return myr(t)
 }

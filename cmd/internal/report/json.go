@@ -215,5 +215,5 @@ type ResultJSON struct {
 
 // Result returns everything a run found.
 func Result(r *race.Result, p ProvenanceJSON) ResultJSON {
-	return ResultJSON{Column(r.Problem, r.State), Spectrum(r.Problem, r.State, r.Spectrum, nil), Drip(r.Problem, r.State, r.Drip), Excision(r.Problem, r.State, r.Excision), Verdict(r), p}
+	return ResultJSON{Column(r.Problem, r.State), Spectrum(r.Problem, r.State, r.Spectrum, nil), Drip(r), Excision(r.Problem, r.State, r.Excision), Verdict(r), p}
 }

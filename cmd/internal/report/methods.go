@@ -40,7 +40,7 @@ func Methods(r *race.Result, p ProvenanceJSON) string {
 	w("Solved by Gauss–Legendre collocation of order 16, each element condensed, the layers joined by impedances [keelfall-collocation]. Growth rates are eigenvalues of A. A layer's dissipation share is the exact logarithmic derivative of the rate with respect to its viscosity; derivatives with respect to density and thickness hold at fixed viscosity, temperature, pressure and density jumps. The geometry of the checks is that of [chandrasekhar1961], [ramberg1968] and [houseman1997].\n")
 	if r.Drip != nil {
 		w("## Drip\n")
-		w("An undulation of %g m on the base of the lowest root layer, all other contacts flat, the same at all wavelengths; the exact solution of dξ/dt = A ξ for the column as it is at the start. It has dripped when the base has descended by %g × the root's thickness; the drip then takes %g of the root's mass.\n", pb.Drip.Amplitude, pb.Drip.Criterion, pb.Drip.Removes)
+		dripMethods(w, r)
 		omission := ""
 		if len(pb.Zones) > 0 {
 			omission = " [omission]"

@@ -31,7 +31,7 @@ func Page(r *race.Result) string {
 	}
 	growthText(p, r.State, r.Spectrum, r.Spectrum.Rates)
 	if r.Drip != nil {
-		dripText(p, r)
+		dripText(p, r, true)
 		excisionText(p, r)
 		flipsText(p, r)
 	}

@@ -64,7 +64,11 @@ func SpectrumPage(p *race.Problem, s *state.State, sp *growth.Spectrum, exact []
 // DripPage is the text of `keelfall drip`.
 func DripPage(p *race.Problem, r *race.Result) string {
 	pg := titled(p)
-	dripText(pg, r)
+	dripText(pg, r, false)
+	dripsText(pg, r)
+	firstText(pg, r)
+	exponentsText(pg, r)
+	undulationsText(pg, r)
 	return pg.b.String()
 }
 
