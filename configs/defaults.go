@@ -52,12 +52,23 @@ func fill(root *node) []race.Default {
 	if !table {
 		f.scalar("white", false, "drip", "spectrum")
 	}
-	f.scalar("none", false, "drip", "softening")
+	f.scalar(f.softening(layers), false, "drip", "softening")
 	f.scalar("0.5", false, "race", "removed")
 	f.scalar("1e16 Pa s", false, "viscosity-limits", "lowest")
 	f.scalar("1e25 Pa s", false, "viscosity-limits", "highest")
 	f.zones()
 	return f.taken
+}
+
+// softening is self, but none where the closure does not take a layer: one whose
+// composition grades or reacts. A run says so.
+func (f *filler) softening(layers []*node) string {
+	for _, l := range append(slices.Clone(layers), f.root.get("base")) {
+		if d := l.get("density"); d.get("top") != nil || d.get("protolith") != nil {
+			return "none"
+		}
+	}
+	return "self"
 }
 
 // rocks returns the layers' maps.

@@ -54,6 +54,10 @@ const drift = 0.02
 // lay gives the layers of a node that grade their places for parts: those of the node
 // before, or anew for the rock as it is now.
 func (c *course) lay(n, before *node, anew bool) {
+	var old layout
+	if before != nil { // n itself, it may be
+		old = before.lay
+	}
 	n.lay.cover, n.lay.parts = make([][]float64, len(n.lay.names)), make([][]float64, len(n.lay.names))
 	for i, name := range n.lay.names {
 		if !c.graded[name] {
@@ -68,10 +72,8 @@ func (c *course) lay(n, before *node, anew bool) {
 		}
 		m := n.marks[i]
 		var was []float64
-		if before != nil {
-			if j := slices.Index(before.lay.names, name); j >= 0 {
-				was = before.lay.cover[j]
-			}
+		if j := slices.Index(old.names, name); j >= 0 {
+			was = old.cover[j]
 		}
 		if n.lay.cover[i] = was; was == nil || anew {
 			n.lay.cover[i] = covered(was, m)
@@ -88,6 +90,12 @@ func (c *course) lay(n, before *node, anew bool) {
 			return x
 		}
 		l.Where = func(x float64) float64 { return top + h*placeOf(m, x) }
+		for _, mark := range ends { // what lies on either side moves differently
+			if mark > m[0] && mark < m[marked] {
+				l.Breaks = append(slices.Clone(l.Breaks), l.Where(mark))
+			}
+		}
+		slices.Sort(l.Breaks)
 	}
 }
 

@@ -5,6 +5,7 @@ import (
 	"testing"
 
 	"keelfall/column"
+	"keelfall/solver/heat"
 	"keelfall/solver/state"
 )
 
@@ -136,5 +137,44 @@ func TestRational(t *testing.T) {
 		if worst > 1e-6*size {
 			t.Errorf("h %g: off by %g", h, worst/size)
 		}
+	}
+}
+
+// A root that is taken away before it drips ends the course, also beyond the window.
+func TestRootGone(t *testing.T) {
+	set := common()
+	set.Window = 5 * myr
+	p := cooling(0.05, 0, heat.Event{Verb: "remove", Layer: "root", Share: 1, From: 2 * myr, To: 2 * myr})
+	r, err := Through(ctx, p, set, Options{From: 50e3, To: 200e3})
+	if err != nil || !math.IsInf(r.Time, 1) || r.Reason != "the root was gone before it could drip" {
+		t.Errorf("%+v, %v", r, err)
+	}
+}
+
+// The same as BenchmarkCourse, with a root that grades.
+func BenchmarkCourseGraded(b *testing.B) {
+	set := common()
+	set.Window = 50 * myr
+	list := octaves(20e3, 1000e3, 64)
+	c := creeping(hot)
+	c.Layers[3].Density = column.Linear{Top: 3400, Bottom: 3500}
+	p := Plan{Reference: 1e-15, Begin: func() (Motion, error) {
+		ev, err := heat.Begin(heat.Plan{Column: c, Tolerance: 0.05,
+			Events: []heat.Event{{Verb: "change-base", Temperature: hot - 150}}})
+		return Heated{ev}, err
+	}}
+	for b.Loop() {
+		d, err := newThrough(ctx, p, set, Options{Workers: 1})
+		if err != nil {
+			b.Fatal(err)
+		}
+		if d.grid, err = newGroup(d.course, set, list, 1); err != nil {
+			b.Fatal(err)
+		}
+		if err := d.to(ctx, set.Window); err != nil {
+			b.Fatal(err)
+		}
+		b.ReportMetric(float64(len(d.course.legs)), "legs")
+		b.ReportMetric(float64(len(d.grid.list[0].y)), "states")
 	}
 }

@@ -179,7 +179,7 @@ func (d *through) follow(ctx context.Context, from, to float64, perOctave, stopA
 
 // to extends the course until the grid is done or a time in s is reached.
 func (d *through) to(ctx context.Context, end float64) error {
-	for d.course.last().t < end*(1-1e-12) && !d.grid.finished() {
+	for d.course.last().t < end*(1-1e-12) && d.course.last().lay.rootBase >= 0 && !d.grid.finished() {
 		if err := d.course.extend(ctx, d.grid, end); err == errRootGone {
 			break
 		} else if err != nil {
