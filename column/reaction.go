@@ -157,7 +157,7 @@ func (r Reaction) cautions(share string) []string {
 	}
 	switch {
 	case r.Kinetics != nil:
-		out = append(out, "the reacted share, "+share+", stays as it is in spectrum, mode, excise and column; history and the drip follow it, by where the product is stable and how fast it forms")
+		out = append(out, "the reacted share, "+share+", stays as it is in spectrum, mode and column; history, the drip and excise follow it, by where the product is stable and how fast it forms")
 	case r.Field != nil:
 		out = append(out, "the reacted share, "+share+", stays as it is: where the product is stable has no effect without a rate")
 	}

@@ -84,7 +84,7 @@ func TestReactionKinetics(t *testing.T) {
 	if !(column.Reaction{}).Stable(300, 0) {
 		t.Error("without a field the product is stable")
 	}
-	if c := strings.Join(r.Cautions(), ""); !strings.Contains(c, "throughout the layer, stays as it is in spectrum, mode, excise and column; history and the drip follow it") {
+	if c := strings.Join(r.Cautions(), ""); !strings.Contains(c, "throughout the layer, stays as it is in spectrum, mode and column; history, the drip and excise follow it") {
 		t.Error(c)
 	}
 	still := r

@@ -1,14 +1,10 @@
 package configs
 
-import (
-	"fmt"
-	"slices"
-)
+import "slices"
 
 // crossCheck checks what layers, events, markers and zones say about one another. It works on a tree
 // that may have other mistakes, and then leaves out what it cannot know.
 func (e *Experiment) crossCheck(w *walker) {
-	index := map[string]int{}
 	names := []string{}
 	complete := true // no layer whose name is unknown
 	last := -1
@@ -18,7 +14,6 @@ func (e *Experiment) crossCheck(w *walker) {
 			complete = false
 			continue
 		}
-		index[l.Name.Value] = i
 		names = append(names, l.Name.Value)
 		if !l.Root.On {
 			continue
@@ -30,33 +25,9 @@ func (e *Experiment) crossCheck(w *walker) {
 	}
 	if complete {
 		e.undulation(w)
-	}
-	if complete {
 		e.timeline(w, slices.Clone(names))
 		e.markersCheck(w, names)
-	}
-	if e.data.Excision == nil || !complete {
-		return
-	}
-	for i := range e.data.Excision.Zones {
-		z := &e.data.Excision.Zones[i]
-		before := -1
-		for j, cut := range z.Cuts {
-			if !cut.given() {
-				break
-			}
-			k, ok := index[cut.Value]
-			path := fmt.Sprintf("%s.cuts[%d]", z.path, j)
-			if !ok {
-				w.addf(cut.n, path, "%s is not a layer; %s", cut.n.show(), didYouMean(cut.Value, firstFew(names)))
-				break
-			}
-			if before >= 0 && k != before+1 {
-				w.addf(cut.n, path, "%s does not lie directly below %s; a zone cuts adjacent layers, named from above", cut.Value, z.Cuts[j-1].Value)
-				break
-			}
-			before = k
-		}
+		e.zones(w, names)
 	}
 }
 

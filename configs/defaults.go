@@ -57,11 +57,12 @@ func fill(root *node) []race.Default {
 	f.scalar("1e16 Pa s", false, "viscosity-limits", "lowest")
 	f.scalar("1e25 Pa s", false, "viscosity-limits", "highest")
 	f.zones()
+	f.reference()
 	return f.taken
 }
 
-// softening is self, but none where the closure does not take a layer: one whose
-// composition grades or reacts. A run says so.
+// softening is self, but none where a layer's composition grades or reacts: the closure takes
+// it, but through time such a column costs a minute and more. A run says so.
 func (f *filler) softening(layers []*node) string {
 	for _, l := range append(slices.Clone(layers), f.root.get("base")) {
 		if d := l.get("density"); d.get("top") != nil || d.get("protolith") != nil {
@@ -182,11 +183,7 @@ func (f *filler) rock(l *node, path string, warm bool) {
 		f.put(l, "stress-exponent", path+".stress-exponent", "1", false)
 	}
 	f.density(l.get("density"), path+".density")
-	if fr := l.get("friction"); fr != nil && fr.kind == mapNode {
-		f.put(fr, "cohesion", path+".friction.cohesion", "0 Pa", false)
-		f.put(fr, "angle", path+".friction.angle", "0 deg", false)
-		f.put(fr, "pore-fluid-factor", path+".friction.pore-fluid-factor", "0", false)
-	}
+	f.friction(l, path)
 	if !warm {
 		return
 	}
@@ -200,6 +197,15 @@ func (f *filler) rock(l *node, path string, warm bool) {
 		f.put(l, "heat-production", path+".heat-production", "0 W/m3", false)
 	}
 	f.put(l, "heat-capacity", path+".heat-capacity", "1000 J/kg/K", false)
+}
+
+// friction adds what the friction of a rock or a zone leaves out.
+func (f *filler) friction(rock *node, path string) {
+	if fr := rock.get("friction"); fr != nil && fr.kind == mapNode {
+		f.put(fr, "cohesion", path+".friction.cohesion", "0 Pa", false)
+		f.put(fr, "angle", path+".friction.angle", "0 deg", false)
+		f.put(fr, "pore-fluid-factor", path+".friction.pore-fluid-factor", "0", false)
+	}
 }
 
 // density adds what a density leaves out, and its parts.
@@ -302,6 +308,10 @@ func (f *filler) zones() {
 		f.put(z, "from", path+".from", "0 Myr", false)
 		if window != nil && window.kind == scalarNode {
 			f.put(z, "to", path+".to", window.text, false)
+		}
+		if z.get("force") != nil {
+			f.friction(z, path)
+			f.put(z, "strength-factor", path+".strength-factor", "1", false)
 		}
 	}
 }

@@ -11,12 +11,13 @@ import (
 var exampleFiles embed.FS
 
 // exampleNames are the built-in experiments, the one that run takes by itself first.
-var exampleNames = []string{"tarnvik", "osmund", "veskar", "morvane", "rundal", "equal-layers"}
+var exampleNames = []string{"tarnvik", "osmund", "veskar", "morvane", "rundal", "brannock", "equal-layers"}
 
 // ExampleNames returns the names of the built-in experiments: tarnvik (its root drips
 // first), osmund (its root is cut out first), veskar (mineral modes and a root that
 // reacted in part), morvane (a measured section), rundal (a history of sheets, growth,
-// stretching and erosion) and equal-layers (the smallest). All
+// stretching and erosion), brannock (a shear zone whose slip follows from a balance of
+// forces) and equal-layers (the smallest). All
 // are invented, and say so. The first is what run takes when no file is given.
 func ExampleNames() []string { return append([]string(nil), exampleNames...) }
 

@@ -193,4 +193,12 @@ func (e *Experiment) lawNames(w *walker) {
 			r.Creep.laws(w, r.path+".creep", e.laws)
 		}
 	}
+	if e.data.Excision == nil {
+		return
+	}
+	for i := range e.data.Excision.Zones {
+		if z := &e.data.Excision.Zones[i]; z.Creep != nil {
+			z.Creep.laws(w, z.path+".creep", e.laws)
+		}
+	}
 }

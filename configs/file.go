@@ -19,7 +19,7 @@ type experiment struct {
 	Drip      *dripping  `key:"drip" doc:"what counts as a drip"`
 	Spectrum  *spectrum  `key:"spectrum" doc:"range of wavelengths; chosen from the layers if left out"`
 	Excision  *excisions `key:"excision" doc:"shear zones that cut layers out"`
-	Reference *reference `key:"reference" doc:"the column that elevation and potential energy are measured against"`
+	Reference *reference `key:"reference" doc:"the column that elevation and potential energy are measured against; a mid-ocean ridge if left out"`
 	Markers   []marker   `key:"markers" doc:"points carried with the rock"`
 	Clocks    []clock    `key:"clocks" doc:"closure-temperature systems read at markers"`
 
@@ -131,21 +131,20 @@ type zone struct {
 	From        quantity  `key:"from" dim:"time" doc:"when it begins to move; the start if left out"`
 	To          quantity  `key:"to" dim:"time" doc:"when it stops; the window's end if left out"`
 	SlipRate    quantity  `key:"slip-rate" dim:"velocity" range:"[0 m/s,1 m/yr]" doc:"given slip rate"`
-	Share       quantity  `key:"share" dim:"number" range:"[0,1]" doc:"share of the cut layers missing at the end"`
-	PressureGap quantity  `key:"pressure-gap" dim:"pressure" range:"[0 Pa,10 GPa]" doc:"pressure missing across the zone at the end"`
-	Force       *force    `key:"force" doc:"slip follows from a force balance"`
+	Share       quantity  `key:"share" dim:"number" range:"[0,1]" doc:"its share of the arc's extension, as heave; the column stretches by the rest; needs arc.width"`
+	PressureGap quantity  `key:"pressure-gap" dim:"pressure" range:"[0 Pa,10 GPa]" doc:"missing across the zone when it stops, as a gap between the pressures measured on its two sides; it slips steadily until then"`
+	Force       *force    `key:"force" doc:"its slip rate follows from the balance of the driving force with its strength; needs a temperature and the zone's width"`
 	Width       quantity  `key:"width" dim:"length" range:"(0 m,100 km]" eg:"400 m" doc:"normal to the zone"`
-	Creep       *creep    `key:"creep" doc:"creep of the zone's rock"`
-	Water       *water    `key:"water" doc:"water in the zone's rock"`
-	Friction    *friction `key:"friction" doc:"frictional strength of the zone"`
-	Factor      quantity  `key:"strength-factor" dim:"number" range:"(0,1e6]" doc:"multiplies the zone's strength"`
+	Creep       *creep    `key:"creep" doc:"of the zone's rock in a force balance; that of each layer it crosses if left out"`
+	Water       *water    `key:"water" doc:"in the zone's rock, for creep laws that need it"`
+	GrainSize   quantity  `key:"grain-size" dim:"length" range:"(0 m,1 m]" eg:"50 um" doc:"of the zone's rock, for creep laws that need it"`
+	Friction    *friction `key:"friction" doc:"frictional strength of the zone in a force balance; that of each layer it crosses if left out"`
+	Factor      quantity  `key:"strength-factor" dim:"number" range:"(0,1e6]" eg:"1" doc:"multiplies the zone's strength in a force balance; 1 if left out"`
 }
-
-func (z *zone) check(w *walker) { w.increasing(z.From, z.To, z.path) }
 
 type force struct {
 	block
-	FarField quantity `key:"far-field,required" dim:"force" doc:"driving force from outside, positive in tension"`
+	FarField quantity `key:"far-field,required" dim:"force" doc:"driving force from outside per length of strike, positive in tension; to it comes the column's own against the reference column"`
 }
 
 type racing struct {

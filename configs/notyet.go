@@ -10,15 +10,6 @@ const notInThisVersion = "not in this version of keelfall"
 // list. Where a value stands beside it, that value is accepted and no other. The
 // schema checks them all the same. Work on a solver ends with its line leaving here.
 var notYet = map[string]string{
-	"excision.zones.*.share":           "",
-	"excision.zones.*.pressure-gap":    "",
-	"excision.zones.*.force":           "",
-	"excision.zones.*.creep":           "",
-	"excision.zones.*.water":           "",
-	"excision.zones.*.friction":        "",
-	"excision.zones.*.strength-factor": "",
-
-	"reference":     "",
 	"race.reversal": "",
 	"budget":        "",
 	"observations":  "",

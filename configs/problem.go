@@ -7,7 +7,6 @@ import (
 	"keelfall/column"
 	"keelfall/rheology"
 	"keelfall/solver/drip"
-	"keelfall/solver/excision"
 	"keelfall/solver/race"
 )
 
@@ -31,8 +30,9 @@ func (e *Experiment) build(w *walker) race.Problem {
 			Amplitude: d.Drip.Amplitude.SI, Criterion: d.Drip.Criterion.SI, Window: d.Drip.Window.SI,
 			Removes: d.Drip.Removes.SI, Softening: d.Drip.Softening.Value,
 		},
-		Removed:  d.Race.Removed.SI,
-		Defaults: slices.Clone(e.taken),
+		Removed:   d.Race.Removed.SI,
+		Reference: d.Reference.problem(),
+		Defaults:  slices.Clone(e.taken),
 	}
 	if n := d.Buoyancy.Thermal.n; n.from != fromDefault && n.text != "none" && !hasTemperature(e.filled) {
 		w.addf(n, "buoyancy.thermal", "%s needs a temperature and the experiment has none; %s", n.show(), howWarm)
@@ -51,26 +51,11 @@ func (e *Experiment) build(w *walker) race.Problem {
 	p.Events = e.events(w)
 	p.Markers, p.Clocks = e.markers()
 	p.Measured = e.measured()
-	if d.Excision != nil {
-		for i := range d.Excision.Zones {
-			p.Zones = append(p.Zones, d.Excision.Zones[i].problem())
-		}
-	}
+	p.Zones = e.zoneProblems(w)
 	if err := p.Column.Validate(); err != nil && len(w.mistakes) == 0 { // whatever the checks with positions missed
 		w.add(e.filled.get("layers"), "layers", err.Error())
 	}
 	return p
-}
-
-func (z *zone) problem() excision.Zone {
-	out := excision.Zone{Name: z.Name.Value, Dip: z.Dip.SI, LayeringDip: z.LayeringDip.SI, From: z.From.SI, To: z.To.SI, SlipRate: z.SlipRate.SI, Width: z.Width.SI}
-	if z.To.n.from == fromDefault { // no end: the window is where it is looked at last
-		out.To = math.Inf(1)
-	}
-	for _, c := range z.Cuts {
-		out.Cuts = append(out.Cuts, c.Value)
-	}
-	return out
 }
 
 func (e *Experiment) column(w *walker) column.Column {
@@ -135,16 +120,10 @@ func (e *Experiment) rock(w *walker, r *rock) column.Rock {
 			out.Piezometer, _ = rheology.FindPiezometer(g.Piezometer.Piezometer.Value)
 		}
 	}
-	if f := r.Friction; f != nil && r.Creep != nil {
-		out.Friction = &rheology.Friction{Cohesion: f.Cohesion.SI, Angle: f.Angle.SI, PoreFluid: f.PoreFluid.SI}
+	if r.Creep != nil {
+		out.Friction = r.Friction.problem()
 	}
-	switch f := r.Water; {
-	case f == nil:
-	case f.Fugacity.given():
-		out.Water, out.WaterMeasure = f.Fugacity.SI, rheology.WaterFugacity
-	default:
-		out.Water, out.WaterMeasure = f.Content.SI, rheology.WaterContent
-	}
+	out.Water, out.WaterMeasure = r.Water.problem()
 	if k := r.Conductivity; k != nil {
 		out.Conductivity = column.Conductivity{Reference: k.Value.SI, At: celsiusZero}
 		if s := k.State; s != nil {
@@ -158,6 +137,25 @@ func (e *Experiment) rock(w *walker, r *rock) column.Rock {
 		}
 	}
 	return out
+}
+
+// problem is friction as package rheology takes it; nil where there is none.
+func (f *friction) problem() *rheology.Friction {
+	if f == nil {
+		return nil
+	}
+	return &rheology.Friction{Cohesion: f.Cohesion.SI, Angle: f.Angle.SI, PoreFluid: f.PoreFluid.SI}
+}
+
+// problem is an amount of water and its measure.
+func (f *water) problem() (float64, rheology.WaterMeasure) {
+	switch {
+	case f == nil:
+		return 0, rheology.NoWater
+	case f.Fugacity.given():
+		return f.Fugacity.SI, rheology.WaterFugacity
+	}
+	return f.Content.SI, rheology.WaterContent
 }
 
 // howWarm says how an experiment gets a temperature.
@@ -184,25 +182,31 @@ func (e *Experiment) temperatureNeeds(w *walker, r *rock, out *column.Rock, warm
 	if !warm {
 		w.addf(at, r.path+".creep", "needs a temperature and the experiment has none; %s", howWarm)
 	}
+	lawNeeds(w, creep, at, r.path, out.GrainSize > 0 || out.Piezometer != nil, out.WaterMeasure)
+}
+
+// lawNeeds reports, at the creep's node, grain size and water that its laws ask for and
+// the rock at path does not have.
+func lawNeeds(w *walker, creep *rheology.Creep, at *node, path string, grained bool, measure rheology.WaterMeasure) {
 	said := map[string]bool{}
 	say := func(key, format string, args ...any) {
 		if !said[key] {
-			w.addf(at, r.path+"."+key, format, args...)
+			w.addf(at, path+"."+key, format, args...)
 		}
 		said[key] = true
 	}
 	for _, l := range creep.AllLaws() {
-		if l.M != 0 && !(out.GrainSize > 0) && out.Piezometer == nil {
+		if l.M != 0 && !grained {
 			say("grain-size", "is missing; %s needs one, for example grain-size: 2 mm", l.Name)
 		}
-		if l.R == 0 || l.Water == out.WaterMeasure {
+		if l.R == 0 || l.Water == measure {
 			continue
 		}
 		needs := "a fugacity, for example water: {fugacity: 250 MPa}"
 		if l.Water == rheology.WaterContent {
 			needs = "a content in H per 10⁶ Si, for example water: {content: 1000}"
 		}
-		if out.WaterMeasure == rheology.NoWater {
+		if measure == rheology.NoWater {
 			say("water", "is missing; %s needs %s", l.Name, needs)
 		} else {
 			say("water", "is given in the other measure; %s needs %s", l.Name, needs)

@@ -107,5 +107,8 @@ func (e *Experiment) creepLaws() []any {
 	for _, h := range e.events(&w) {
 		add(h.Rock.Viscosity.Creep)
 	}
+	for _, z := range e.zoneProblems(&w) {
+		add(z.Creep)
+	}
 	return out
 }

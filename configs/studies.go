@@ -3,18 +3,6 @@ package configs
 // The sections below describe studies over many experiments, and what the column is
 // held against. Their keys name other keys of the same file.
 
-type reference struct {
-	block
-	Elevation quantity         `key:"elevation" dim:"length" range:"[-20 km,20 km]" eg:"0 m"`
-	Layers    []referenceLayer `key:"layers,required"`
-}
-
-type referenceLayer struct {
-	block
-	Thickness quantity `key:"thickness,required" dim:"length" range:"(0 m,3000 km]"`
-	Density   quantity `key:"density,required" dim:"density" range:"(0 kg/m3,20000 kg/m3]"`
-}
-
 type marker struct {
 	_ struct{} `exactly:"depth base-of"`
 	block

@@ -9,7 +9,7 @@ import (
 )
 
 // All returns every figure that a result has the data for, in order: column (and, where
-// width is a column's, strength), spectrum, mode, fates and those of the drip. width is ColumnWidth where 0. It fails where a part is there and cannot
+// width is a column's, strength), spectrum, mode, fates, those of the shear zones and those of the drip. width is ColumnWidth where 0. It fails where a part is there and cannot
 // be drawn.
 func All(res *race.Result, width vg.Length) ([]Figure, error) {
 	if res == nil || res.Problem == nil {
@@ -50,6 +50,13 @@ func All(res *race.Result, width vg.Length) ([]Figure, error) {
 		if err := add(Fates(res, width)); err != nil {
 			return nil, err
 		}
+	}
+	if hasZones {
+		figures, err := Excisions(res, width)
+		if err != nil {
+			return nil, err
+		}
+		out = append(out, figures...)
 	}
 	if dr != nil {
 		figures, err := dripFigures(res, width)

@@ -13,7 +13,7 @@ import (
 
 // History draws a thermal history: geotherms at a few times (a), the depth of the
 // layers against time with the events in words (b), and below them the temperature of
-// the root's base and the surface heat flow against time (c). width is ColumnWidth
+// the root's base and the surface heat flow against time (c), and elevation and force (d). width is ColumnWidth
 // where 0.
 func History(t *Thermal, width vg.Length) (Figure, error) {
 	width, err := pageWidth(width)
@@ -33,6 +33,9 @@ func History(t *Thermal, width vg.Length) (Figure, error) {
 	height := f.stripHeight() + 146*vg.Millimeter
 	if t.HasTimeZero {
 		height += xAxisHeight(1)
+	}
+	if t.stands() {
+		height += elevationHeight
 	}
 	return Figure{Name: "history", Caption: f.caption(), Width: width, Height: height, draw: f.draw}, nil
 }
@@ -103,6 +106,9 @@ func (f *historyFigure) caption() string {
 	} else {
 		s += "surface heat flow (c)."
 	}
+	if f.stands() {
+		s = strings.TrimSuffix(s, ".") + "; elevation of the surface above sea level by local isostasy (solid) and the force that drives extension, or below 0 shortening (dashed) (d)."
+	}
 	if f.more > 0 {
 		s += fmt.Sprintf(" %d later events have no line of their own.", f.more)
 	}
@@ -124,7 +130,11 @@ func (f *historyFigure) draw(s *sheet) {
 		ages = xAxisHeight(1)
 	}
 	axis := xAxisHeight(1) + 2
-	room := s.Max.Y - s.Min.Y - 2*axis - ages - f.stripHeight() - 2*head - panelGap
+	last := vg.Length(0)
+	if f.stands() {
+		last = elevationHeight
+	}
+	room := s.Max.Y - s.Min.Y - 2*axis - ages - f.stripHeight() - 2*head - panelGap - last
 	slot := func(top, height vg.Length) *panel {
 		return &panel{sheet: s, box: vg.Rectangle{Min: vg.Point{Y: top - height}, Max: vg.Point{Y: top}}}
 	}
@@ -133,7 +143,8 @@ func (f *historyFigure) draw(s *sheet) {
 	strip := slot(b.box.Min.Y-panelGap, f.stripHeight()-panelGap)
 	c := slot(b.box.Min.Y-panelGap-f.stripHeight(), 0.29*room)
 	a.y, b.y = f.depth, f.depth
-	b.x, strip.x, c.x = f.time, f.time, f.time
+	d := slot(c.box.Min.Y-panelGap, last-panelGap)
+	b.x, strip.x, c.x, d.x = f.time, f.time, f.time, f.time
 
 	depthsA, depthsB := linearTicks(a.y, a.yFits), linearTicks(b.y, b.yFits)
 	left, right, finish := f.curves(c)
@@ -142,7 +153,12 @@ func (f *historyFigure) draw(s *sheet) {
 	if right != nil {
 		far = yAxisWidth(right) + 2
 	}
-	for _, p := range []*panel{a, b, strip, c} {
+	finishD := func() {}
+	if f.stands() {
+		left, right, finishD = f.elevations(d)
+		margin, far = max(margin, yAxisWidth(left)+2), max(far, yAxisWidth(right)+2)
+	}
+	for _, p := range []*panel{a, b, strip, c, d} {
 		p.box.Min.X, p.box.Max.X, p.overhang = s.Min.X+margin, s.Max.X-far, far-1
 	}
 	a.letter("(a)")
@@ -166,7 +182,16 @@ func (f *historyFigure) draw(s *sheet) {
 	f.moments(c)
 	finish()
 	c.frame()
-	c.horizontal("Time (Myr)", times, false)
+	lowest := c
+	if f.stands() {
+		c.horizontal("", unlabelled(times), false)
+		s.text(vg.Point{X: s.Min.X + 1, Y: d.box.Max.Y}, "(d)", textStyle{size: letterSize, y: yTop})
+		f.moments(d)
+		finishD()
+		d.frame()
+		lowest = d
+	}
+	lowest.horizontal("Time (Myr)", times, false)
 }
 
 // moments draws a line where an event begins or ends.

@@ -15,6 +15,8 @@ type Thermal struct {
 	Shown       []float64    // s: times of the snapshots drawn as geotherms; the others say where the contacts are
 	Events      []heat.Event // in any order
 	Fit         *heat.Fit    // of the geotherm at the start to samples; nil without
+	Elevation   []float64    // m above sea level, at the history's times; nil where it is not known
+	Force       []float64    // N/m, > 0 extensional, at the same times
 	HasTimeZero bool
 	TimeZero    float64 // s, age of model time 0
 }
@@ -27,6 +29,10 @@ func (t *Thermal) check() error {
 	}
 	errs := []error{finite("time", h.Time...), finite("surface heat flow", h.SurfaceFlow...), finite("temperature of the root's base", h.RootBase...),
 		sameLength("surface heat flow and time", len(h.SurfaceFlow), len(h.Time)), sameLength("temperature of the root's base and time", len(h.RootBase), len(h.Time))}
+	if t.stands() {
+		errs = append(errs, finite("elevation", t.Elevation...), finite("force", t.Force...),
+			sameLength("elevation and time", len(t.Elevation), len(h.Time)), sameLength("force and time", len(t.Force), len(h.Time)))
+	}
 	for i := range h.Paths {
 		p := &h.Paths[i]
 		errs = append(errs, finite("path of "+p.Name, slices.Concat(p.Time, p.T, p.P)...),

@@ -37,7 +37,8 @@ func madeUpThermal(t testing.TB) *Thermal {
 		}
 	}
 	h.Paths = paths
-	return &Thermal{History: h, Shown: []float64{0, 2.5 * myr, 6 * myr, 16 * myr, 30 * myr}, HasTimeZero: true, TimeZero: 95 * myr, Events: []heat.Event{
+	heights, forces := madeUpHeights(h.Time)
+	return &Thermal{History: h, Elevation: heights, Force: forces, Shown: []float64{0, 2.5 * myr, 6 * myr, 16 * myr, 30 * myr}, HasTimeZero: true, TimeZero: 95 * myr, Events: []heat.Event{
 		{Verb: "stretch", From: 6 * myr, To: 16 * myr, Rate: 1.5e-15},
 		{Verb: "accumulate", Layer: "root", To: 3 * myr, Rate: 5e-4 / (myr / 1e6), Temperature: 1423},
 		{Verb: "intrude", Name: "sheet", Layer: "mid-crust", From: 1 * myr, To: 1 * myr, Thickness: 1500, Temperature: 1463.15, Times: 4, Every: 0.5 * myr},
@@ -46,6 +47,15 @@ func madeUpThermal(t testing.TB) *Thermal {
 		{Verb: "change-base", From: 8 * myr, To: 8 * myr, Temperature: 1523.15},
 		{Verb: "remove", From: 24 * myr, To: 24 * myr, Layer: "mantle", Share: 0.5},
 	}}
+}
+
+// madeUpHeights are an elevation that sinks below the sea and a force that changes sign.
+func madeUpHeights(times []float64) (heights, forces []float64) {
+	for _, t := range times {
+		u := t / (30 * myr)
+		heights, forces = append(heights, 1800-2600*u*u), append(forces, 1.4e12*math.Cos(3*u))
+	}
+	return heights, forces
 }
 
 // madeUpColumn is the invented column after s Myr.
@@ -117,7 +127,7 @@ func TestHistoryData(t *testing.T) {
 	th := madeUpThermal(t)
 	f := thermalFigures(t, th, 0)[0]
 	s := checkFigure(t, f)
-	want := []string{"Temperature (°C)", "Depth (km)", "Depth (km)", "", "Age (Ma)", "Temperature (°C)", "Heat flow (mW/m²)", "Time (Myr)"}
+	want := []string{"Temperature (°C)", "Depth (km)", "Depth (km)", "", "Age (Ma)", "Temperature (°C)", "Heat flow (mW/m²)", "", "Elevation (km)", "Force (10¹² N/m)", "Time (Myr)"}
 	if !slices.Equal(s.axes, want) {
 		t.Errorf("axes %q, want %q", s.axes, want)
 	}
@@ -125,6 +135,12 @@ func TestHistoryData(t *testing.T) {
 	for i, sec := range th.History.Time {
 		if !near(base.x[i], sec/myr) || !near(base.y[i], th.History.RootBase[i]-273.15) || !near(flow.y[i], th.History.SurfaceFlow[i]*1e3) {
 			t.Fatalf("after %g Myr: %g °C, %g mW/m²", base.x[i], base.y[i], flow.y[i])
+		}
+	}
+	height, force := s.named(t, "elevation"), s.named(t, "force")
+	for i, sec := range th.History.Time {
+		if !near(height.x[i], sec/myr) || !near(height.y[i], th.Elevation[i]/1e3) || !near(force.y[i], th.Force[i]/1e12) {
+			t.Fatalf("after %g Myr: %g km, %g TN/m", height.x[i], height.y[i], force.y[i])
 		}
 	}
 	mantle := s.named(t, "base of mantle")

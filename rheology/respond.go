@@ -35,7 +35,7 @@ func (f *Flow) Respond(eII, T, P float64) (Response, error) {
 		return Response{}, fmt.Errorf("rheology: no stress found for %g 1/s at T = %g K, P = %g Pa", eII, T, P)
 	}
 	tau, n, yields, limited := f.capped(&c, P)
-	r := Response{Stress: tau, Exponent: n, Yielding: yields, Limited: limited, Capped: f.limits.Highest > 0 && last > 0.5 && !yields}
+	r := Response{Stress: tau, Exponent: n, Slope: 1 / c.n, Yielding: yields, Limited: limited, Capped: f.limits.Highest > 0 && last > 0.5 && !yields}
 	if f.follows {
 		r.GrainSize = f.piezo.GrainSize(math.Exp(c.x))
 	}
@@ -43,6 +43,7 @@ func (f *Flow) Respond(eII, T, P float64) (Response, error) {
 		dash := 2 * low * eII
 		r.Stress = tau + dash
 		r.Exponent = r.Stress / (tau/n + dash) // d ln ε/d ln τ of the two side by side
+		r.Slope = (tau/c.n + dash) / r.Stress
 		r.Floored = dash > tau
 	}
 	r.Viscosity = r.Stress / eII / 2

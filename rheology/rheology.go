@@ -78,6 +78,7 @@ type Response struct {
 	Stress    float64 // τ_II, Pa
 	Viscosity float64 // τ_II/(2 ε_II), Pa s
 	Exponent  float64 // tangent exponent n = d ln ε_II/d ln τ_II
+	Slope     float64 // d ln τ_II/d ln ε_II of the law's own curve: 1/n but where n is limited or at a grain size held
 	Capped    bool    // more than half the strain rate is taken by the upper limit
 	Floored   bool    // more than half the stress is carried by the lower limit
 	Yielding  bool    // friction decides: creep alone would bear more than the yield stress

@@ -30,7 +30,7 @@ func newColumnCmd(s Streams) *cobra.Command {
 			}
 			value := report.Column(p, st)
 			value.DepthOf = report.DepthsJSON(depths)
-			more := []report.Table{report.WeightTable(st)}
+			more := []report.Table{report.WeightTable(st), report.IsostasyTable(p, st)}
 			if p.GeothermFit != nil {
 				more = append(more, report.SamplesTable(p.GeothermFit))
 			}
@@ -41,7 +41,8 @@ func newColumnCmd(s Streams) *cobra.Command {
 		})
 	cmd.Long = `Prints the column as it is at the start: for every layer its depths, temperature,
 pressure, density, viscosity and creep; and what it weighs against the rock below it,
-with the garnet share, reaction extent or melt fraction at which that changes sign.
+with the garnet share, reaction extent or melt fraction at which that changes sign; how
+high it stands by isostasy, with its root and without, and the force that drives.
 
 With --out DIR it draws the column and its strength: the differential stress that each
 rock bears at the background strain rate, by creep or, where that is weaker, by friction.

@@ -23,12 +23,14 @@ import (
 func newHistoryCmd(s Streams) *cobra.Command {
 	var asked string
 	cmd, _ := newPartCmd(s, "history FILE", "Temperature through time: events, markers' pressure-temperature paths, clocks",
-		func(ctx context.Context, o *options, p *race.Problem, _ *state.State) (*part, error) {
+		func(ctx context.Context, o *options, p *race.Problem, st *state.State) (*part, error) {
 			past, err := history(ctx, p, asked)
 			if err != nil {
 				return nil, o.atEvent(err)
 			}
+			past.Stand(st)
 			drawn := &plots.Thermal{History: past.History, Shown: past.Shown, Events: p.Events, Fit: p.GeothermFit, HasTimeZero: p.HasTimeZero, TimeZero: p.TimeZero}
+			drawn.Elevation, drawn.Force = past.Elevations()
 			return &part{name: "history", text: report.HistoryPage(past), value: report.History(past),
 				table: report.HistoryTable(past), more: report.HistoryTables(past),
 				figures: func(w vg.Length) ([]plots.Figure, error) {
@@ -43,8 +45,9 @@ func newHistoryCmd(s Streams) *cobra.Command {
 		})
 	cmd.Long = `Follows the column's temperature from the start to the end of drip.window: conduction,
 stretching and the events of the experiment, with melting and reaction where rocks have
-them. Prints what happens, the column against time, every marker's path, when clocks
-close, and the geotherm's fit to samples where it was fitted.
+them. Prints what happens, the column against time, how high it stands by isostasy and
+the force that drives, every marker's path, when clocks close, and the geotherm's fit to
+samples where it was fitted.
 
 The root neither drips nor is it cut by shear zones here: keelfall run judges that.`
 	cmd.Example = `  keelfall history arc.yaml --out arc

@@ -202,18 +202,15 @@ func newDripCmd(s Streams) *cobra.Command {
 
 func newExciseCmd(s Streams) *cobra.Command {
 	cmd, _ := newPartCmd(s, "excise FILE", "When shear zones have cut the root out",
-		func(_ context.Context, _ *options, p *race.Problem, st *state.State) (*part, error) {
+		func(ctx context.Context, _ *options, p *race.Problem, st *state.State) (*part, error) {
 			r := &race.Result{Problem: p, State: st}
 			var err error
-			if r.Excision, err = race.Excise(p, st); err != nil {
+			if r.Excision, err = race.ExciseStudy(ctx, p, st); err != nil {
 				return nil, err
 			}
-			out := &part{name: "excise", text: report.ExcisionPage(p, r), value: report.Excision(p, st, r.Excision), table: report.ExcisionTable(r),
-				warnings: report.ExcisionWarnings(p, st, r.Excision)}
-			if len(p.Zones) > 0 {
-				out.figures = one(func(w vg.Length) (plots.Figure, error) { return plots.Fates(r, w) })
-			}
-			return out, nil
+			return &part{name: "excise", text: report.ExcisionPage(p, r), value: report.Excision(p, st, r.Excision), table: report.ExcisionTable(r), more: report.ExcisionTables(r),
+				figures:  func(w vg.Length) ([]plots.Figure, error) { return plots.Excisions(r, w) },
+				warnings: report.ExcisionWarnings(p, st, r.Excision)}, nil
 		})
 	return cmd
 }

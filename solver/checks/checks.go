@@ -65,4 +65,4 @@ func All() []Check {
 	return all
 }
 
-var groups = []func() []Check{growthChecks, thermalChecks, fateChecks, heatChecks, conductionChecks, rockChecks, creepChecks, clockChecks, softeningChecks, courseChecks}
+var groups = []func() []Check{growthChecks, thermalChecks, fateChecks, heatChecks, conductionChecks, rockChecks, creepChecks, clockChecks, softeningChecks, courseChecks, isostasyChecks, zoneChecks}

@@ -97,6 +97,8 @@ func thermalChecks() []Check {
 				return []float64{r.Growth, r.Imaginary}[i], nil
 			}})
 	}
+	list = append(list, Check{"drip of a hot root whose heat does not diffuse, followed as a state, against the same densities typed as gradients of composition: ratio of the drip times", "", 1, 2e-6,
+		"a parcel that keeps its heat sinks like one that keeps its composition, derived", Derived, heatTyped})
 	return append(list, Check{"hot layer of one rock over an inviscid base, no density jump, λ = 100 km", "1/s", 2.711342845e-14, 1e-9,
 		"derived; collocation in 30 digits by a second hand, T' = −ξ dT₀/dz at the base", Derived, overFluid})
 }

@@ -61,8 +61,8 @@ func (d *through) drips(ctx context.Context, r *Result) error {
 		if next, err = d.best(ctx, 1, d.limit(), 5e-3); err != nil {
 			return err
 		}
-		if math.IsInf(next.Time, 1) {
-			return nil
+		if next, err = d.warmNext(ctx, next); err != nil || math.IsInf(next.Time, 1) {
+			return err
 		}
 	}
 }

@@ -19,7 +19,7 @@ func TimeAt(ctx context.Context, s *state.State, set Settings, wavelength float6
 		if err != nil {
 			return 0, err
 		}
-		run := softSearch{soft: f, set: set, stop: p.stop, depth: p.thickness}
+		run := softSearch{soft: f, set: set, stop: p.stop, depth: p.thickness, horizon: Horizon}
 		d, err := run.follow(ctx, wavelength, math.Inf(1))
 		return run.best(d), err
 	}
@@ -27,7 +27,7 @@ func TimeAt(ctx context.Context, s *state.State, set Settings, wavelength float6
 	if err != nil {
 		return 0, err
 	}
-	return p.time(f, 1), nil
+	return p.warmTime(s, Fastest{p.time(f, 1), wavelength})
 }
 
 // ThroughTimeAt is TimeAt in a column that changes with time, of a wavelength at its

@@ -13,31 +13,32 @@ const (
 	fastAccuracy = 1e-6 // of η; of a coarse law 64 times that
 )
 
-// binade is η at the ends of the pieces, with its slope per piece, and d ln η/d ln ε_II.
+// binade is η at the ends of the pieces, with its slope per piece, and 1/n − 1.
 type binade struct {
-	node  []binadeEnd
-	rough bool // the cubics are not good enough here
+	node     []binadeEnd
+	perPiece float64 // 1/ε_II² of a piece
+	rough    bool    // the cubics are not good enough here
 }
 
-type binadeEnd struct{ eta, step, slope float64 }
+type binadeEnd struct{ eta, step, tangent float64 }
 
-// eta returns η and about d ln η/d ln ε_II at ε_II² = e2, which must lie between the
+// eta returns η, dη/d(ε_II²) and about 1/n − 1 at ε_II² = e2, which must lie between the
 // table's ends.
-func (l *nodeLaw) eta(e2 float64) (eta, slope float64, err error) {
+func (l *nodeLaw) eta(e2 float64) (eta, rise, tangent float64, err error) {
 	bits := math.Float64bits(e2)
 	i := int(bits>>52) - 1023 - lowestBinade
 	if i < 0 || i >= binades {
-		return l.slow(e2)
+		return l.plain(e2)
 	}
 	b := l.fast.at(i)
 	if b == nil {
 		if b, err = l.fillBinade(i); err != nil {
-			return 0, 0, err
+			return 0, 0, 0, err
 		}
 		l.fast.put(i, b)
 	}
 	if b.rough {
-		return l.slow(e2)
+		return l.plain(e2)
 	}
 	shift := 52 - l.bits
 	j := int(bits>>shift) & (1<<l.bits - 1)
@@ -45,12 +46,15 @@ func (l *nodeLaw) eta(e2 float64) (eta, slope float64, err error) {
 	t := float64(bits&rest) / float64(rest+1)
 	a, c := &b.node[j], &b.node[j+1]
 	d := c.eta - a.eta
-	return a.eta + t*(a.step+t*(3*d-2*a.step-c.step+t*(a.step+c.step-2*d))), a.slope, nil
+	c2, c3 := 3*d-2*a.step-c.step, a.step+c.step-2*d
+	return a.eta + t*(a.step+t*(c2+t*c3)), (a.step + t*(2*c2+3*t*c3)) * b.perPiece, a.tangent, nil
 }
 
-func (l *nodeLaw) slow(e2 float64) (eta, slope float64, err error) {
-	lnEta, slope, err := l.at(0.5 * math.Log(e2))
-	return math.Exp(lnEta), slope, err
+// plain is eta without the pieces.
+func (l *nodeLaw) plain(e2 float64) (eta, rise, tangent float64, err error) {
+	e, err := l.at(0.5 * math.Log(e2))
+	eta = math.Exp(e.y)
+	return eta, eta * e.slope / (2 * e2), e.tangent, err
 }
 
 // fillBinade tabulates one power of two. Cubics over two pieces at a time miss the value
@@ -58,15 +62,15 @@ func (l *nodeLaw) slow(e2 float64) (eta, slope float64, err error) {
 func (l *nodeLaw) fillBinade(i int) (*binade, error) {
 	left := math.Ldexp(1, lowestBinade+i)
 	n := 1 << l.bits
-	b := &binade{node: make([]binadeEnd, n+1)}
+	b := &binade{node: make([]binadeEnd, n+1), perPiece: float64(n) / left}
 	for j := range n + 1 {
 		e2 := left * (1 + float64(j)/float64(n))
-		eta, slope, err := l.slow(e2)
+		eta, rise, tangent, err := l.plain(e2)
 		if err != nil {
 			return nil, err
 		}
-		b.rough = b.rough || l.exactly(0.5*math.Log(e2)) // the law's own exponent may be held at a limit
-		b.node[j] = binadeEnd{eta, eta * slope / (2 * e2) * left / float64(n), slope}
+		b.rough = b.rough || l.exactly(0.5*math.Log(e2))
+		b.node[j] = binadeEnd{eta, rise / b.perPiece, tangent}
 	}
 	accuracy := fastAccuracy
 	if l.wide != nil {

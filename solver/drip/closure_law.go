@@ -29,10 +29,18 @@ type nodeLaw struct {
 	wide  *wideLaw // nil where not coarse
 }
 
-// lawPiece is one cell: ln η and its slope times the part's width, at the ends of parts.
+// lawEnd is the law at one ε_II.
+type lawEnd struct {
+	known   bool
+	y       float64 // ln η
+	slope   float64 // d ln η/d ln ε_II, as ln η has it: what tables are made with
+	tangent float64 // 1/n − 1: the same but where n is limited or at a grain size held
+}
+
+// lawPiece is one cell: the law at the ends of parts.
 type lawPiece struct {
-	parts    float64 // 0: the law itself
-	y, slope []float64
+	parts float64 // 0: the law itself
+	ends  []lawEnd
 }
 
 // newNodeLaw makes a law of one depth; a coarse one is good to wideAccuracy and costs less
@@ -44,17 +52,17 @@ func newNodeLaw(s *state.State, layer int, z float64, coarse bool) nodeLaw {
 	return nodeLaw{state: s, layer: layer, z: z, bits: pieceBits, cells: make([]*lawPiece, lawCells)}
 }
 
-// exact returns ln η and d ln η/d ln ε_II from the law.
-func (l *nodeLaw) exact(lnRate float64) (lnEta, slope float64, err error) {
+// exact asks the law at ln ε_II.
+func (l *nodeLaw) exact(lnRate float64) (lawEnd, error) {
 	r, err := l.state.ResponseAt(l.layer, l.z, math.Exp(lnRate))
 	if err != nil {
-		return 0, 0, err
+		return lawEnd{}, err
 	}
-	return math.Log(r.Viscosity), 1/r.Exponent - 1, nil
+	return lawEnd{true, math.Log(r.Viscosity), r.Slope - 1, 1/r.Exponent - 1}, nil
 }
 
-// at returns ln η and d ln η/d ln ε_II at ln ε_II.
-func (l *nodeLaw) at(lnRate float64) (lnEta, slope float64, err error) {
+// at returns the law at ln ε_II.
+func (l *nodeLaw) at(lnRate float64) (lawEnd, error) {
 	if l.wide != nil {
 		return l.wideAt(lnRate)
 	}
@@ -62,8 +70,9 @@ func (l *nodeLaw) at(lnRate float64) (lnEta, slope float64, err error) {
 	i := min(int(x), lawCells-1)
 	p := l.cells[i]
 	if p == nil {
+		var err error
 		if p, err = l.fill(i); err != nil {
-			return 0, 0, err
+			return lawEnd{}, err
 		}
 		l.cells[i] = p
 	}
@@ -71,9 +80,14 @@ func (l *nodeLaw) at(lnRate float64) (lnEta, slope float64, err error) {
 		return l.exact(lnRate)
 	}
 	t := (x - float64(i)) * p.parts
-	j := min(int(t), len(p.y)-2)
-	lnEta, slope = hermite(t-float64(j), p.y[j], p.y[j+1], p.slope[j], p.slope[j+1])
-	return lnEta, slope * p.parts / lawCell, nil
+	j := min(int(t), len(p.ends)-2)
+	return p.ends[j].toward(&p.ends[j+1], t-float64(j), lawCell/p.parts), nil
+}
+
+// toward is the law at t, 0 to 1, between two ends that are h apart in ln ε_II.
+func (a *lawEnd) toward(b *lawEnd, t, h float64) lawEnd {
+	y, s := hermite(t, a.y, b.y, a.slope*h, b.slope*h)
+	return lawEnd{true, y, s / h, a.tangent + t*(b.tangent-a.tangent)}
 }
 
 // hermite is the cubic with values a, b and slopes p, q at 0 and 1, and its slope.
@@ -88,23 +102,23 @@ func (l *nodeLaw) fill(i int) (*lawPiece, error) {
 	left := lowestLnRate + lawCell*float64(i)
 	for parts := 1; parts <= lawParts; parts *= 2 {
 		h := lawCell / float64(parts)
-		p := &lawPiece{parts: float64(parts), y: make([]float64, parts+1), slope: make([]float64, parts+1)}
-		for j := range p.y {
-			y, s, err := l.exact(left + h*float64(j))
+		p := &lawPiece{float64(parts), make([]lawEnd, parts+1)}
+		for j := range p.ends {
+			e, err := l.exact(left + h*float64(j))
 			if err != nil {
 				return nil, err
 			}
-			p.y[j], p.slope[j] = y, s*h
+			p.ends[j] = e
 		}
 		good := true
 		for j := 0; j < parts && good; j++ {
 			for _, t := range [2]float64{0.3, 0.7} { // not the middle, where slopes equally wrong cancel
-				y, _, err := l.exact(left + h*(float64(j)+t))
+				e, err := l.exact(left + h*(float64(j)+t))
 				if err != nil {
 					return nil, err
 				}
-				got, _ := hermite(t, p.y[j], p.y[j+1], p.slope[j], p.slope[j+1])
-				good = good && math.Abs(got-y) <= lawAccuracy
+				got := p.ends[j].toward(&p.ends[j+1], t, h)
+				good = good && math.Abs(got.y-e.y) <= lawAccuracy
 			}
 		}
 		if good {

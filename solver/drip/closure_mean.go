@@ -31,6 +31,9 @@ func init() {
 type mean struct {
 	lnS, lnN float64 // ln η_S, ln η_N
 	exponent float64 // n at the mean ln ε_II
+	// gainS and gainN are how ln η_S and ln η_N rise with ln of the undulation's strain
+	// rates, both at once.
+	gainS, gainN float64
 }
 
 // closure averages the rock's law over a wavelength, with
@@ -47,12 +50,12 @@ func (l *nodeLaw) closure(shear, normal float64, b rates, least float64) (mean, 
 	if b.d != 0 {
 		points *= 2
 	}
-	var etaS, etaN, cross, slopes, largest float64
+	var etaS, etaN, cross, riseS, riseN, riseCross, tangents, largest float64
 	for q := range points {
 		c, s := cosX[q], sinX[q]
 		n := b.d - normal*c
 		e2 := math.Max(n*n+s2*s*s+rest, least)
-		eta, slope, err := l.eta(e2)
+		eta, rise, tangent, err := l.eta(e2)
 		if err != nil {
 			return mean{}, err
 		}
@@ -61,27 +64,47 @@ func (l *nodeLaw) closure(shear, normal float64, b rates, least float64) (mean, 
 		etaS += eta * s * s
 		etaN += eta * c * c
 		cross += eta * c
-		slopes += p * slope
+		rise *= 2 * p * (s2*s*s - n*normal*c) // dη/d ln of the undulation
+		riseS += rise * s * s
+		riseN += rise * c * c
+		riseCross += rise * c
+		tangents += p * tangent
 		largest = math.Max(largest, e2)
 	}
-	etaS, etaN = 2*etaS, 2*etaN
 	if b.d != 0 { // both halves of the half
-		etaS, etaN, cross, slopes = etaS/2, etaN/2, cross/2, slopes/2
+		etaS, etaN, cross, tangents = etaS/2, etaN/2, cross/2, tangents/2
+		riseS, riseN, riseCross = riseS/2, riseN/2, riseCross/2
+	}
+	etaS, etaN, riseS, riseN = 2*etaS, 2*etaN, 2*riseS, 2*riseN
+	if b.d != 0 {
 		plain := etaN
 		if math.Abs(normal) < 1e-6*math.Sqrt(largest) {
-			e2 := b.second*b.second + s2/2 // the limit: cos² and dη/d(ε_II²)
-			eta, slope, err := l.slow(math.Max(e2, least))
+			e2 := math.Max(b.second*b.second+s2/2, least) // the limit: cos² and dη/d(ε_II²)
+			_, rise, _, err := l.plain(e2)
 			if err != nil {
 				return mean{}, err
 			}
-			etaN += b.d * b.d * eta * slope / math.Max(e2, least)
+			etaN += 2 * b.d * b.d * rise
+			riseN = 0
 		} else {
 			etaN -= 2 * b.d * cross / normal
+			riseN -= 2 * b.d * (riseCross - cross) / normal
 		}
 		etaN = math.Max(etaN, 1e-6*plain) // positive for every law that hardens with rate; rounding
 	}
-	return mean{math.Log(etaS), math.Log(etaN), 1 / (1 + slopes)}, nil
+	return mean{math.Log(etaS), math.Log(etaN), 1 / (1 + tangents), riseS / etaS, riseN / etaN}, nil
 }
 
 // rates describe the background: d, e_z and the second invariant ε₀, 1/s.
 type rates struct{ d, vertical, second float64 }
+
+// least is the ε_II² below which rock is not asked: 1e-12 of the column's largest rate,
+// which no flow feels, so that the viscosities of rock at rest stay finite.
+func (f *Soft) least(b *softBand) float64 {
+	most := f.background.second * f.background.second
+	for i, s := range b.flow.Shear {
+		n := b.flow.Normal[i]
+		most = math.Max(most, s*s/4+n*n)
+	}
+	return math.Max(1e-24*most, math.Exp(2*lowestLnRate))
+}

@@ -23,6 +23,22 @@ func (b *softBand) guess(size float64) {
 	}
 }
 
+// set hands x to the flow.
+func (b *softBand) set() {
+	nodes := len(b.flow.Depth)
+	for i := range nodes {
+		b.flow.EtaS[i], b.flow.EtaN[i] = math.Exp(b.x[i]), math.Exp(b.x[len(b.laws)+i])
+	}
+	for i, e := range b.edges {
+		eta := math.Exp(b.x[nodes+i])
+		if e.above {
+			b.flow.Above[e.contact] = eta
+		} else {
+			b.flow.Below[e.contact] = eta
+		}
+	}
+}
+
 // keep remembers a fixed point, in place of the latest where that is at the same amplitude.
 func (b *softBand) keep(size float64) {
 	if !(size > 0) {
@@ -73,7 +89,7 @@ func (f *Soft) flowing(k float64, y []float64) (flowing, error) {
 	out := flowing{a: m, exponent: math.Max(1, b.n), over: b.over}
 	_, last, _ := f.state.Column.RootSpan()
 	for i, l := range b.flow.Layer {
-		if l == last { // the lowest node counts
+		if f.layer[l] == last { // the lowest node counts
 			out.strain, out.stress = b.own(i)
 		}
 	}
@@ -105,6 +121,7 @@ type anderson struct {
 	dx, dr [depth][]float64
 	x, r   []float64 // the step before
 	now    []float64
+	weight []float64
 	kept   int // differences that hold
 	at     int
 	least  float64
@@ -124,19 +141,26 @@ func (a *anderson) slower() {
 	a.damp = damp
 }
 
-// step replaces x by the next guess, given the map's answer to x. The plain step is
-// x + ω (answer − x), ω = 2n/(n + 1), which alone contracts like (n − 1)/(n + 1).
-func (a *anderson) step(x, answer, omega []float64, nodes int) {
+// stepFactor is ω of the plain step x + ω (answer − x), x = ln η, where ln η rises by gain
+// with ln of the undulation's strain rate, −1 to 0: it multiplies a miss by 1 − ω at a given
+// strain rate and by 1 − ω (1 + gain) at a given stress, opposites at ω = 2/(2 + gain). In
+// a power law that is 2n/(n + 1), which alone contracts like (n − 1)/(n + 1).
+func stepFactor(gain float64) float64 { return 2 / (2 + math.Min(math.Max(gain, -1), 0)) }
+
+// leastShare is what a viscosity counts for in the mixing at least: one that bears no
+// dissipation may not decide, nor go astray.
+const leastShare = 1e-4
+
+// step replaces x by the next guess, given the map's answer to x. Misses count by the share
+// of the dissipation that their viscosity bears.
+func (a *anderson) step(x, answer, omega, share []float64) {
 	n := len(x)
-	a.now = slices.Grow(a.now[:0], n)[:n]
+	a.now, a.weight = slices.Grow(a.now[:0], n)[:n], slices.Grow(a.weight[:0], n)[:n]
 	var size float64
 	for i := range x {
-		w := i
-		if i >= len(omega) {
-			w = i - len(omega)
-		}
-		a.now[i] = a.damp * omega[w] * (answer[i] - x[i])
-		size += a.now[i] * a.now[i]
+		a.now[i] = a.damp * omega[i] * (answer[i] - x[i])
+		a.weight[i] = math.Max(share[i], leastShare)
+		size += a.now[i] * a.now[i] * a.weight[i]
 	}
 	if size > 16*a.least { // astray: begin again
 		a.slower()
@@ -158,8 +182,10 @@ func (a *anderson) step(x, answer, omega []float64, nodes int) {
 		for j := range a.kept {
 			v -= g[j] * (a.dx[j][i] + a.dr[j][i])
 		}
-		// an answer further than a factor of e¹² away is not believed
-		x[i] += math.Min(math.Max(v-x[i], -12), 12)
+		// what counts little may not go where its own law does not ask it to, nor anything
+		// by more than a factor of e¹²
+		most := math.Min(12, 1+10*math.Abs(a.now[i]))
+		x[i] += math.Min(math.Max(v-x[i], -most), most)
 	}
 }
 
@@ -168,10 +194,10 @@ func (a *anderson) weights() (g [depth]float64) {
 	var m [depth][depth + 1]float64
 	for i := range a.kept {
 		for j := range i + 1 {
-			m[i][j] = dot(a.dr[i], a.dr[j])
+			m[i][j] = a.dot(a.dr[i], a.dr[j])
 			m[j][i] = m[i][j]
 		}
-		m[i][depth] = dot(a.dr[i], a.now)
+		m[i][depth] = a.dot(a.dr[i], a.now)
 	}
 	for i := range a.kept {
 		m[i][i] *= 1 + 1e-10
@@ -200,6 +226,14 @@ func (a *anderson) weights() (g [depth]float64) {
 func dot(a, b []float64) (s float64) {
 	for i, v := range a {
 		s += v * b[i]
+	}
+	return s
+}
+
+// dot is a product in which everything counts by its weight.
+func (a *anderson) dot(u, v []float64) (s float64) {
+	for i, w := range a.weight {
+		s += w * u[i] * v[i]
 	}
 	return s
 }

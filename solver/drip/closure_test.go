@@ -2,7 +2,7 @@ package drip_test
 
 import (
 	"math"
-	"strings"
+	"slices"
 	"testing"
 
 	"keelfall/column"
@@ -156,16 +156,37 @@ func TestClosureNewtonian(t *testing.T) {
 	}
 }
 
-func TestClosureRefuses(t *testing.T) {
+// A layer that grades has displacements inside it between those of its interfaces.
+func TestClosureGraded(t *testing.T) {
 	c := arc(3450)
 	c.Layers[0].Density = column.Linear{Top: 2700, Bottom: 2900}
 	s, err := state.New(c, 1e-15)
 	if err != nil {
 		t.Fatal(err)
 	}
-	if _, err := drip.NewSoft(s, drip.Background{}); err == nil || !strings.Contains(err.Error(), "crust") {
-		t.Errorf("a graded layer: %v", err)
+	f := newSoft(t, s, drip.Background{})
+	at := f.Interfaces()
+	if n := f.States(); n != 11 || !slices.Equal(at, []int{0, 9, 10}) {
+		t.Fatalf("%d displacements, interfaces at %d", n, at)
 	}
+	xi, out := make([]float64, f.States()), make([]float64, f.States())
+	xi[9] = 500 // the crust's denser base rises again, and what is above it less
+	if err := f.Rate(1e-4, xi, out); err != nil {
+		t.Fatal(err)
+	}
+	for i := 2; i < 10; i++ {
+		if !(out[i]/out[9] > out[i-1]/out[9]) {
+			t.Errorf("rates %g", out)
+		}
+	}
+	xi[5] = 500
+	held := make([]float64, len(out))
+	if err := f.Rate(1e-4, xi, held); err != nil || !(held[5] < out[5]) { // stable rock moved down rises too
+		t.Errorf("rates %g with rock displaced, %g without: %v", held, out, err)
+	}
+}
+
+func TestClosureRefuses(t *testing.T) {
 	f := newSoft(t, hanging(t, 3), drip.Background{})
 	out := make([]float64, 2)
 	if err := f.Rate(2e-4, []float64{0, 700}, out); err != nil {

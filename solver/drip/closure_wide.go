@@ -23,14 +23,8 @@ type wideCells struct {
 	cut   []lawEnd // ends of parts, where one part is not enough; empty and not nil: the law itself
 }
 
-// lawEnd is ln η and d ln η/d ln ε_II.
-type lawEnd struct {
-	known    bool
-	y, slope float64
-}
-
 // wideAt is at of a coarse law.
-func (l *nodeLaw) wideAt(lnRate float64) (lnEta, slope float64, err error) {
+func (l *nodeLaw) wideAt(lnRate float64) (lawEnd, error) {
 	w := l.wide
 	x := math.Min(math.Max(lnRate, lowestLnRate), highestLnRate-1e-9) / wideCell
 	i := int(math.Floor(x))
@@ -38,7 +32,7 @@ func (l *nodeLaw) wideAt(lnRate float64) (lnEta, slope float64, err error) {
 	c := &w.cells[i-w.low]
 	if !c.known {
 		if err := l.fillWide(i); err != nil {
-			return 0, 0, err
+			return lawEnd{}, err
 		}
 	}
 	t, ends := x-float64(i), w.ends[i-w.low:i-w.low+2]
@@ -52,8 +46,7 @@ func (l *nodeLaw) wideAt(lnRate float64) (lnEta, slope float64, err error) {
 		j := min(int(t), n-1)
 		t, ends, width = t-float64(j), c.cut[j:j+2], wideCell/float64(n)
 	}
-	lnEta, slope = hermite(t, ends[0].y, ends[1].y, ends[0].slope*width, ends[1].slope*width)
-	return lnEta, slope / width, nil
+	return ends[0].toward(&ends[1], t, width), nil
 }
 
 // reach makes room for cell i.
@@ -77,8 +70,7 @@ func (l *nodeLaw) fillWide(i int) error {
 	left := wideCell * float64(i)
 	ask := func(e *lawEnd, lnRate float64) (err error) {
 		if !e.known {
-			e.y, e.slope, err = l.exact(lnRate)
-			e.known = err == nil
+			*e, err = l.exact(lnRate)
 		}
 		return err
 	}
@@ -97,8 +89,8 @@ func (l *nodeLaw) fillWide(i int) error {
 			if err := ask(&middle[j], left+h*(float64(j)+0.5)); err != nil {
 				return err
 			}
-			y, s := hermite(0.5, parts[j].y, parts[j+1].y, parts[j].slope*h, parts[j+1].slope*h)
-			off := math.Max(math.Abs(y-middle[j].y), math.Abs(s-middle[j].slope*h)/8)
+			got := parts[j].toward(&parts[j+1], 0.5, h)
+			off := math.Max(math.Abs(got.y-middle[j].y), math.Abs(got.slope-middle[j].slope)*h/8)
 			good = good && off <= wideAccuracy
 			if n == 1 && good {
 				return nil

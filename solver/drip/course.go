@@ -17,6 +17,7 @@ type Plan struct {
 	Begin       func() (Motion, error) // the column at time 0, the same every time
 	AlongStrike bool                   // the wavevector runs along strike
 	Reference   float64                // 1/s, at which creep is evaluated where nothing strains the column
+	thermal     string                 // buoyancy of Strained; "": none
 }
 
 const (
@@ -35,17 +36,24 @@ const (
 // with the undulations that follow it, whose error sets its steps, and can then be
 // followed again by others.
 type course struct {
-	plan   Plan
-	tape   *tape
-	span   float64         // s, what the tolerance is for
-	ends   []float64       // of the pairs, where not chosen by error: for tests
-	finer  int             // parts for each that is needed, where not 1: for tests
-	graded map[string]bool // layers whose composition grades, or has
+	view
+	span   float64   // s, what the tolerance is for
+	ends   []float64 // of the pairs, where not chosen by error: for tests
+	finer  int       // parts for each that is needed, where not 1: for tests
 	first  *node
 	legs   []leg
 	relaid relaid
 	h      float64 // next step, s
 }
+
+// view makes nodes of a column that is driven through time.
+type view struct {
+	plan   Plan
+	tape   *tape
+	graded map[string]bool // layers whose composition grades, or has
+}
+
+func newView(p Plan, t *tape) view { return view{p, t, map[string]bool{}} }
 
 // leg is a pair of equal steps or, where mid is nil, a jump.
 type leg struct{ from, mid, end *node }
@@ -78,7 +86,7 @@ type node struct {
 
 // newCourse begins a course where the tape is.
 func newCourse(p Plan, t *tape, until float64) (*course, error) {
-	c := &course{plan: p, tape: t, span: until - t.motion.Time(), graded: map[string]bool{}}
+	c := &course{view: newView(p, t), span: until - t.motion.Time()}
 	c.h = c.span / 200
 	n, err := c.look()
 	if err != nil {
@@ -89,7 +97,7 @@ func newCourse(p Plan, t *tape, until float64) (*course, error) {
 }
 
 // look returns the column where the tape is now.
-func (c *course) look() (*node, error) {
+func (c *view) look() (*node, error) {
 	m := c.tape.motion
 	col, profile, err := m.Snapshot()
 	if err != nil {
@@ -115,7 +123,10 @@ func (c *course) look() (*node, error) {
 	if _, last, ok := col.RootSpan(); ok {
 		n.lay.rootBase, n.root = last+1, col.RootThickness()
 	}
-	n.model = Strained(s, Background{ExtensionRate: e, AlongStrike: c.plan.AlongStrike}, "none")
+	n.model = Strained(s, Background{ExtensionRate: e, AlongStrike: c.plan.AlongStrike}, cmp.Or(c.plan.thermal, "none"))
+	if d := n.model.Diffusion; d != nil { // until it is seen how it changes
+		d.BaseGradientRate = -n.model.VerticalStrain * d.BaseGradient
+	}
 	n.lay.surface = n.model.Top == growth.Free
 	n.lay.base = n.model.Base == growth.HalfSpace || n.model.Base == growth.Inviscid
 	n.marks = make([][]float64, len(col.Layers))
@@ -129,17 +140,33 @@ const year = 365.25 * 86400 // s
 // a field from then on, also where it does not; its parts are in the rock of the node
 // before, where there is one, or anew.
 func (c *course) refine(n, before *node, anew bool) error {
-	for i, name := range n.lay.names {
-		if n.model.Layers[i].Gradient != nil {
-			c.graded[name] = true
-		}
-	}
+	c.grade(n)
 	c.lay(n, before, anew)
 	var err error
 	if n.form, err = growth.NewTemplate(n.model, courseTolerance); err != nil {
 		return fmt.Errorf("at %.4g Myr: %w", n.t/1e6/year, err)
 	}
+	n.warm()
 	return nil
+}
+
+// grade notes which layers of a node grade.
+func (c *view) grade(n *node) {
+	for i, name := range n.lay.names {
+		if n.model.Layers[i].Gradient != nil {
+			c.graded[name] = true
+		}
+	}
+}
+
+// know grades a node and marks its rock there.
+func (c *view) know(n *node) {
+	c.grade(n)
+	for i, name := range n.lay.names {
+		if c.graded[name] {
+			n.marks[i] = n.rocks(i)
+		}
+	}
 }
 
 // errChanged says that the layers changed between two nodes that were to be one pair.
@@ -162,13 +189,9 @@ func (c *course) pair(ctx context.Context, h float64) (leg, error) {
 		if !(*n).lay.same(&l.from.lay) {
 			return l, errChanged
 		}
-		for i, name := range (*n).lay.names {
-			if c.graded[name] || (*n).model.Layers[i].Gradient != nil {
-				c.graded[name], (*n).marks[i] = true, (*n).rocks(i)
-			}
-		}
+		c.know(*n)
 	}
-	if c.drifted(l.from, l.end) { // the leg before keeps its own
+	if c.drifted(l.from, l.end, drift) { // the leg before keeps its own
 		again := *l.from
 		model := *again.model
 		model.Layers, again.marks = slices.Clone(model.Layers), slices.Clone(again.marks)
@@ -179,6 +202,7 @@ func (c *course) pair(ctx context.Context, h float64) (leg, error) {
 		}
 		c.relaid = relaid{of: c.last(), node: l.from}
 	}
+	gradients(l)
 	for _, n := range []*node{l.mid, l.end} {
 		if err := c.refine(n, l.from, false); err != nil {
 			return l, err

@@ -53,7 +53,7 @@ const drift = 0.02
 
 // lay gives the layers of a node that grade their places for parts: those of the node
 // before, or anew for the rock as it is now.
-func (c *course) lay(n, before *node, anew bool) {
+func (c *view) lay(n, before *node, anew bool) {
 	var old layout
 	if before != nil { // n itself, it may be
 		old = before.lay
@@ -131,8 +131,9 @@ func cut(cover []float64, parts, finer int) []float64 {
 	return ends
 }
 
-// drifted says whether the parts of a node no longer fit the rock of another.
-func (c *course) drifted(from, to *node) bool {
+// drifted says whether the parts of a node no longer fit the rock of another, of which such
+// a share may come or go.
+func (c *view) drifted(from, to *node, share float64) bool {
 	for i, name := range from.lay.names {
 		if !c.graded[name] {
 			continue
@@ -142,7 +143,7 @@ func (c *course) drifted(from, to *node) bool {
 			return true
 		}
 		last := cover[len(cover)-1]
-		far := drift * (last - cover[0])
+		far := share * (last - cover[0])
 		if math.Abs(m[0]-cover[0]) > far || math.Abs(m[marked]-last) > far {
 			return true
 		}

@@ -3,6 +3,8 @@ package drip
 import (
 	"slices"
 	"strings"
+
+	"keelfall/solver/growth"
 )
 
 // footRock says whether a layer is rock of the base that came in.
@@ -17,6 +19,12 @@ type layout struct {
 	// of each layer that grades, else nil: the marks of the ends of its parts, and of the
 	// rock that they are in, with the seam where rock came to its base
 	parts, cover [][]float64
+	// where temperature is perturbed: the marks of the ends of the elements of T' in each
+	// layer and shares of their depth below the column, how thick these are in m, and what
+	// numbers their states, which come last
+	heat  [][]float64
+	sizes []float64
+	warm  *growth.Template
 }
 
 // perPart is the number of states of a part: Gauss points of an element.
@@ -37,7 +45,23 @@ func (l *layout) places() (contact, inside []int, n int) {
 			n += perPart * max(0, len(l.parts[i])-1)
 		}
 	}
+	n += l.heatStates()
 	return contact, inside, n
+}
+
+// displaced returns the state of each displacement that a closure takes, −1 of an
+// interface that cannot move, and which of them are those of interfaces.
+func (l *layout) displaced() (states, contact []int) {
+	at, inside, _ := l.places()
+	for i, c := range at {
+		contact, states = append(contact, len(states)), append(states, c)
+		if i < len(l.names) {
+			for q := range perPart * max(0, len(l.parts[i])-1) {
+				states = append(states, inside[i]+q)
+			}
+		}
+	}
+	return states, contact
 }
 
 func (l *layout) same(m *layout) bool {
@@ -87,5 +111,6 @@ func (l *layout) carry(m *layout, y []float64) []float64 {
 			set(j+1, 0)
 		}
 	}
+	l.carryHeat(m, y, out)
 	return out
 }

@@ -30,6 +30,7 @@ type Settings struct {
 	Removes   float64 // share of the root's mass one drip takes
 	Spectrum  string  // what Rough is called: "white" where it is the zero value
 	Rough     Roughness
+	Thermal   string // perturbations of temperature, as in Strained; "": none
 	Softening string // "none": viscosities of one strain rate; "self": the drip's own softens the rock
 }
 
@@ -40,6 +41,16 @@ type Options struct {
 	LimitIs  string  // what the limit is, in words: "the arc's width, 160 km"
 	Near     float64 // m: for Time, a wavelength to look around; 0: the whole range
 	Workers  int     // 0: as many as there are cores
+	Until    float64 // s: for SoftenedTime, a later drip need not be told from none; 0: Horizon
+}
+
+// horizon is how far the closure is followed: its own time is at most 1.4 times the best
+// estimate (Corrections).
+func (o *Options) horizon() float64 {
+	if o.Until > 0 {
+		return math.Min(Horizon, 1.5*o.Until)
+	}
+	return Horizon
 }
 
 // Curve is the drip time at every wavelength.
@@ -58,11 +69,11 @@ type Result struct {
 	TimeLow, TimeHigh float64 // s, for the amplitude × 3 and ÷ 3, each at its own best wavelength
 	SpacingFrom       float64 // m: wavelengths whose drips would follow within 10 % of the time
 	SpacingTo         float64
-	Rate              float64 // 1/s, leading growth rate at the drip's wavelength
-	StrainRate        float64 // 1/s, largest second invariant in the root at the start (amplitude a₀)
-	StrainRateEnd     float64 // 1/s, the same at the drip
-	Unrestricted      Fastest // the same without the limit on wavelength
-	Curve             Curve
+	Rate              float64   // 1/s, leading growth rate at the drip's wavelength
+	StrainRate        float64   // 1/s, largest second invariant in the root at the start (amplitude a₀)
+	StrainRateEnd     float64   // 1/s, the same at the drip
+	Unrestricted      Fastest   // the same without the limit on wavelength
+	Curve             Curve     // without perturbations of temperature, as are Traces
 	History           Amplitude // of the first drip
 	Traces            []Trace   // of all wavelengths of Curve, in its order
 	First             Trace     // of the first drip, with its strain rates and stresses
@@ -71,6 +82,7 @@ type Result struct {
 	Warnings          []string
 	Drips             []Event       // one after the other, in a column that changes; nil in a frozen one
 	Soft              *SelfSoftened // where the drip softens its own rock; else nil
+	Thermal           *Thermal      // what perturbations of temperature change; nil: they are none, or nothing drips without them
 	Mode              *growth.Mode  // leading mode at the drip's wavelength; nil where nothing drips
 }
 
@@ -158,7 +170,14 @@ func Solve(ctx context.Context, s *state.State, set Settings, o Options) (*Resul
 	}
 	r.SpacingFrom, r.SpacingTo = p.spacing(r.Time, r.Wavelength, limit)
 	r.Traces = p.traces(r.Time)
-	if err := p.finish(r); err != nil {
+	u, err := p.warm(ctx, s, limit, r, set.Softening != "self" || newtonian(s))
+	if err != nil {
+		return nil, err
+	}
+	if math.IsInf(r.Time, 1) {
+		return r, nil
+	}
+	if err := p.finish(r, u); err != nil {
 		return nil, err
 	}
 	if w := rateCaution(s, r); w != "" && set.Softening != "self" {

@@ -21,10 +21,11 @@ type follower struct {
 	most  float64    // bound on the growth rates there are, roughly, 1/s
 	due   int        // pairs until it is looked at again
 	parts map[string]int
-	finer int         // parts for each that is needed; 2 in tests
-	size  float64     // amplitude at the start, m; 0: there is none, and it is not followed
-	trace *Trace      // of the base, where asked for
-	kept  []displaced // displacements at the nodes, where asked for
+	heats map[string]int // elements of T' of each layer
+	finer int            // parts for each that is needed; 2 in tests
+	size  float64        // amplitude at the start, m; 0: there is none, and it is not followed
+	trace *Trace         // of the base, where asked for
+	kept  []displaced    // displacements at the nodes, where asked for
 	keep  bool
 	every float64 // s: points of the trace are no further apart
 
@@ -53,12 +54,13 @@ func newGroup(c *course, set Settings, wavelengths []float64, workers int) (*gro
 	n := c.first
 	g := &group{set: set, workers: workers, stopAt: -1, limit: math.Inf(1), strain0: n.strain, strain: n.strain}
 	for _, w := range wavelengths {
-		f := &follower{first: w, parts: map[string]int{}, finer: max(1, c.finer), size: set.Start(w, set.Criterion*n.root)}
+		f := &follower{first: w, parts: map[string]int{}, heats: map[string]int{}, finer: max(1, c.finer), size: set.Start(w, set.Criterion*n.root)}
 		for i := range f.times {
 			f.times[i] = math.Inf(1)
 		}
 		f.lay = n.lay
 		f.lay.parts = f.partsAt(n, w, n.lay.cover)
+		f.heat(n, w, &f.lay)
 		contact, _, states := f.lay.places()
 		f.y = make([]float64, states)
 		b := n.lay.rootBase
@@ -103,9 +105,10 @@ func (g *group) enter(n *node) error {
 			w := g.wavelength(f, n)
 			to := n.lay
 			to.parts = f.partsAt(n, w, n.lay.cover)
+			f.heat(n, w, &to)
 			f.y = f.lay.carry(&to, f.y)
 			f.lay = to
-			if err := matrix(&f.a, form, w, to.parts); err != nil {
+			if err := matrix(&f.a, form, n, w, &f.lay); err != nil {
 				return err
 			}
 			f.bound()
@@ -114,8 +117,12 @@ func (g *group) enter(n *node) error {
 	})
 }
 
-func matrix(dst *[]float64, form *growth.Template, wavelength float64, parts [][]float64) error {
-	a, _, err := form.Matrix(wavelength, parts)
+// matrix fills A of a layout's states at a node, of which form is a twin.
+func matrix(dst *[]float64, form *growth.Template, n *node, wavelength float64, l *layout) error {
+	if err := l.place(form, n, wavelength); err != nil {
+		return err
+	}
+	a, _, err := form.Matrix(wavelength, l.parts)
 	*dst = append((*dst)[:0], a...)
 	return err
 }

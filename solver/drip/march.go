@@ -28,10 +28,11 @@ func (g *group) try(ctx context.Context, l leg) (float64, error) {
 		for _, f := range list {
 			to := from.lay
 			to.parts = f.partsAt(end, g.wavelength(f, end), from.lay.cover)
+			f.heat(from, g.wavelength(f, from), &to)
 			if !sameParts(&to, &f.lay) { // a layer begins to grade, or its rock has come and gone
 				f.y = f.lay.carry(&to, f.y)
 				f.lay = to
-				if err := matrix(&f.a, forms[0], g.wavelength(f, from), to.parts); err != nil {
+				if err := matrix(&f.a, forms[0], from, g.wavelength(f, from), &f.lay); err != nil {
 					return err
 				}
 			}
@@ -40,12 +41,12 @@ func (g *group) try(ctx context.Context, l leg) (float64, error) {
 			if f.due <= 0 {
 				f.bound()
 			}
-			if err := matrix(&f.a1, forms[1], g.wavelength(f, mid), f.lay.parts); err != nil {
+			if err := matrix(&f.a1, forms[1], mid, g.wavelength(f, mid), &f.lay); err != nil {
 				return err
 			}
 		}
 		for _, f := range list {
-			if err := matrix(&f.a2, forms[2], g.wavelength(f, end), f.lay.parts); err != nil {
+			if err := matrix(&f.a2, forms[2], end, g.wavelength(f, end), &f.lay); err != nil {
 				return err
 			}
 		}
@@ -64,7 +65,7 @@ func (g *group) try(ctx context.Context, l leg) (float64, error) {
 
 // sameParts says whether two layouts of the same layers have the same parts.
 func sameParts(a, b *layout) bool {
-	return slices.EqualFunc(a.parts, b.parts, slices.Equal[[]float64])
+	return slices.EqualFunc(a.parts, b.parts, slices.Equal[[]float64]) && slices.EqualFunc(a.heat, b.heat, slices.Equal[[]float64])
 }
 
 // pair fills the states after each of two steps, y ← exp(h A₁/2) exp(h A₀/2) y, and with

@@ -165,13 +165,20 @@ func between(w0, t0, w1, t1, t float64) float64 {
 	return w0 * math.Pow(w1/w0, (t-t0)/(t1-t0))
 }
 
-// finish adds the history, the leading mode and the strain rates of the first drip.
-func (p *problem) finish(r *Result) error {
-	f, err := p.frozen(p.solver, r.Wavelength)
-	if err != nil {
+// undulation is one that is followed in a column that does not change.
+type undulation interface {
+	Base(t float64) float64     // displacement of the root's base at t in s, for a unit undulation at the start
+	States(t float64) []float64 // of growth.System then, as far as they drive the flow
+}
+
+// finish adds the history, the leading mode and the strain rates of the first drip, which
+// is w.
+func (p *problem) finish(r *Result, w answered) (err error) {
+	f := w.undulation
+	if r.Mode, err = w.solver.Mode(r.Wavelength); err != nil {
 		return err
 	}
-	r.Rate = f.Fastest()
+	r.Rate = r.Mode.Growth
 	a := p.set.AmplitudeAt(r.Wavelength)
 	const n = 200
 	for i := 0; i <= n; i++ {
@@ -179,10 +186,7 @@ func (p *problem) finish(r *Result) error {
 		r.History.Time = append(r.History.Time, t)
 		r.History.Base = append(r.History.Base, a*math.Abs(f.Base(t)))
 	}
-	if r.First, err = p.firstTrace(f, a, r.Time); err != nil {
-		return err
-	}
-	if r.Mode, err = p.solver.Mode(r.Wavelength); err != nil {
+	if r.First, err = p.firstTrace(w, a, r); err != nil {
 		return err
 	}
 	if d := math.Abs(r.Mode.Displacement[p.base]); d > 0 {

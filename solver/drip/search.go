@@ -42,7 +42,7 @@ func Time(ctx context.Context, s *state.State, set Settings, o Options) (float64
 			}
 			low, high := best.Wavelength < from*1.05 && from > lowest, best.Wavelength > to/1.05 && to < math.Min(highest, limit)
 			if !math.IsInf(best.Time, 1) && !low && !high {
-				return best.Time, nil
+				return p.warmTime(s, best)
 			}
 			if math.IsInf(best.Time, 1) {
 				break // nothing near drips: look everywhere
@@ -54,7 +54,10 @@ func Time(ctx context.Context, s *state.State, set Settings, o Options) (float64
 		return 0, err
 	}
 	best, err := p.best(1, limit, quick)
-	return best.Time, err
+	if err != nil {
+		return 0, err
+	}
+	return p.warmTime(s, best)
 }
 
 // best returns the first drip from a times the amplitude among wavelengths up to limit,

@@ -42,22 +42,23 @@ const (
 // softCourse is a column through time for undulations that soften their own rock: nodes
 // that all wavelengths share, made as they are needed.
 type softCourse struct {
-	plan      Plan
-	tape      *tape
+	view
 	set       Settings
 	until     float64 // s
 	spacing   float64
+	fine      bool // laws are tabulated as for a column that stands still
 	stretches []*softStretch
 	h         float64 // next distance of nodes, s
 }
 
 func newSoftCourse(p Plan, t *tape, set Settings, until float64) (*softCourse, error) {
-	c := &softCourse{plan: p, tape: t, set: set, until: until, spacing: softSpacing}
+	c := &softCourse{view: newView(p, t), set: set, until: until, spacing: softSpacing}
 	c.h = softBegin * (c.until - t.motion.Time())
 	n, err := c.look()
 	if err != nil {
 		return nil, err
 	}
+	c.fit(n, nil, true)
 	c.stretches = []*softStretch{{nodes: []*softNode{n}}}
 	if t.motion.Time() >= c.until {
 		c.close(c.until)
@@ -85,7 +86,7 @@ func (c *softCourse) close(end float64) {
 
 // look returns the column where the tape is now.
 func (c *softCourse) look() (*softNode, error) {
-	n, err := (&course{plan: c.plan, tape: c.tape}).look()
+	n, err := c.view.look()
 	if err != nil {
 		return nil, err
 	}
@@ -101,19 +102,20 @@ func (l *layout) movable(i int) bool {
 	return contact[i] >= 0
 }
 
-// closure returns the node's Soft.
-func (n *softNode) closure() (*Soft, error) {
+// closure returns the node's Soft, its laws tabulated coarsely or not.
+func (n *softNode) closure(coarse bool) (*Soft, error) {
 	if n.soft == nil {
 		var err error
-		if n.soft, err = NewSoft(n.s, n.back); err != nil {
+		if n.soft, err = newSoft(n.s, n.model, n.back, n.lay.parts); err != nil {
 			return nil, err
 		}
-		n.soft.coarse = true
+		n.soft.coarse = coarse
 	}
 	return n.soft, nil
 }
 
-// extend adds nodes: a pair of equal distances, or what the column is after a jump.
+// extend adds nodes: a pair of equal distances, or what the column is after a jump, or in
+// parts laid out anew.
 func (c *softCourse) extend(ctx context.Context) error {
 	from := c.last()
 	span := c.until - c.first().t
@@ -145,6 +147,17 @@ func (c *softCourse) extend(ctx context.Context) error {
 			h /= 4
 			continue
 		}
+		if c.drifted(from.node, end.node, softDrift) && !(small && c.fresh(from)) {
+			c.tape.back(from.mark)
+			if !c.fresh(from) {
+				c.relay(from)
+				return nil
+			}
+			h = math.Max(h/2, least)
+			continue
+		}
+		c.fit(mid, from, false)
+		c.fit(end, from, false)
 		miss, err := c.miss(from, mid, end)
 		if err != nil {
 			return err
@@ -179,6 +192,7 @@ func (c *softCourse) pair(ctx context.Context, from *softNode, h float64) (mid, 
 		if !(*n).lay.same(&from.lay) {
 			return nil, nil, nil
 		}
+		c.know((*n).node)
 	}
 	return mid, end, nil
 }
@@ -193,6 +207,7 @@ func (c *softCourse) jump(ctx context.Context, t float64) error {
 		return err
 	}
 	c.h = math.Min(c.h, softBegin*(c.until-c.first().t))
+	c.fit(n, c.last(), true)
 	c.close(t)
 	c.stretches = append(c.stretches, &softStretch{nodes: []*softNode{n}})
 	if t >= c.until*(1-1e-12) || n.lay.rootBase < 0 {

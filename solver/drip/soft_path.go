@@ -148,7 +148,7 @@ func (n *softNode) settled(k float64, y []float64) (flowing, error) {
 
 // ready makes a node's closure and drops what another undulation left in it.
 func (p *softPath) ready(n *softNode, k float64) error {
-	f, err := n.closure()
+	f, err := n.closure(!p.course.fine)
 	if err != nil {
 		return err
 	}
@@ -202,7 +202,7 @@ func (p *softPath) hasten(f *flowing, t, ez float64) {
 	f.strain *= faster
 }
 
-// jump carries displacements of all interfaces into the next stretch; false where there is
+// jump carries displacements into the next stretch; false where there is
 // no root any more.
 func (p *softPath) jump(r *softRun) bool {
 	s := p.course.stretches
@@ -212,17 +212,18 @@ func (p *softPath) jump(r *softRun) bool {
 	if to.rootBase < 0 || !to.movable(to.rootBase) {
 		return false
 	}
-	old, _, n := from.places()
+	_, _, n := from.places()
 	states := make([]float64, n)
+	old, _ := from.displaced()
 	for i, c := range old {
 		if c >= 0 {
 			states[c] = r.y[i]
 		}
 	}
 	states = from.carry(&to, states)
-	contact, _, _ := to.places()
-	r.y, r.base = make([]float64, len(contact)), to.rootBase
-	for i, c := range contact {
+	now, contact := to.displaced()
+	r.y, r.base = make([]float64, len(now)), contact[to.rootBase]
+	for i, c := range now {
 		if c >= 0 {
 			r.y[i] = states[c]
 		}

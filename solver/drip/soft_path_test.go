@@ -262,7 +262,7 @@ func TestSoftBruteForce(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		c := &softCourse{plan: p, tape: tp, set: set}
+		c := &softCourse{view: newView(p, tp), set: set}
 		h := w.Time * 1.02 / steps
 		var lay layout
 		y, time := []float64(nil), 0.0

@@ -51,15 +51,14 @@ func (c *softCourse) probe(n *softNode) error {
 	if err != nil {
 		return err
 	}
-	contact, _, _ := n.lay.places()
 	for _, kh := range [3]float64{2, 0.7, 0.25} {
 		m, err := s.System(2 * math.Pi * n.root / kh)
 		if err != nil {
 			return err
 		}
-		at, ez := contact[b], n.model.VerticalStrain
+		at, ez := m.Interface[b], n.model.VerticalStrain
 		e := probe{bb: m.A[at*m.N+at] - ez}
-		if top := contact[0]; top >= 0 {
+		if top := m.Interface[0]; top >= 0 {
 			e.bs, e.sb, e.ss = m.A[at*m.N+top], m.A[top*m.N+at], m.A[top*m.N+top]-ez
 		}
 		n.probed = append(n.probed, e)

@@ -61,6 +61,9 @@ func throughSoft(ctx context.Context, p Plan, set Settings, o Options) (*Result,
 	if err := q.answer(ctx, win, r); err != nil || math.IsInf(r.Time, 1) {
 		return r, err
 	}
+	if r.Thermal, err = linearThermal(ctx, p, set, o, r.InitialWavelength); err != nil {
+		return nil, err
+	}
 	return r, q.drips(ctx, win, r)
 }
 
@@ -142,10 +145,11 @@ func (q *softThrough) follow(ctx context.Context, wavelength float64, b boost, l
 	}
 	p := &softPath{ctx: ctx, course: q.course, first: wavelength, boost: b, a0: a / n.root,
 		cores: q.o.Workers != 1, seen: map[*softBand]bool{}}
-	r := newSoftRun(p, n.lay.rootBase, q.error, limit)
+	states, contact := n.lay.displaced()
+	r := newSoftRun(p, contact[n.lay.rootBase], q.error, limit)
 	r.fades, r.t, r.begun = false, n.t, n.t
 	r.slowest = 0.01 / (limit - n.t)
-	r.y = make([]float64, len(n.lay.names)+1)
+	r.y = make([]float64, len(states))
 	r.y[r.base] = a
 	r.d.Wavelength = wavelength
 	err := p.descend(r)
@@ -181,7 +185,11 @@ func (p *softPath) descend(r *softRun) error {
 		}
 		if end == overturned {
 			a, _, _ := p.nodes(r.t)
-			r.d.Ended = overturn(a.s.Column, r.y)
+			f, err := a.closure(!p.course.fine)
+			if err != nil {
+				return err
+			}
+			r.d.Ended = f.overturn(r.y)
 		}
 		if end != landed || p.at == len(p.course.stretches)-1 || !p.jump(r) {
 			return nil

@@ -3,6 +3,10 @@ package drip
 import (
 	"math"
 	"testing"
+
+	"keelfall/column"
+	"keelfall/rheology"
+	"keelfall/solver/heat"
 )
 
 // The whole answer answers the quick one, and its drips come one after another.
@@ -63,4 +67,57 @@ func BenchmarkSoftCourseTime(b *testing.B) {
 			b.Fatal(err)
 		}
 	}
+}
+
+// The same in a column that is strained, without friction and where friction decides.
+func BenchmarkSoftStrained(b *testing.B) {
+	for _, v := range []struct {
+		name   string
+		column *column.Column
+	}{{"creep", sticky(1750, 0.003)}, {"friction", breaking()}} {
+		b.Run(v.name, func(b *testing.B) {
+			set := softly()
+			for b.Loop() {
+				if _, err := ThroughTime(ctx, strainedBy(v.column, 3e-16), set, Options{Workers: 1, Near: 200e3}); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
+	}
+}
+
+// Where friction decides, the coarse tables and those that agree with the law to 1e-6 give
+// one drip time.
+func TestSoftFriction(t *testing.T) {
+	set := softly()
+	for _, lambda := range []float64{100e3, 200e3} {
+		var times [2]float64
+		for i := range times {
+			q := soften(t, strainedBy(breaking(), 3e-16), set)
+			q.course.fine = i == 1
+			times[i] = q.must(t, lambda, slow).Time
+		}
+		t.Logf("%g km: %.7g and %.7g Myr", lambda/1e3, times[0]/myr, times[1]/myr)
+		if !(math.Abs(times[0]/times[1]-1) < 1e-4) {
+			t.Errorf("%g m: %g s, finely %g", lambda, times[0], times[1])
+		}
+	}
+}
+
+// breaking is sticky with friction in its crust; invented.
+func breaking() *column.Column {
+	c := sticky(1750, 0.003)
+	for i := range 2 {
+		c.Layers[i].Friction = &rheology.Friction{Cohesion: 20e6, Angle: math.Pi / 6, PoreFluid: 0.37}
+	}
+	return c
+}
+
+// strainedBy is a column whose base is made colder, extended at e in 1/s.
+func strainedBy(c *column.Column, e float64) Plan {
+	return Plan{Reference: 1e-15, Begin: func() (Motion, error) {
+		ev, err := heat.Begin(heat.Plan{Column: c, Tolerance: 0.05, ExtensionRate: e,
+			Events: []heat.Event{{Verb: "change-base", Temperature: 1600}}})
+		return Heated{ev}, err
+	}}
 }

@@ -4,8 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
-
-	"keelfall/column"
+	"slices"
 )
 
 // Descent is how an undulation of the root's base grows under self-softening.
@@ -65,17 +64,18 @@ func (f *Soft) Time(k, amplitude, stop, horizon float64) (Descent, error) {
 		return Descent{}, err
 	}
 	b.forget()
-	if b.flow.Interface[last+1] < 0 {
+	base := f.contact[last+1]
+	if b.flow.Interface[base] < 0 {
 		return Descent{}, errWall
 	}
 	m := &still{soft: f, k: k, kh: k * f.state.Column.RootThickness(), tip: stop}
-	r := newSoftRun(m, last+1, f.stepError, horizon)
-	r.y = make([]float64, len(f.model.Layers)+1)
+	r := newSoftRun(m, base, f.stepError, horizon)
+	r.y = make([]float64, f.States())
 	r.y[r.base] = amplitude
 	r.d.Wavelength = 2 * math.Pi / k
 	why, err := r.follow()
 	if why == overturned {
-		r.d.Ended = overturn(f.state.Column, r.y)
+		r.d.Ended = f.overturn(r.y)
 	}
 	return r.d, err
 }
@@ -103,16 +103,20 @@ func (m *still) share(n float64) float64 {
 	return Corrections(n, m.kh, 0).Centre
 }
 
-// overturn says in words which interface of a column has moved by more than it is deep,
-// where linear theory has long ended.
-func overturn(c *column.Column, y []float64) string {
+// overturn says in words what has moved by more than the column is deep, where linear
+// theory has long ended.
+func (f *Soft) overturn(y []float64) string {
 	var z float64
 	for i, v := range y {
-		if math.Abs(v) > c.Depth() {
-			return fmt.Sprintf("the interface at %.3g km has moved by more than the column's depth before the root's base has dripped", z/1e3)
+		if math.Abs(v) > f.state.Column.Depth() {
+			what := "rock"
+			if slices.Contains(f.contact, i) {
+				what = "the interface"
+			}
+			return fmt.Sprintf("%s at %.3g km has moved by more than the column's depth before the root's base has dripped", what, z/1e3)
 		}
-		if i < len(c.Layers) {
-			z += c.Layers[i].Thickness
+		if i < len(f.model.Layers) {
+			z += f.model.Layers[i].Thickness
 		}
 	}
 	return ""

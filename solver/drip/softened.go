@@ -69,7 +69,7 @@ func (p *problem) soften(ctx context.Context, s *state.State, set Settings, o Op
 	if err != nil {
 		return err
 	}
-	run := softSearch{soft: f, set: set, stop: set.Criterion * p.thickness, depth: p.thickness}
+	run := softSearch{soft: f, set: set, stop: set.Criterion * p.thickness, depth: p.thickness, horizon: o.horizon()}
 	from, to := p.points[0].Wavelength, p.points[len(p.points)-1].Wavelength
 	limit := math.Inf(1)
 	if o.Limit > 0 {
@@ -148,7 +148,7 @@ func SoftenedTime(ctx context.Context, s *state.State, set Settings, o Options) 
 	if err != nil {
 		return 0, err
 	}
-	run := softSearch{soft: f, set: set, stop: set.Criterion * p.thickness, depth: p.thickness}
+	run := softSearch{soft: f, set: set, stop: set.Criterion * p.thickness, depth: p.thickness, horizon: o.horizon()}
 	from, to := p.solver.Range()
 	if o.From > 0 {
 		from = o.From
@@ -160,15 +160,10 @@ func SoftenedTime(ctx context.Context, s *state.State, set Settings, o Options) 
 		to = math.Min(to, math.Max(o.Limit, from))
 	}
 	from, to = set.within(from, to)
-	perOctave := 4
-	if near := o.Near; near > 0 {
-		from, to = math.Max(from, near/1.5), math.Min(to, near*1.5)
-		if !(to > from) {
-			from, to = near/1.5, near*1.5
-		}
-		perOctave = 2
+	if o.Near > 0 {
+		return run.around(ctx, o.Near, from, to)
 	}
-	best, err := run.search(ctx, from, to, perOctave)
+	best, err := run.search(ctx, from, to, 4)
 	if err != nil {
 		return 0, err
 	}
@@ -183,6 +178,7 @@ type softSearch struct {
 	list        []Descent
 	failed      int
 	ended       string
+	horizon     float64 // s: of the closure's own time
 }
 
 // correction is that of a descent.
@@ -235,7 +231,7 @@ func (q *softSearch) search(ctx context.Context, from, to float64, perOctave int
 
 // follow follows one wavelength; what does not settle is left out and counted.
 func (q *softSearch) follow(ctx context.Context, wavelength, quickest float64) (Descent, error) {
-	limit := math.Min(Horizon, softMargin*quickest)
+	limit := math.Min(q.horizon, softMargin*quickest)
 	from := q.set.Start(wavelength, q.stop)
 	if from == 0 { // no undulation
 		return Descent{Wavelength: wavelength, Time: math.Inf(1), Best: math.Inf(1)}, ctx.Err()
@@ -245,7 +241,7 @@ func (q *softSearch) follow(ctx context.Context, wavelength, quickest float64) (
 		return d, err
 	}
 	d.Wavelength = wavelength
-	d.Dropped = limit < Horizon && math.IsInf(d.Time, 1)
+	d.Dropped = limit < q.horizon && math.IsInf(d.Time, 1)
 	if err != nil {
 		q.failed++
 		d.Time, d.Best = math.Inf(1), math.Inf(1)

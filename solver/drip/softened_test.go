@@ -90,7 +90,22 @@ func TestSoftenedBuoyant(t *testing.T) {
 	if s, err = state.New(graded, 1e-15); err != nil {
 		t.Fatal(err)
 	}
-	if _, err := drip.Solve(context.Background(), s, set, drip.Options{}); err == nil {
-		t.Error("a compositional gradient is taken")
+	plain := arc(3500)
+	plain.Layers[1].Viscosity.Exponent = 2
+	plain.Layers[0].Density = column.Uniform(2900)
+	u, err := state.New(plain, 1e-15)
+	if err != nil {
+		t.Fatal(err)
+	}
+	g, err := drip.Solve(context.Background(), s, set, drip.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	a, err := drip.Solve(context.Background(), u, set, drip.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if g.Outcome != "drips" || !(g.Time > 0 && g.Time < math.Inf(1)) || g.Time == a.Time || len(g.Curve.Time) != len(a.Curve.Time) || math.Abs(math.Log(g.Time/a.Time)) > 0.3 {
+		t.Errorf("a crust that grades: %s at %g s, one of a density %g s", g.Outcome, g.Time, a.Time)
 	}
 }

@@ -29,20 +29,21 @@ func (p *problem) traces(first float64) []Trace {
 
 // firstTrace is the trace of the first drip, an undulation of amplitude a in m, with its
 // strain rates and stresses: those of the flow that all displacements drive at that time.
-func (p *problem) firstTrace(f *Frozen, a, end float64) (Trace, error) {
+func (p *problem) firstTrace(w answered, a float64, r *Result) (Trace, error) {
 	var out Trace
+	f, end := w.undulation, r.Time
 	for j := 0; j <= tracePoints; j++ {
 		t := end * float64(j) / tracePoints
 		x := f.States(t)
 		for i := range x {
 			x[i] *= a
 		}
-		c, err := p.solver.Contact(f.Wavelength, x, p.base)
+		c, err := w.solver.Contact(r.Wavelength, x, p.base)
 		if err != nil {
 			return out, err
 		}
 		rate, stress := c.Invariants()
-		out.add(t, f.Wavelength, a*math.Abs(f.Base(t)))
+		out.add(t, r.Wavelength, a*math.Abs(f.Base(t)))
 		out.StrainRate, out.Stress, out.Background = append(out.StrainRate, rate), append(out.Stress, stress), append(out.Background, 0)
 	}
 	return out, nil
@@ -156,6 +157,9 @@ func (d *through) firstTrace(f *follower) (Trace, error) {
 				continue
 			}
 			form := n.form.Twin()
+			if err := k.lay.place(form, n, k.wavelength); err != nil {
+				return Trace{}, err
+			}
 			c, err := form.Contact(k.wavelength, k.lay.parts, k.states, k.lay.rootBase)
 			form.Release()
 			if err != nil {

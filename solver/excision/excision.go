@@ -1,22 +1,3 @@
-// Package excision computes how shear zones cut a root out of a column.
-//
-// A zone of dip θ slips at s; layering dips δ towards the zone's dip direction. The
-// column it crosses loses s sin(θ − δ) of stratigraphic and s sin(θ − δ)/cos δ of
-// vertical thickness per time, from the rock directly above the zone; negative is
-// repetition. The zone lies below the layers it cuts, so the lowest of them goes
-// first; a zone that has used its layers up stops cutting the column, but slips on
-// until its interval ends. Heave is s cos θ, throw s sin θ.
-//
-// A zone moves rock aside, it does not destroy it. Averaged over an arc of original
-// width B a root layer of thickness h loses what uniform stretching by the same
-// extension would take, h × heave/(B + heave), by the heave of the zones that cut it.
-// A zone's heave counts from when it has reached the root to the end of its interval,
-// as it goes on clearing the arc after it has cut this column through; it counts as
-// negative where the zone repeats rock, which thickens by h × |heave|/(B + |heave|).
-// (Derived; structural geometry, common practice.)
-//
-// In this version slip rates are given, the column is otherwise frozen, and zones do
-// not interact except by cutting the same layers.
 package excision
 
 import (
@@ -24,49 +5,6 @@ import (
 	"fmt"
 	"math"
 )
-
-// Zone is one shear zone with a given slip rate.
-type Zone struct {
-	Name        string
-	Dip         float64  // rad, 0 < dip <= π/2
-	LayeringDip float64  // rad, towards the zone's dip direction
-	Cuts        []string // names of the layers it cuts out, from above downwards; the last, lowest one is cut first
-	From, To    float64  // s, active interval; To is +Inf for a zone without an end
-	SlipRate    float64  // m/s, >= 0
-	Width       float64  // m, normal to the zone; 0 where not given
-}
-
-// level is a sine or cosine below which an angle counts as zero: round-off of a dip
-// of 90° or of layering parallel to the zone.
-const level = 1e-12
-
-// VerticalLoss is the vertical thickness lost per slip, sin(θ − δ)/cos δ.
-func (z *Zone) VerticalLoss() float64 { return z.StratigraphicLoss() / math.Cos(z.LayeringDip) }
-
-// StratigraphicLoss is the thickness lost per slip across the layering, sin(θ − δ);
-// 0 where zone and layering are parallel.
-func (z *Zone) StratigraphicLoss() float64 { return clean(math.Sin(z.Dip - z.LayeringDip)) }
-
-// Heave is the horizontal extension per slip, cos θ; 0 for a vertical zone.
-func (z *Zone) Heave() float64 { return clean(math.Cos(z.Dip)) }
-
-// Throw is the vertical offset per slip, sin θ.
-func (z *Zone) Throw() float64 { return math.Sin(z.Dip) }
-
-func clean(x float64) float64 {
-	if math.Abs(x) < level {
-		return 0
-	}
-	return x
-}
-
-// StrainRate is the zone's second invariant s/(2b), 1/s; 0 where its width is unknown.
-func (z *Zone) StrainRate() float64 {
-	if z.Width == 0 {
-		return 0
-	}
-	return z.SlipRate / (2 * z.Width)
-}
 
 // Layer is what excision needs of a layer.
 type Layer struct {
@@ -101,6 +39,9 @@ type Result struct {
 	LocalBeyond        float64 // s until the column has lost the share, beyond the window too
 	PressureGap        float64 // Pa missing across the zones at Time, or at the window's end; negative where repeated
 	History            History
+	PlateFails         float64        // of Run: s when the force on the zones stretched the plate beside them away; +Inf
+	Zones              []ZoneHistory  // of Run, one a zone
+	Layers             []LayerHistory // of Run, the layers that zones cut, from above
 	Warnings           []string
 }
 
@@ -128,7 +69,7 @@ func Solve(zones []Zone, set Setting) (*Result, error) {
 	}
 	never := math.Inf(1)
 	r := &Result{Outcome: "no zones", Time: never, Share: set.Share,
-		CutThroughTime: never, ArcMeanTime: never, LocalBeyond: never}
+		CutThroughTime: never, ArcMeanTime: never, LocalBeyond: never, PlateFails: never}
 	p := newProgress(zones, set)
 	r.record(p)
 	for next := 1; !math.IsInf(p.t, 1); {

@@ -30,12 +30,7 @@ func (s *Solver) Contact(wavelength float64, states []float64, i int) (Contact, 
 	}
 	t, k := s.with(new(workspace)), 2*math.Pi/wavelength
 	t.nodal = true
-	t.active, t.interfaces = make([]bool, len(s.active)), 0
-	for j := range t.active {
-		if t.active[j] = s.movable(j); t.active[j] {
-			t.interfaces++
-		}
-	}
+	t.allMove()
 	m := &mesh{}
 	t.divide(m, k, k, t.rule)
 	return t.contact(m, k, states, i, t.couple)

@@ -4,7 +4,6 @@ import (
 	"math"
 	"sync"
 
-	"gonum.org/v1/gonum/floats"
 	"gonum.org/v1/gonum/integrate/quad"
 )
 
@@ -26,6 +25,9 @@ type Diffusion struct {
 	HalfSpace    Thermal   // below, constant; its Excess is not used
 	FixedFlow    bool      // of a wall: heat flow instead of temperature
 	BaseGradient float64   // dT₀/dz just above an inviscid base, K/m
+	// BaseGradientRate is how fast that changes while a column is followed, K/m/s; 0 for
+	// the growth rates of a column as it is
+	BaseGradientRate float64
 }
 
 // Thermal is what one layer's heat needs, at depth z in m in the column.
@@ -63,7 +65,7 @@ func shape(s, h float64, v, dv *[degree + 1]float64) {
 // heatMesh groups the flow's elements into elements for heat, so that no flow element
 // sees a kink of T': a group spans at most heatSpan of kh and heatSwing of ln η, or is
 // one element; m.parts cuts that further.
-func (s *Solver) heatMesh(m *mesh, p *ports) ([]heatElement, int) {
+func (s *Solver) heatMesh(m *mesh) ([]heatElement, int) {
 	var es []heatElement
 	fresh := true
 	for i := range m.elems {
@@ -76,6 +78,11 @@ func (s *Solver) heatMesh(m *mesh, p *ports) ([]heatElement, int) {
 		// the stretch of half-space is cut where heat needs it
 		fresh = f.last || s.below && f.layer == len(s.c.Layers)-1
 	}
+	return es, s.number(es)
+}
+
+// number numbers the states of T' from the top down and returns how many there are.
+func (s *Solver) number(es []heatElement) int {
 	dof := 0
 	for i := range es {
 		e := &es[i]
@@ -100,7 +107,7 @@ func (s *Solver) heatMesh(m *mesh, p *ports) ([]heatElement, int) {
 			e.dof[1] = -1
 		}
 	}
-	return es, dof
+	return dof
 }
 
 // heatSpan is kh, and heatSwing the change of ln η, of a heat element at the working
@@ -125,7 +132,24 @@ func (s *Solver) heatLength(m *mesh, layer int) float64 {
 
 // coupleHeat adds the coefficients of T' to the states.
 func (s *Solver) coupleHeat(m *mesh, k float64, p *ports, c *coupling) {
-	es, dof := s.heatMesh(m, p)
+	es, dof := s.heatMesh(m)
+	s.coupleOn(es, dof, k, p, c, func(work, load [][]entry, tied *[]entry) {
+		i := 0
+		for at := range m.elems {
+			f := &m.elems[at]
+			for i+1 < len(es) && f.z >= es[i].z+es[i].h*(1-1e-9) {
+				i++
+			}
+			for q := range nodeC {
+				s.heatNode(es, i, f, p.element[at]+q, q, work, load, tied)
+			}
+		}
+	})
+}
+
+// coupleOn adds the coefficients of T' on given elements; weigh enters, port by port, what
+// the states weigh, ∫ ρ c_p γ φ W, and what weighs at a tied base.
+func (s *Solver) coupleOn(es []heatElement, dof int, k float64, p *ports, c *coupling, weigh func(work, load [][]entry, tied *[]entry)) {
 	first := c.n
 	n := first + dof
 	tied := -1 // the state an inviscid base ties T' to
@@ -182,16 +206,7 @@ func (s *Solver) coupleHeat(m *mesh, k float64, p *ports, c *coupling) {
 			}
 		}
 	}
-	i := 0
-	for at := range m.elems {
-		f := &m.elems[at]
-		for i+1 < len(es) && f.z >= es[i].z+es[i].h*(1-1e-9) {
-			i++
-		}
-		for q := range nodeC {
-			s.heatNode(es, i, f, p.element[at]+q, q, work, load, &tiedLoad)
-		}
-	}
+	weigh(work, load, &tiedLoad)
 	if tied >= 0 { // T' at the base = −ξ dT₀/dz
 		for _, l := range tiedLoad {
 			c.load[tied] = append(c.load[tied], entry{l.at, -s.c.Diffusion.BaseGradient * l.v})
@@ -206,7 +221,7 @@ func (s *Solver) coupleHeat(m *mesh, k float64, p *ports, c *coupling) {
 		if tied >= 0 && tiedMass[i] != 0 {
 			g := s.c.Diffusion.BaseGradient
 			rate = append(rate, entry{p.contact[len(s.c.Layers)], g * tiedMass[i]})
-			c.rest[(first+i)*n+tied] += g * (tiedStiff[i] + tiedMass[i]*s.c.VerticalStrain)
+			c.rest[(first+i)*n+tied] += g*(tiedStiff[i]+tiedMass[i]*s.c.VerticalStrain) + s.c.Diffusion.BaseGradientRate*tiedMass[i]
 		}
 		c.load, c.rate = append(c.load, load[i]), append(c.rate, rate)
 	}
@@ -249,55 +264,3 @@ var heatQuadrature = sync.OnceValues(func() (x, w []float64) {
 	quad.Legendre{}.FixedLocations(x, w, 0, 1)
 	return x, w
 })
-
-// banded is a symmetric positive definite matrix with degree entries beside its
-// diagonal, lower part: row i, column j at a[i*(degree+1) + j − i + degree].
-type banded struct {
-	n int
-	a []float64
-}
-
-func newBanded(n int) *banded { return &banded{n, make([]float64, n*(degree+1))} }
-
-func (b *banded) add(i, j int, v float64) { b.a[i*(degree+1)+j-i+degree] += v }
-
-// factor replaces the matrix by its Cholesky factor.
-func (b *banded) factor() {
-	const w = degree + 1
-	for i := range b.n {
-		row := b.a[i*w : (i+1)*w]
-		for j := max(0, i-degree); j <= i; j++ {
-			v := row[j-i+degree]
-			other := b.a[j*w : (j+1)*w]
-			for m := max(0, i-degree); m < j; m++ {
-				v -= row[m-i+degree] * other[m-j+degree]
-			}
-			if j < i {
-				row[j-i+degree] = v / other[degree]
-			} else {
-				row[degree] = math.Sqrt(v)
-			}
-		}
-	}
-}
-
-// solve solves for columns of x in place, row-major with cols columns.
-func (b *banded) solve(x []float64, cols int) {
-	const w = degree + 1
-	for i := range b.n {
-		xi := x[i*cols : (i+1)*cols]
-		for m := max(0, i-degree); m < i; m++ {
-			l := b.a[i*w+m-i+degree]
-			floats.AddScaled(xi, -l, x[m*cols:(m+1)*cols])
-		}
-		floats.Scale(1/b.a[i*w+degree], xi)
-	}
-	for i := b.n - 1; i >= 0; i-- {
-		xi := x[i*cols : (i+1)*cols]
-		for m := i + 1; m <= min(i+degree, b.n-1); m++ {
-			l := b.a[m*w+i-m+degree]
-			floats.AddScaled(xi, -l, x[m*cols:(m+1)*cols])
-		}
-		floats.Scale(1/b.a[i*w+degree], xi)
-	}
-}

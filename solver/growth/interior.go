@@ -71,6 +71,11 @@ var weights = sync.OnceValue(func() (w [stages]float64) {
 	return w
 })
 
+// partAt is the part that a place between the ends of the first and the last is in.
+func partAt(ends []float64, x float64) int {
+	return min(max(sort.SearchFloat64s(ends, x)-1, 0), len(ends)-2)
+}
+
 // lagrange fills v with Lagrange's polynomials of the Gauss points at x.
 func lagrange(x float64, v *[stages]float64) {
 	w, before := weights(), 1.0
@@ -141,7 +146,7 @@ func (p *Template) fill(in *interior, layer int, ends []float64, elems []element
 		case x > ends[parts]:
 			exert(stages*parts+1, g.weight[i])
 		default:
-			q := min(max(sort.SearchFloat64s(ends, x)-1, 0), parts-1)
+			q := partAt(ends, x)
 			lagrange((x-ends[q])/(ends[q+1]-ends[q]), &own)
 			for a, v := range own {
 				exert(q*stages+a, g.weight[i]*v)
@@ -192,5 +197,8 @@ func (p *Template) couple(k float64, at *ports) *coupling {
 		edge(i + 1)
 	}
 	c.heat = c.n
+	if p.Heated() {
+		p.coupleHeat(k, at, c)
+	}
 	return c
 }

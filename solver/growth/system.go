@@ -6,7 +6,8 @@ import (
 	"math"
 )
 
-// System is dξ/dt = A ξ at one wavelength, every movable interface a state.
+// System is dξ/dt = A ξ at one wavelength, every movable interface a state. Where
+// temperature is perturbed, the coefficients of T' are the last states; Weight is 0 for them.
 type System struct {
 	Wavelength float64
 	N          int
@@ -22,17 +23,8 @@ func (s *Solver) System(wavelength float64) (*System, error) {
 		return nil, fmt.Errorf("%w: %g m", ErrWavelength, wavelength)
 	}
 	k := 2 * math.Pi / wavelength
-	if s.c.Diffusion != nil {
-		return nil, errors.New("growth: the evolution matrix with diffusing temperature is not offered")
-	}
 	t := s.with(new(workspace))
-	t.active = make([]bool, len(s.active))
-	t.interfaces = 0
-	for i := range t.active {
-		if t.active[i] = s.movable(i); t.active[i] {
-			t.interfaces++
-		}
-	}
+	t.allMove()
 	var m mesh
 	t.divide(&m, k, k, t.rule)
 	t.room(&m)
@@ -61,12 +53,27 @@ func (s *Solver) System(wavelength float64) (*System, error) {
 			enter(e.layer + 1)
 		}
 	}
+	if s.below { // the end of the stretch that carries heat is no interface of the column
+		sys.Interface = sys.Interface[:len(sys.Interface)-1]
+	}
+	sys.Weight = append(sys.Weight, make([]float64, sys.N-at)...) // of T'
 	for _, a := range sys.A {
 		if math.IsNaN(a) || math.IsInf(a, 0) {
 			return nil, errors.New("growth: the evolution matrix is not finite")
 		}
 	}
 	return sys, nil
+}
+
+// allMove makes states of all interfaces that can move, whether or not they exert a force.
+func (s *Solver) allMove() {
+	s.active, s.interfaces = make([]bool, len(s.active)), 0
+	for i := range s.active {
+		stretch := s.below && i == len(s.c.Layers) // the end of what carries heat
+		if s.active[i] = s.movable(i) && !stretch; s.active[i] {
+			s.interfaces++
+		}
+	}
 }
 
 // movable says whether interface i (0 the surface) can move.

@@ -16,14 +16,14 @@ type Template struct {
 	t     *Solver
 	grade []*grading // of each layer; nil without a gradient
 	inner interior   // of the mesh there is
+	// where temperature is perturbed: the elements of T', and how many states they have
+	warm       []heatElement
+	warmStates int
 }
 
 // NewTemplate checks c and prepares it to a relative tolerance tol (DefaultTolerance
-// where 0). Errors: those of NewSolver, and a column whose temperature is perturbed.
+// where 0). Errors: those of NewSolver. Where temperature is perturbed, see PlaceHeat.
 func NewTemplate(c *Column, tol float64) (*Template, error) {
-	if c.Diffusion != nil {
-		return nil, errors.New("growth: a template with diffusing temperature is not offered")
-	}
 	own := *c
 	own.Layers = slices.Clone(c.Layers)
 	p := &Template{grade: make([]*grading, len(c.Layers))}
@@ -40,11 +40,9 @@ func NewTemplate(c *Column, tol float64) (*Template, error) {
 	if err != nil {
 		return nil, err
 	}
-	s.interfaces = 0
-	for i := range s.active {
-		if s.active[i] = s.movable(i); s.active[i] {
-			s.interfaces++
-		}
+	s.allMove()
+	if s.below { // the stretch of half-space that carries heat has no gradient
+		p.grade = append(p.grade, nil)
 	}
 	p.t = s
 	for i, g := range p.grade {
@@ -66,6 +64,14 @@ func (p *Template) Release() { p.t.release() }
 // Range is that of Solver.
 func (p *Template) Range() (from, to float64) { return p.t.Range() }
 
+// layers is the number of the column's layers.
+func (p *Template) layers() int {
+	if p.t.below {
+		return len(p.grade) - 1
+	}
+	return len(p.grade)
+}
+
 // mostParts is how many parts a layer may have.
 const mostParts = 12
 
@@ -74,8 +80,8 @@ const mostParts = 12
 // ln may change by heatSwing. There is a margin of a half for what the column may still
 // become.
 func (p *Template) Parts(wavelength float64) []int {
-	k, n := 2*math.Pi/wavelength, make([]int, len(p.grade))
-	for i := range p.grade {
+	k, n := 2*math.Pi/wavelength, make([]int, p.layers())
+	for i := range n {
 		if p.grade[i] == nil {
 			continue
 		}
@@ -109,8 +115,11 @@ func (p *Template) Matrix(wavelength float64, parts [][]float64) (a []float64, n
 	if !positive(wavelength) {
 		return nil, 0, fmt.Errorf("%w: %g m", ErrWavelength, wavelength)
 	}
-	if len(parts) != len(p.grade) {
-		return nil, 0, fmt.Errorf("growth: parts of %d layers, the column has %d", len(parts), len(p.grade))
+	if len(parts) != p.layers() {
+		return nil, 0, fmt.Errorf("growth: parts of %d layers, the column has %d", len(parts), p.layers())
+	}
+	if p.Heated() && len(p.warm) == 0 {
+		return nil, 0, errors.New("growth: no elements for heat: call PlaceHeat first")
 	}
 	for i, q := range parts {
 		if p.grade[i] != nil && len(q) < 2 {

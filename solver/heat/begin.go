@@ -26,8 +26,11 @@ type Evolution struct {
 	heater    func(t float64, given []float64) // of tests: fills the cells' sources, W/m²
 
 	t, h       float64
-	rate       float64 // extension, 1/s
+	rate       float64 // at which the column itself stretches: own × arc + extra, 1/s
+	arc        float64 // extension rate in force, 1/s
+	own, extra float64
 	background float64
+	spread     float64 // ∫ rate dt since the start
 	strata     []stratum
 	cells      []cell
 	spare      []cell
@@ -38,6 +41,7 @@ type Evolution struct {
 	growing  []Flux // of events
 	fluxes   []Flux // of the caller
 	sources  []Source
+	flown    map[string]float64 // see Flown
 	streams  []stream
 	foot     int // the basal stream; -1: none
 	feet     int
@@ -103,7 +107,7 @@ func Begin(p Plan) (*Evolution, error) {
 		return nil, fmt.Errorf("heat: the start has %d layers, the column %d", len(start.Layers), len(c.Layers))
 	}
 	ev := &Evolution{column: c, gravity: c.Gravity, surfaceT: c.Surface.Temperature, driven: p.SurfaceTemperature,
-		base: c.Base, depth0: c.Depth(), tolerance: p.Tolerance, points: p.Points, rate: p.ExtensionRate, background: p.ExtensionRate, coarse: 1}
+		base: c.Base, depth0: c.Depth(), tolerance: p.Tolerance, points: p.Points, rate: p.ExtensionRate, arc: p.ExtensionRate, own: 1, background: p.ExtensionRate, flown: map[string]float64{}, coarse: 1}
 	if ev.tolerance == 0 {
 		ev.tolerance = 0.1
 	}

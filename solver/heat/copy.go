@@ -1,6 +1,9 @@
 package heat
 
-import "slices"
+import (
+	"maps"
+	"slices"
+)
 
 // Copy returns the evolution as it is now, to go its own way: what one does the other
 // does not feel, and driven alike both come to the same bits. Its cost is that of the
@@ -10,10 +13,7 @@ func (ev *Evolution) Copy() *Evolution {
 	c.strata, c.cells, c.spare = slices.Clone(ev.strata), slices.Clone(ev.cells), nil
 	c.growing, c.fluxes = slices.Clone(ev.growing), slices.Clone(ev.fluxes)
 	c.sources, c.streams = slices.Clone(ev.sources), slices.Clone(ev.streams)
-	c.taken = make(map[string]bool, len(ev.taken))
-	for k, v := range ev.taken {
-		c.taken[k] = v
-	}
+	c.taken, c.flown = maps.Clone(ev.taken), maps.Clone(ev.flown)
 	c.tracks = slices.Clone(ev.tracks)
 	for i := range c.tracks {
 		t := &c.tracks[i]

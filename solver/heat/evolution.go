@@ -35,6 +35,7 @@ type Source struct {
 	BaseOf string  // at the base of this layer; "": at Depth
 	Depth  float64 // m, now; it stays with the depth, not with the rock
 	Power  float64 // W/m² of map area
+	Height float64 // m, of the rock around the plane that the heat is spread over, evenly; 0: the plane
 }
 
 // Energy is every term of the balance since the start, J per m² of the column's area
@@ -84,13 +85,14 @@ type Snapshot struct {
 
 // History is a run to the end. The lists against time have one value a step.
 type History struct {
-	Time            []float64 // s
-	SurfaceFlow     []float64 // W/m²
-	RootBase        []float64 // temperature at the root's base, K; 0 where there is no root
-	RootThickness   []float64 // m
-	Depth           []float64 // of the column's own rock, without what came in below, m
-	MeltFraction    []float64 // the largest volume fraction anywhere
-	Reacted         []float64 // reacted share of the mass of the root's two-state rocks (of all, without a root)
+	Time            []float64       // s
+	SurfaceFlow     []float64       // W/m²
+	RootBase        []float64       // temperature at the root's base, K; 0 where there is no root
+	RootThickness   []float64       // m
+	Depth           []float64       // of the column's own rock, without what came in below, m
+	MeltFraction    []float64       // the largest volume fraction anywhere
+	Reacted         []float64       // reacted share of the mass of the root's two-state rocks (of all, without a root)
+	Weight          []column.Weight // of the column, rock of the base that came in included
 	Snapshots       []Snapshot
 	Paths           []Path
 	Energy          Energy

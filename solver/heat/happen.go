@@ -66,7 +66,7 @@ func (ev *Evolution) starts(m *moment) error {
 	e := m.event
 	switch e.Verb {
 	case "stretch":
-		ev.rate = e.Rate
+		ev.strain(e.Rate)
 	case "erode":
 		ev.eroding = e.Rate
 	case "accumulate":
@@ -91,7 +91,7 @@ func (ev *Evolution) ends(m *moment) error {
 	name := e.Layer
 	switch e.Verb {
 	case "stretch":
-		ev.rate = ev.background
+		ev.strain(ev.background)
 		return nil
 	case "erode":
 		ev.eroding = 0
@@ -193,8 +193,8 @@ func (ev *Evolution) Flux(f ...Flux) error {
 // Errors: a power or depth that is not finite, a layer that is not there.
 func (ev *Evolution) Heat(sources ...Source) error {
 	for _, s := range sources {
-		if math.IsNaN(s.Power) || math.IsInf(s.Power, 0) || !(s.Depth >= 0) || math.IsInf(s.Depth, 1) {
-			return fmt.Errorf("heat: source of %g W/m² at %g m", s.Power, s.Depth)
+		if math.IsNaN(s.Power) || math.IsInf(s.Power, 0) || !(s.Depth >= 0) || math.IsInf(s.Depth, 1) || !(s.Height >= 0) || math.IsInf(s.Height, 1) {
+			return fmt.Errorf("heat: source of %g W/m² at %g m, over %g m", s.Power, s.Depth, s.Height)
 		}
 		if _, ok := ev.find(s.BaseOf); !ok && s.BaseOf != "" {
 			return fmt.Errorf("heat: source at the base of %s, which is not there", s.BaseOf)
@@ -208,5 +208,31 @@ func (ev *Evolution) Heat(sources ...Source) error {
 // Time returns the model time, s.
 func (ev *Evolution) Time() float64 { return ev.t }
 
-// ExtensionRate returns the extension rate in force now, 1/s.
+// ExtensionRate returns the rate at which the column itself stretches now, 1/s.
 func (ev *Evolution) ExtensionRate() float64 { return ev.rate }
+
+// ArcRate returns the extension rate in force now, 1/s: that of Plan or of a stretch event.
+func (ev *Evolution) ArcRate() float64 { return ev.arc }
+
+// Stretch sets how much of the extension rate in force stretches the column itself, where
+// shear zones take the rest, and a rate in 1/s that it stretches at besides:
+//
+//	ExtensionRate = own × ArcRate + extra
+//
+// Until it is called own is 1 and extra 0. Errors: a number that is not finite.
+func (ev *Evolution) Stretch(own, extra float64) error {
+	if math.IsNaN(own+extra) || math.IsInf(own+extra, 0) {
+		return fmt.Errorf("heat: stretching by %g of the extension rate and %g 1/s", own, extra)
+	}
+	ev.own, ev.extra = own, extra
+	ev.strain(ev.arc)
+	return nil
+}
+
+// strain puts an extension rate in force.
+func (ev *Evolution) strain(arc float64) {
+	ev.arc = arc
+	if rate := ev.own*arc + ev.extra; rate != ev.rate {
+		ev.rate, ev.fresh = rate, false
+	}
+}

@@ -5,6 +5,8 @@ import (
 	"fmt"
 	"math"
 	"slices"
+
+	"keelfall/column"
 )
 
 // mostMissing is the share of the energy moved by which a result may be wrong.
@@ -67,6 +69,18 @@ func (ev *Evolution) note(h *History) {
 	h.Depth = append(h.Depth[:n], r.Own)
 	h.MeltFraction = append(h.MeltFraction[:n], r.MeltFraction)
 	h.Reacted = append(h.Reacted[:n], r.Reacted)
+	h.Weight = append(h.Weight[:n], ev.weight())
+}
+
+// weight is the column's, cell by cell.
+func (ev *Evolution) weight() column.Weight {
+	var w column.Weight
+	for i := range ev.cells {
+		c := &ev.cells[i]
+		rho := ev.rho(c)
+		w.Add(ev.thickness(c), c.m, rho, rho)
+	}
+	return w
 }
 
 // RootState is the root, and what else is read off the column at one time.

@@ -12,8 +12,7 @@ func (ev *Evolution) place() {
 		w.given[i] = 0
 	}
 	for _, s := range ev.sources {
-		var i int
-		share := 1.0 // of cell i; the rest goes to the next one
+		z, i, share := s.Depth, 0, 1.0 // share of cell i; the rest goes to the next one
 		if s.BaseOf != "" {
 			j, ok := ev.find(s.BaseOf)
 			if !ok {
@@ -25,14 +24,46 @@ func (ev *Evolution) place() {
 				ga := ev.conductance(a)
 				share = ga / (ga + ev.conductance(b))
 			}
+			if s.Height > 0 {
+				z = ev.bottom(i)
+			}
 		} else {
-			i, share = ev.between(s.Depth)
+			i, share = ev.between(z)
+		}
+		if s.Height > 0 && ev.spreadOut(z, s.Height, s.Power) {
+			continue
 		}
 		w.given[i] += s.Power * share
 		if i+1 < n {
 			w.given[i+1] += s.Power * (1 - share)
 		}
 	}
+}
+
+// spreadOut gives a source around the depth z to the cells its height overlaps, or what
+// is left of the height in the column.
+func (ev *Evolution) spreadOut(z, height, power float64) bool {
+	all, _ := ev.depths()
+	a, b := max(z-height/2, 0), min(z+height/2, all)
+	if !(b > a) {
+		return false
+	}
+	var top float64
+	for i := range ev.cells {
+		d := ev.thickness(&ev.cells[i])
+		ev.w.given[i] += power * max(min(b, top+d)-max(a, top), 0) / (b - a)
+		top += d
+	}
+	return true
+}
+
+// bottom is the depth of a cell's bottom, m.
+func (ev *Evolution) bottom(i int) float64 {
+	var z float64
+	for k := range i + 1 {
+		z += ev.thickness(&ev.cells[k])
+	}
+	return z
 }
 
 func (ev *Evolution) conductance(c *cell) float64 {

@@ -9,6 +9,7 @@ import (
 type stream struct {
 	cell   int
 	top    bool
+	flux   string  // the layer of the Flux it is; "" for others
 	below  bool    // rock of the base at the column's foot
 	mass   float64 // kg/m²/s of present area; > 0 comes
 	T      float64 // of rock that comes, K; 0: the temperature of the face
@@ -239,10 +240,14 @@ func (ev *Evolution) accept(h float64) {
 	two := &ev.two
 	ev.ledger(h)
 	ev.follow(h)
+	area := math.Exp(ev.spread)
 	for k := range ev.streams {
 		f := &ev.streams[k]
 		if f.top {
 			ev.strata[ev.cells[f.cell].layer].worn -= f.came
+		}
+		if f.flux != "" {
+			ev.flown[f.flux] += f.came * area
 		}
 		if f.mass > 0 {
 			c := &ev.cells[f.cell]
@@ -256,6 +261,7 @@ func (ev *Evolution) accept(h float64) {
 		ev.strata[j].worn /= two.area
 	}
 	ev.t += h
+	ev.spread += h * ev.rate
 	ev.steps++
 	ev.react(h)
 	var above float64

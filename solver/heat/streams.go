@@ -53,7 +53,9 @@ func (ev *Evolution) list(h float64) {
 		if !ok || f.Rate == 0 {
 			continue // gone
 		}
-		ev.streams = append(ev.streams, ev.edge(j, f))
+		s := ev.edge(j, f)
+		s.flux = f.Layer
+		ev.streams = append(ev.streams, s)
 		lost -= f.Rate
 	}
 	ev.growing = slices.DeleteFunc(ev.growing, func(f Flux) bool {
@@ -212,6 +214,9 @@ func (ev *Evolution) starve(h float64) (bool, error) {
 			return true, nil
 		}
 		if s.hi-s.lo == 1 && d <= sliver {
+			if f.flux != "" { // the last of it
+				ev.flown[f.flux] -= c.m * math.Exp(ev.spread)
+			}
 			ev.takeOut(f.cell, ev.reason(f), f.below)
 			if len(ev.strata) == 0 {
 				return false, fmt.Errorf("heat: at %s the whole column is gone", inMyr(ev.t))

@@ -47,7 +47,7 @@ func TimeAgainstAmplitude(ctx context.Context, p *Problem, s *state.State, first
 		}
 		q := *p
 		q.Drip = p.Drip.Scaled(a / used)
-		t, err := q.dripTime(ctx, s, first)
+		t, err := q.dripTime(ctx, s, first, 0)
 		if err != nil {
 			return nil, err
 		}

@@ -130,7 +130,7 @@ func (p *Problem) timeNear(ctx context.Context, near float64) (float64, error) {
 	if err != nil {
 		return 0, err
 	}
-	return p.dripTime(ctx, s, near)
+	return p.dripTime(ctx, s, near, 0)
 }
 
 // rootRate is the largest rate in m/s at which an event feeds the root, and when it ends, s.

@@ -2,7 +2,6 @@ package race
 
 import (
 	"context"
-	"errors"
 	"fmt"
 	"math"
 
@@ -23,27 +22,17 @@ func Drip(ctx context.Context, p *Problem, s *state.State) (*drip.Result, error)
 		return nil, err
 	}
 	if !p.Moving() {
-		r, err := drip.Solve(ctx, s, p.dripSettings(), p.dripOptions())
-		return r, asInput(err)
+		return drip.Solve(ctx, s, p.dripSettings(), p.dripOptions())
 	}
 	plan, err := p.dripPlan()
 	if err != nil {
 		return nil, err
 	}
 	r, err := drip.Through(ctx, plan, p.dripSettings(), p.dripOptions())
-	err = asInput(err)
 	if err == nil && r.Mode != nil && len(r.Mode.DissipationShare) != len(p.Column.Layers)+1 {
 		r.Mode = nil // of layers that are not those of the start
 	}
 	return r, err
-}
-
-// asInput marks a column that the closure does not take as a mistake of the experiment.
-func asInput(err error) error {
-	if errors.Is(err, drip.ErrGraded) {
-		return fmt.Errorf("%w: %w; set drip.softening to none", ErrInput, err)
-	}
-	return err
 }
 
 // dripSettings are p.Drip, without softening where no rock can be softened: the closure
@@ -53,14 +42,17 @@ func (p *Problem) dripSettings() drip.Settings {
 	if !p.softens() {
 		set.Softening = "none"
 	}
+	set.Thermal = p.ThermalBuoyancy
 	return set
 }
 
 // dripTime returns the drip time of a prepared column alone; near, where not 0, is a
-// wavelength in m to look around.
-func (p *Problem) dripTime(ctx context.Context, s *state.State, near float64) (float64, error) {
+// wavelength in m to look around; until, where not 0, is a time in s after which a drip
+// counts as none. In a column that moves, perturbations of temperature count as they do for
+// the drip of Run, by their ratio there.
+func (p *Problem) dripTime(ctx context.Context, s *state.State, near, until float64) (float64, error) {
 	o := p.dripOptions()
-	o.Near = near
+	o.Near, o.Until = near, until
 	switch {
 	case !p.Moving() && p.softens():
 		return drip.SoftenedTime(ctx, s, p.dripSettings(), o)
@@ -71,7 +63,11 @@ func (p *Problem) dripTime(ctx context.Context, s *state.State, near float64) (f
 	if err != nil {
 		return 0, err
 	}
-	return drip.ThroughTime(ctx, plan, p.dripSettings(), o)
+	t, err := drip.ThroughTime(ctx, plan, p.dripSettings(), o)
+	if p.warmth > 0 {
+		t *= p.warmth
+	}
+	return t, err
 }
 
 // dripPlan is the column through time as package drip follows it.
@@ -129,7 +125,7 @@ func (r *Result) strainRates(ctx context.Context) error {
 		if err != nil {
 			return err
 		}
-		t, err := q.dripTime(ctx, s, r.Drip.Wavelength)
+		t, err := q.dripTime(ctx, s, r.Drip.Wavelength, 0)
 		if err != nil {
 			return err
 		}

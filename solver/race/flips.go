@@ -4,7 +4,13 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"runtime"
 	"slices"
+	"sync"
+	"sync/atomic"
+
+	"keelfall/solver/excision"
+	"keelfall/solver/state"
 )
 
 // mostLayers is the number of layers up to which a run looks for what would change
@@ -19,6 +25,7 @@ type search struct {
 	value  func(x float64) float64  // the quantity at x
 	keys   func(x float64) []Change // what to set in the experiment for it
 	change func(q *Problem, x float64)
+	zones  bool // it changes zones alone: in a column that stands still, not when the root drips
 }
 
 // flips finds, for the numbers that matter most, the value nearest to the one in use
@@ -33,27 +40,31 @@ func (r *Result) flips(ctx context.Context, say func(string)) error {
 	if near == 0 {
 		near = r.Spectrum.Fastest.Wavelength
 	}
-	for _, s := range r.searches() {
-		say("what would change the verdict: " + s.flip.Label)
-		outcome := func(x float64) string {
-			q := *p
-			q.Column.Layers = slices.Clone(p.Column.Layers)
-			q.Zones = slices.Clone(p.Zones)
-			s.change(&q, x)
-			return q.outcome(ctx, near, v.Outcome)
-		}
-		f := s.flip
-		f.To, f.Keys = f.From, s.keys(0)
-		if x, to := nearest(outcome, v.Outcome, s.most); to != "" {
-			f.To, f.Found, f.Distance, f.Outcome, f.Keys = s.value(x), true, math.Abs(x), to, s.keys(x)
-			if f.HasContrast {
-				f.ContrastTo = f.ContrastFrom + perDensity*x
+	list := r.searches()
+	found := make([]Flip, len(list))
+	workers := p.Workers
+	if workers <= 0 {
+		workers = runtime.GOMAXPROCS(0)
+	}
+	var next atomic.Int64
+	var lock sync.Mutex
+	var all sync.WaitGroup
+	for range min(workers, len(list)) { // every search has a slot of its own
+		all.Go(func() {
+			for i := int(next.Add(1)) - 1; i < len(list); i = int(next.Add(1)) - 1 {
+				lock.Lock()
+				say("what would change the verdict: " + list[i].flip.Label)
+				lock.Unlock()
+				found[i] = r.flip(ctx, &list[i], near)
 			}
-			if f.Label == rootViscosity {
-				v.MarginLog10Viscosity, v.MarginViscosityOutcome = x/math.Ln10, to
-			}
-		}
+		})
+	}
+	all.Wait()
+	for i, f := range found {
 		v.Flips = append(v.Flips, f)
+		if f.Found && list[i].flip.Label == rootViscosity {
+			v.MarginLog10Viscosity, v.MarginViscosityOutcome = f.at/math.Ln10, f.Outcome
+		}
 	}
 	slices.SortStableFunc(v.Flips, func(a, b Flip) int {
 		switch {
@@ -67,20 +78,51 @@ func (r *Result) flips(ctx context.Context, say func(string)) error {
 	return ctx.Err()
 }
 
+// flip looks for the nearest change of the verdict along one search, on one core.
+func (r *Result) flip(ctx context.Context, s *search, near float64) Flip {
+	p, now := r.Problem, r.Verdict.Outcome
+	look := func(x float64) trial {
+		q := *p
+		q.Workers = 1
+		q.Column.Layers = slices.Clone(p.Column.Layers)
+		q.Zones = slices.Clone(p.Zones)
+		s.change(&q, x)
+		return q.outcome(ctx, now, func(st *state.State) (float64, error) {
+			if s.zones && !p.Moving() {
+				return r.Drip.Time, nil
+			}
+			return q.dripTime(ctx, st, near, 3*q.Drip.Window) // further, the time of a drip guides no search
+		})
+	}
+	f := s.flip
+	f.To, f.Keys = f.From, s.keys(0)
+	if x, to := nearest(look, trial{now, math.Log(r.Drip.Time / until(r.Excision, p.Drip.Window))}, s.most); to != "" {
+		f.To, f.Found, f.Distance, f.Outcome, f.Keys, f.at = s.value(x), true, math.Abs(x), to, s.keys(x), x
+		if f.HasContrast {
+			f.ContrastTo = f.ContrastFrom + perDensity*x
+		}
+	}
+	return f
+}
+
+// until is when something other than a drip decides, s.
+func until(x *excision.Result, window float64) float64 { return math.Min(window, x.Time) }
+
 // outcome returns the verdict's outcome of p; now, where p is not a column that can
 // be run: no change there.
-func (p *Problem) outcome(ctx context.Context, near float64, now string) string {
+func (p *Problem) outcome(ctx context.Context, now string, drip func(*state.State) (float64, error)) trial {
+	none := trial{now, math.Inf(1)}
 	s, err := Prepare(p)
 	if err != nil {
-		return now
+		return none
 	}
-	t, err := p.dripTime(ctx, s, near)
+	t, err := drip(s)
 	if err != nil {
-		return now
+		return none
 	}
 	x, err := Excise(p, s)
 	if err != nil {
-		return now
+		return none
 	}
-	return judge(t, x, p.Share(), p.Drip.Window).outcome
+	return trial{judge(t, x, p.Share(), p.Drip.Window).outcome, math.Log(t / until(x, p.Drip.Window))}
 }

@@ -36,19 +36,38 @@ func (v Peeling) words() string {
 		", is stiffer than 1e18 Pa s; Bird 1979), and is not excluded: it is outside one dimension"
 }
 
-// limits says what this computation leaves out.
-func (p *Problem) limits(peel Peeling) []string {
+// thermalLimit says how far the heat that an undulation carries along counts; thermal is
+// what it makes of the drip, nil where that is not known.
+func (p *Problem) thermalLimit(thermal *drip.Thermal) string {
+	switch {
+	case p.ThermalBuoyancy == "none":
+		return "thermal buoyancy of the undulation is left out: there, rock keeps the density of its composition"
+	case thermal == nil:
+		return "thermal buoyancy of the undulation counts for the growth rates (" + p.ThermalBuoyancy + ") and not for the drip, which is looked for by composition alone: heat might bring down what that does not"
+	case !thermal.Included:
+		return "thermal buoyancy of the undulation counts for the growth rates (" + p.ThermalBuoyancy + ") and is left out of the drip, whose softening does not know it; " + thermal.Words()
+	case p.Moving():
+		return "thermal buoyancy of the undulation counts for the drip near the wavelength that goes first without it; the times of all other wavelengths, and where the first drip is looked for, are without it, and what the answer hangs on has it by its ratio"
+	}
+	return "thermal buoyancy of the undulation counts for the drip near the wavelength that goes first without it; the times of all other wavelengths, and where the first drip is looked for, are without it"
+}
+
+// limits says what this computation leaves out; thermal is what heat makes of the drip.
+func (p *Problem) limits(peel Peeling, thermal *drip.Thermal) []string {
 	l := []string{
 		"linear theory carried to a full drip: about 10 % slow for Newtonian rock beside two-dimensional solutions (ratio 0.89 to 0.93, derived)",
 	}
 	if p.Moving() {
 		l = append(l, "heat, reaction, strain and events go on while the root drips; nothing is followed beyond twice the window, and the verdict's clock stops at the first drip")
 		if len(p.Zones) > 0 {
-			l = append(l, "what shear zones cut out is that of the column as it is at the start")
+			l = append(l, "the root drips as if no zone cut it, and the zones cut it as if nothing dripped")
 		}
 	} else {
-		l = append(l, "the column is frozen: no cooling, heating, reaction, melting or stretching while the root drips or is cut",
-			"one drip only: what one drip removes stands in for the share that counts as removal")
+		frozen := "the column is frozen: no cooling, heating, reaction, melting or stretching while the root drips or is cut"
+		if p.followsZones() {
+			frozen = "the root drips in a frozen column, as if no zone cut it: no cooling, heating, reaction, melting or stretching; the zones are followed through a column that changes"
+		}
+		l = append(l, frozen, "one drip only: what one drip removes stands in for the share that counts as removal")
 	}
 	var soft, warm bool
 	for i := range p.Column.Layers {
@@ -73,11 +92,7 @@ func (p *Problem) limits(peel Peeling) []string {
 		l = append(l, "power-law softening by the drip itself is left out: viscosities are isotropic, at the reference strain rate; rock drips sooner or later than that as its own strain rate is above or below it")
 	}
 	if warm {
-		where := "of the undulation is left out"
-		if p.ThermalBuoyancy != "none" {
-			where = "counts for the growth rates (" + p.ThermalBuoyancy + ") and is left out of the drip"
-		}
-		l = append(l, "thermal buoyancy "+where+": there, rock keeps the density of its composition")
+		l = append(l, p.thermalLimit(thermal))
 	}
 	return append(l, peel.words(), "subduction drag and the third dimension are left out")
 }

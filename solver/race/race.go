@@ -34,7 +34,8 @@ type Problem struct {
 	HasTimeZero         bool
 	TimeZero            float64 // s, age of model time 0
 	Strain              Strain
-	ThermalBuoyancy     string // "none", "frozen" or "diffusive"
+	ThermalBuoyancy     string  // "none", "frozen" or "diffusive"
+	warmth              float64 // drip time with perturbations of temperature over that without, of the run; 0: not known
 	Drip                drip.Settings
 	SpectrumFrom        float64 // m; 0: chosen from the layers
 	SpectrumTo          float64 // m
@@ -45,8 +46,7 @@ type Problem struct {
 	Events              []heat.Event
 	Markers             []heat.Marker
 	Clocks              []heat.Clock
-	Reference           *column.Column // elevation and potential energy are measured against it
-	ReferenceElevation  float64        // m
+	Reference           *Reference // elevation and potential energy are measured against it
 	Reversal            []Range
 	EvolvedCrust        float64 // m; 0 where no budget is asked
 	ResidueShare        float64

@@ -53,6 +53,7 @@ type Flip struct {
 	Unit                     string   // of From and To: "x" a factor, else SI
 	Found                    bool     // a change lies within what was searched
 	Outcome                  string   // the verdict's outcome at To; "" where not found
+	at                       float64  // the change in units of the search, signed
 	Distance                 float64  // |Δ ln p|; for a density |Δρ|/100 kg/m³, a temperature |ΔT|/100 K, a slip rate from 0 in mm/yr
 	Searched                 string   // how far either way, in words: "× 1000"
 	Default                  bool     // the value in use is a default that nobody has measured

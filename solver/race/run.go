@@ -54,18 +54,6 @@ func (p *Problem) dripOptions() drip.Options {
 	return o
 }
 
-// Excise returns when the zones have taken the verdict's share of the root.
-func Excise(p *Problem, s *state.State) (*excision.Result, error) {
-	if err := p.zonesStill(); err != nil {
-		return nil, err
-	}
-	r, err := excision.Solve(p.Zones, p.excisionSetting(s))
-	if err != nil {
-		return nil, fmt.Errorf("%w: %w", ErrInput, err)
-	}
-	return r, nil
-}
-
 func (p *Problem) excisionSetting(s *state.State) excision.Setting {
 	set := excision.Setting{Gravity: p.Column.Gravity, ArcWidth: p.ArcWidth, Share: p.Share(), Window: p.Drip.Window}
 	for i := range p.Column.Layers {
@@ -119,7 +107,7 @@ func RunSaying(ctx context.Context, p *Problem, say func(string)) (*Result, erro
 		return nil, err
 	}
 	if !root {
-		r.Limits = p.limits(Peeling{})
+		r.Limits = p.limits(Peeling{}, nil)
 		r.Verdict.Time, r.Verdict.Margin, r.Verdict.MarginLog10Viscosity = math.Inf(1), math.Inf(1), math.Inf(1)
 		r.Verdict.WindowMargin = math.Inf(1)
 		r.Warnings = append(r.Warnings, "no layer is marked root: true, so growth is computed and no fate is judged")
@@ -129,11 +117,16 @@ func RunSaying(ctx context.Context, p *Problem, say func(string)) (*Result, erro
 	if r.Drip, err = Drip(ctx, p, s); err != nil {
 		return nil, err
 	}
-	if r.Excision, err = Excise(p, s); err != nil {
+	if t := r.Drip.Thermal; t != nil && t.Included && !math.IsInf(t.With, 1) {
+		own := *p
+		own.warmth = t.Ratio()
+		p, r.Problem = &own, &own
+	}
+	if r.Excision, err = ExciseStudy(ctx, p, s); err != nil {
 		return nil, err
 	}
 	r.peeling()
-	r.Limits = p.limits(r.Peeling)
+	r.Limits = p.limits(r.Peeling, r.Drip.Thermal)
 	say("the drip at other strain rates")
 	if err := r.strainRates(ctx); err != nil {
 		return nil, err

@@ -7,6 +7,7 @@ import (
 	"strings"
 
 	"keelfall/column"
+	"keelfall/solver/excision"
 )
 
 // Units of distance where |Δ ln p| has no meaning.
@@ -152,7 +153,7 @@ func temperatureSearch(p *Problem) search {
 	}
 }
 
-// slipSearch multiplies the slip rate of every zone that cuts the root by one factor;
+// slipSearch multiplies the given slip rate of every zone that cuts the root by one factor;
 // where none of them slips, it adds to all of them.
 func (r *Result) slipSearch() search {
 	p := r.Problem
@@ -160,7 +161,7 @@ func (r *Result) slipSearch() search {
 	var names []string
 	still := true
 	for i, z := range p.Zones {
-		if slices.ContainsFunc(p.Column.Layers, func(l column.Layer) bool { return l.Root && slices.Contains(z.Cuts, l.Name) }) {
+		if z.Drive == excision.GivenRate && slices.ContainsFunc(p.Column.Layers, func(l column.Layer) bool { return l.Root && slices.Contains(z.Cuts, l.Name) }) {
 			cutting, names = append(cutting, i), append(names, z.Name)
 			still = still && z.SlipRate == 0
 		}
@@ -177,7 +178,7 @@ func (r *Result) slipSearch() search {
 		f.Label, f.Unit, f.From = "slip rate", "m/s", p.Zones[cutting[0]].SlipRate
 	}
 	from := f.From
-	return search{flip: f, most: most,
+	return search{flip: f, most: most, zones: true,
 		value: func(x float64) float64 { return rate(from, x) },
 		change: func(q *Problem, x float64) {
 			for _, i := range cutting {

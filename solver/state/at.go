@@ -80,7 +80,7 @@ func (s *State) ResponseAt(layer int, z, eII float64) (rheology.Response, error)
 		}
 		eta *= math.Pow(eII/s.StrainRate, 1/n-1)
 	}
-	return rheology.Response{Stress: 2 * eta * eII, Viscosity: eta, Exponent: n}, nil
+	return rheology.Response{Stress: 2 * eta * eII, Viscosity: eta, Exponent: n, Slope: 1 / n}, nil
 }
 
 // TemperatureAt returns T in K and dT/dz in K/m in a layer at the depth z in m; both

@@ -173,11 +173,13 @@ func VerdictTable(r *race.Result) Table {
 
 // Tables returns every table of a run.
 func Tables(r *race.Result) []Table {
-	t := []Table{ColumnTable(r.State), WeightTable(r.State), SpectrumTable(r.Spectrum.Rates), ControlsTable(r.State, r.Spectrum.Mode), ModeTable(r.State, r.Spectrum.Mode)}
+	t := []Table{ColumnTable(r.State), WeightTable(r.State), IsostasyTable(r.Problem, r.State), SpectrumTable(r.Spectrum.Rates), ControlsTable(r.State, r.Spectrum.Mode), ModeTable(r.State, r.Spectrum.Mode)}
 	if r.Drip != nil {
 		t = append(t, DripTable(r))
 		t = append(t, DripTables(r)...)
-		t = append(t, ExcisionTable(r), ReversalTable(r))
+		t = append(t, ExcisionTable(r))
+		t = append(t, ExcisionTables(r)...)
+		t = append(t, ReversalTable(r))
 	}
 	return append(t, VerdictTable(r))
 }

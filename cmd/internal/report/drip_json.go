@@ -25,6 +25,7 @@ type DripJSON struct {
 	StrainRate        number      `json:"strain_rate_start_per_s"`
 	StrainRateEnd     number      `json:"strain_rate_end_per_s"`
 	Softened          *softJSON   `json:"softened"`
+	Thermal           *warmJSON   `json:"thermal"`
 	Curve             curveJSON   `json:"curve"`
 
 	AlongStrike     number          `json:"drips_along_strike"` // that find room along the arc's length at that spacing
@@ -53,6 +54,15 @@ type softJSON struct {
 	Inside   bool     `json:"within_2d_solutions"`
 	Failed   int      `json:"wavelengths_left_out"`
 	Warnings []string `json:"warnings"`
+}
+
+// warmJSON is what the heat that the undulation carries along makes of the drip time in
+// linear theory, and whether time_s has it.
+type warmJSON struct {
+	Mode     string `json:"mode"`
+	Without  number `json:"without_s"`
+	With     number `json:"with_s"`
+	Included bool   `json:"included"`
 }
 
 type eventJSON struct {
@@ -130,6 +140,9 @@ func Drip(r *race.Result) DripJSON {
 	if s := d.Soft; s != nil {
 		j.Softened = &softJSON{number(s.Slow), number(s.BestLow), number(s.BestHigh), number(s.Exponent),
 			number(s.Correction.Centre), number(s.Correction.Finite), s.Correction.Inside, s.Failed, list(nil)}
+	}
+	if t := d.Thermal; t != nil {
+		j.Thermal = &warmJSON{t.Mode, number(t.Without), number(t.With), t.Included}
 	}
 	if d.Outcome == "drips" {
 		j.Events = dripEvents(p, s, d)

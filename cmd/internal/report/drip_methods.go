@@ -3,6 +3,7 @@ package report
 import (
 	"fmt"
 
+	"keelfall/solver/drip"
 	"keelfall/solver/race"
 )
 
@@ -22,6 +23,9 @@ func dripMethods(w func(string, ...any), r *race.Result) {
 		how = "dξ/dt = A(t) ξ by matrix exponentials, with A of the column at that time and a wavelength that moves with the stretch, an undulation beginning anew after every drip; where nothing drips in the window, the first drip is looked for up to twice its length"
 	}
 	w("An undulation %s, on the base of the lowest root layer, all other contacts flat; %s. It has dripped when the base has descended by %g × the root's thickness; the drip then takes %g of the root's mass.", start, how, set.Criterion, set.Removes)
+	if t := r.Drip.Thermal; t != nil {
+		thermalMethods(w, t)
+	}
 	if len(r.Drip.First.StrainRate) > 0 {
 		w("The drip's strain rate and stress are second invariants of the flow that all displacements drive at that time, at the upper side of the root's base, the largest along it.")
 	}
@@ -35,6 +39,19 @@ func dripMethods(w func(string, ...any), r *race.Result) {
 		w("Exponents of the drip time are central differences over ± 5 %% of each layer's viscosity, at the first drip's wavelength.")
 	}
 	w("")
+}
+
+// thermalMethods says how the heat counts that the undulation carries along.
+func thermalMethods(w func(string, ...any), t *drip.Thermal) {
+	how := "it is carried, and diffuses"
+	if t.Mode == "frozen" {
+		how = "it is carried, and does not diffuse"
+	}
+	state := "The drip time, its band and its history have it, at the first drip's wavelength, looked for from that of the drip without it to either side; the times of all other wavelengths leave it out."
+	if !t.Included {
+		state = "The drip time leaves it out: the closure does not know it. What it does is that of linear theory."
+	}
+	w("The undulation's perturbation of temperature is zero at the start; %s, as a state of the same system (no perturbation of viscosity). %s Without it the drip takes %s in linear theory, with it %s.", how, state, myr(t.Without), myr(t.With))
 }
 
 // softMethods says how rock softens that the drip itself strains.

@@ -42,6 +42,9 @@ func dripText(p *page, r *race.Result, events bool) {
 		tip = fmt.Sprintf("down by %s%s times the root's thickness at that time", short(pb.Drip.Criterion), star(pb, "drip.criterion"))
 	}
 	p.say("\"Dripped\" = tip %s; the drip takes %.0f %%%s of the root's mass.", tip, 100*pb.Drip.Removes, star(pb, "drip.removes"))
+	if d.Thermal != nil {
+		p.say("%s.", upper(d.Thermal.Words()))
+	}
 	if w := criticalWords(r); w != "" {
 		p.say("Thickness: %s.", w)
 	}
@@ -86,62 +89,6 @@ func softText(p *page, s *drip.SelfSoftened) {
 	}
 	if s.Failed > 0 {
 		p.say("%s left out: their viscosities did not settle.", Count(s.Failed, "wavelength"))
-	}
-}
-
-func excisionText(p *page, r *race.Result) {
-	p.section("EXCISION")
-	x, pb := r.Excision, r.Problem
-	if x.Outcome == "no zones" {
-		p.say("No shear zone cuts the root.")
-		return
-	}
-	for _, z := range pb.Zones {
-		active := short(z.From/Myr) + " to " + myr(z.To)
-		if math.IsInf(z.To, 1) {
-			active = "from " + short(z.From/Myr) + " Myr on"
-		}
-		s := fmt.Sprintf("%s, dip %.0f deg, slip %s mm/yr, %s", z.Name, z.Dip*180/math.Pi, short(z.SlipRate*1e3*Year), active)
-		if e := z.StrainRate(); e > 0 {
-			s += fmt.Sprintf(", strain rate %.0e 1/s", e)
-		}
-		p.say("%s.", s)
-	}
-	moment := "When the window ends"
-	if x.Outcome == "excised" {
-		moment = fmt.Sprintf("At %s, with %.0f %%%s of the root gone", when(pb, x.Time), 100*x.Share, star(pb, "drip.removes"))
-	}
-	gap := "missing"
-	if x.PressureGap < 0 {
-		gap = "repeated"
-	}
-	across := "the zones"
-	if len(pb.Zones) == 1 {
-		across = "the zone"
-	}
-	p.say("%s: slip %s km, heave %s km, throw %s km, %.2f GPa %s across %s.", moment, short(x.Slip/km), short(x.Heave/km), short(x.Throw/km), math.Abs(x.PressureGap)/1e9, gap, across)
-	switch {
-	case x.Outcome != "window":
-	case math.IsInf(x.LocalBeyond, 1):
-		p.say("At these rates %.0f %%%s of the root would never be gone.", 100*x.Share, star(pb, "drip.removes"))
-	default:
-		p.say("At these rates %.0f %%%s of the root would be gone at %s.", 100*x.Share, star(pb, "drip.removes"), when(pb, x.LocalBeyond))
-	}
-	if pb.ArcWidth > 0 {
-		mean := "Averaged over the arc that share is never reached"
-		if !math.IsInf(x.ArcMeanTime, 1) {
-			mean = "Averaged over the arc that share is reached at " + when(pb, x.ArcMeanTime)
-		}
-		p.say("That is %.0f %% extension of the arc. %s.", 100*x.ExtensionDemanded, mean)
-	} else {
-		p.say("No arc width is given, so the mean over the arc cannot be said.")
-	}
-	if !math.IsInf(x.CutThroughTime, 1) {
-		s := fmt.Sprintf("Cut through: slip %s km, heave %s km", short(x.CutThroughSlip/km), short(x.CutThroughHeave/km))
-		if pb.ArcWidth > 0 {
-			s += fmt.Sprintf(" = %.0f %% extension", 100*x.CutThroughHeave/pb.ArcWidth)
-		}
-		p.say("%s, at %s. The rock moves, none is lost.", s, when(pb, x.CutThroughTime))
 	}
 }
 

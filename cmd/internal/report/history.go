@@ -5,6 +5,7 @@ import (
 	"math"
 	"slices"
 
+	"keelfall/column"
 	"keelfall/solver/heat"
 	"keelfall/solver/race"
 )
@@ -13,9 +14,11 @@ import (
 type Past struct {
 	Problem  *race.Problem
 	History  *heat.History
-	Shown    []float64      // s: times of the geotherms that are printed and drawn, increasing
-	Rows     []float64      // s: times of the table's rows, increasing
-	Closures []heat.Closure // one for each of the problem's clocks
+	Shown    []float64         // s: times of the geotherms that are printed and drawn, increasing
+	Rows     []float64         // s: times of the table's rows, increasing
+	Closures []heat.Closure    // one for each of the problem's clocks
+	Isostasy []column.Isostasy // one for each of the history's times; nil where it is not known
+	Unknown  string            // why it is not known
 }
 
 // ReadClocks reads every clock at its marker.
@@ -39,6 +42,9 @@ func (p *Past) ReadClocks() error {
 // Warnings are the history's own, and the clocks'.
 func (p *Past) Warnings() []string {
 	w := slices.Clone(p.History.Warnings)
+	if p.Unknown != "" {
+		w = append(w, "the elevation is not known: "+p.Unknown)
+	}
 	for i, c := range p.Closures {
 		if c.Caution != "" {
 			w = append(w, p.Problem.Clocks[i].Name+": "+c.Caution)

@@ -9,10 +9,12 @@ import (
 // HistoryTable is the column against time.
 func HistoryTable(p *Past) Table {
 	h := p.History
-	t := Table{Name: "history", Header: []string{"time_Myr", "age_Ma", "surface_heat_flow_mW_m2", "root_base_temperature_degC", "root_thickness_km", "own_rock_depth_km", "melt_fraction_max", "reacted_share"}}
+	t := Table{Name: "history", Header: []string{"time_Myr", "age_Ma", "surface_heat_flow_mW_m2", "root_base_temperature_degC", "root_thickness_km", "own_rock_depth_km", "melt_fraction_max", "reacted_share",
+		"elevation_km", "extensional_force_N_m"}}
 	for i, at := range h.Time {
 		t.Rows = append(t.Rows, []string{cell(at / Myr), cell(p.age(at) / Myr), cell(h.SurfaceFlow[i] * 1e3), cell(p.root(h.RootBase, i) - zero),
-			cell(h.RootThickness[i] / km), cell(h.Depth[i] / km), cell(h.MeltFraction[i]), cell(p.reacted(i))})
+			cell(h.RootThickness[i] / km), cell(h.Depth[i] / km), cell(h.MeltFraction[i]), cell(p.reacted(i)),
+			cell(p.standing(i, elevation) / km), cell(p.standing(i, driving))})
 	}
 	return t
 }

@@ -13,6 +13,10 @@ type HistoryJSON struct {
 	OwnRock       []number          `json:"own_rock_depth_m"`
 	Melt          []number          `json:"melt_fraction_max"`
 	Reacted       []number          `json:"reacted_share"`
+	Elevation     []number          `json:"elevation_m"`
+	Potential     []number          `json:"potential_energy_N_m"`
+	Force         []number          `json:"extensional_force_N_m"`
+	Reference     *referenceJSON    `json:"reference"`
 	Events        []happeningJSON   `json:"events"`
 	Snapshots     []snapshotJSON    `json:"snapshots"`
 	Markers       []markerJSON      `json:"markers"`
@@ -113,7 +117,7 @@ func History(p *Past) HistoryJSON {
 	h := p.History
 	j := HistoryJSON{TimeZero: none, Time: numbers(h.Time), SurfaceFlow: numbers(h.SurfaceFlow), OwnRock: numbers(h.Depth), Melt: numbers(h.MeltFraction),
 		Events: []happeningJSON{}, Snapshots: []snapshotJSON{}, Markers: []markerJSON{}, Clocks: []clockJSON{}, EnergyError: none, MassError: none,
-		Steps: h.Steps, Rejected: h.Rejected, Limits: list(p.limits()), Warnings: list(p.Warnings())}
+		Reference: reference(p.Problem), Steps: h.Steps, Rejected: h.Rejected, Limits: list(p.limits()), Warnings: list(p.Warnings())}
 	if p.Problem.HasTimeZero {
 		j.TimeZero = number(p.Problem.TimeZero)
 	}
@@ -121,6 +125,9 @@ func History(p *Past) HistoryJSON {
 		j.RootBase = append(j.RootBase, number(p.root(h.RootBase, i)))
 		j.RootThickness = append(j.RootThickness, number(h.RootThickness[i]))
 		j.Reacted = append(j.Reacted, number(p.reacted(i)))
+		j.Elevation = append(j.Elevation, number(p.standing(i, elevation)))
+		j.Potential = append(j.Potential, number(p.standing(i, potential)))
+		j.Force = append(j.Force, number(p.standing(i, driving)))
 	}
 	for _, e := range heat.InOrder(p.Problem.Events) {
 		j.Events = append(j.Events, happeningJSON{e.Verb, e.Name, e.Layer, number(e.From), number(e.To), eventWords(&e)})

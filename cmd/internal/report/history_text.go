@@ -18,6 +18,7 @@ func HistoryPage(p *Past) string {
 	}
 	p.events(pg)
 	p.rows(pg)
+	p.heights(pg)
 	for i := range p.History.Paths {
 		p.path(pg, &p.History.Paths[i], i == 0)
 	}

@@ -27,10 +27,15 @@ type ColumnJSON struct {
 	SurfaceFlow    number          `json:"surface_heat_flow_W_m2"`
 	BaseFlow       number          `json:"base_heat_flow_W_m2"`
 	HeatResidual   number          `json:"heat_residual"`
-	Sinking        []sinkingJSON   `json:"sinking"`  // each rock against the rock below it
-	DepthOf        []depthJSON     `json:"depth_of"` // of pressures asked for
-	Fit            *fitJSON        `json:"geotherm_fit"`
-	Warnings       []string        `json:"warnings"`
+	standingJSON
+	Level         number         `json:"compensation_depth_m"`
+	Asthenosphere number         `json:"asthenosphere_kg_m3"` // at that depth
+	WithoutRoot   *standingJSON  `json:"without_root"`        // asthenosphere in its place; null without a root
+	Reference     *referenceJSON `json:"reference"`
+	Sinking       []sinkingJSON  `json:"sinking"`  // each rock against the rock below it
+	DepthOf       []depthJSON    `json:"depth_of"` // of pressures asked for
+	Fit           *fitJSON       `json:"geotherm_fit"`
+	Warnings      []string       `json:"warnings"`
 }
 
 type interfaceJSON struct {
@@ -68,6 +73,7 @@ func Column(p *race.Problem, s *state.State) ColumnJSON {
 	if c.Sinking, err = sinking(s); err != nil {
 		c.Warnings = append(c.Warnings, "what the rocks weigh against one another is not known: "+err.Error())
 	}
+	c.isostasy(p, s)
 	c.DepthOf = []depthJSON{}
 	if p.GeothermFit != nil {
 		c.Fit = fit(p.GeothermFit)

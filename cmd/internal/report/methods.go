@@ -33,6 +33,7 @@ func Methods(r *race.Result, p ProvenanceJSON) string {
 	densities(w, pb)
 	measuredMethods(w, pb)
 	creepMethods(w, pb)
+	isostasyMethods(w, pb)
 	w("## Growth\n")
 	w("Linear stability of incompressible layered Stokes flow, w = W(z) cos kx, u = U(z) sin kx:\n")
 	w("    W' = −kU,  U' = kW + S/η,  Σ' = −kS − g δρ,  S' = kΣ + 4ηk²U\n")
@@ -41,12 +42,8 @@ func Methods(r *race.Result, p ProvenanceJSON) string {
 	if r.Drip != nil {
 		w("## Drip\n")
 		dripMethods(w, r)
-		omission := ""
-		if len(pb.Zones) > 0 {
-			omission = " [omission]"
-		}
 		w("## Excision\n")
-		w("A zone of dip θ slipping at s through layering that dips δ towards it takes s sin(θ − δ)/cos δ of vertical thickness per time from the rock directly above it, the lowest of its layers first, and slips on until its interval ends. Heave is s cos θ, throw s sin θ; averaged over an arc of width B a root layer of thickness h loses h × heave/(B + heave) by the zones that cut it, from when they have reached the root%s.\n", omission)
+		excisionMethods(w, pb)
 		w("## Verdict\n")
 		w("One clock for both fates: it stops when %g of the root's initial mass is gone. The mechanism with the larger part is named; both, where the smaller is at least half the larger; preserved, where the window of %s ends first. It is for the column the zones cross; the mean over the arc stands beside it. What would change it is looked for one number at a time; distances are |Δ ln p|, for a density |Δρ|/100 kg/m³, a temperature |ΔT|/100 K, a slip rate from 0 in mm/yr.\n", r.Verdict.Share, myr(pb.Drip.Window))
 	}

@@ -32,7 +32,7 @@ func stays(r *column.Reaction) string {
 	if r.Kinetics == nil {
 		return "stays as it is"
 	}
-	return "stays as it is in spectrum, mode, excise and column; history and the drip follow it"
+	return "stays as it is in spectrum, mode and column; history, the drip and excise follow it"
 }
 
 // meltMethods says how much melt a rock has and what it does.

@@ -26,6 +26,7 @@ func Page(r *race.Result) string {
 	}
 	answer(p, r)
 	columnText(p, r.Problem, r.State)
+	isostasyText(p, r.Problem, r.State, false)
 	if n := rootNeed(r.State); n != "" {
 		p.say("%s", n)
 	}

@@ -35,6 +35,8 @@ func ColumnPage(p *race.Problem, s *state.State, depths []DepthOf) string {
 		fitText(pg, p.GeothermFit)
 	}
 	weightText(pg, s)
+	pg.section("ELEVATION")
+	isostasyText(pg, p, s, true)
 	depthsText(pg, s, depths)
 	return pg.b.String()
 }
@@ -69,13 +71,6 @@ func DripPage(p *race.Problem, r *race.Result) string {
 	firstText(pg, r)
 	exponentsText(pg, r)
 	undulationsText(pg, r)
-	return pg.b.String()
-}
-
-// ExcisionPage is the text of `keelfall excise`.
-func ExcisionPage(p *race.Problem, r *race.Result) string {
-	pg := titled(p)
-	excisionText(pg, r)
 	return pg.b.String()
 }
 

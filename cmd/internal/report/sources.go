@@ -8,6 +8,7 @@ import (
 
 	"keelfall/column"
 	"keelfall/rheology"
+	"keelfall/solver/excision"
 	"keelfall/solver/race"
 )
 
@@ -59,6 +60,9 @@ func Sources(p *race.Problem) []SourceJSON {
 	}
 	if len(p.Zones) > 0 {
 		s = append(s, SourceJSON{"omission", "common practice", "omission, heave and throw of a zone from its dip and slip: plane geometry; arc mean h × heave/(B + heave): derived"})
+	}
+	if drives(p, excision.ForceBalance) {
+		s = append(s, SourceJSON{"zone-forces", "derived", "force balance of a shear zone: creep at s/(2b), friction of a plane that extension unloads (Anderson 1905, Trans. Edinb. Geol. Soc. 8, from memory), flow below its root, the plate beside it in series; shear heat τ s"})
 	}
 	s = append(s, mineralSources(p)...)
 	s = append(s, flowSources(p)...)
@@ -130,6 +134,9 @@ func lawsOf(p *race.Problem) []rheology.Law {
 		add(p.Column.Layers[i].Viscosity.Creep)
 	}
 	add(p.Column.Base.Viscosity.Creep)
+	for i := range p.Zones {
+		add(p.Zones[i].Creep)
+	}
 	return laws
 }
 
