@@ -13,10 +13,12 @@ import (
 )
 
 // warmStep is the share of the drip time without T' that is one step; warmEnd is up to
-// how many times that a drip with T' is looked for.
+// how many times that a drip with T' is looked for. Where a drip without T' comes only after
+// warmWindows windows, T' is not followed: the verdict cannot hang on it.
 const (
-	warmStep = 1.0 / 64
-	warmEnd  = 20
+	warmStep    = 1.0 / 64
+	warmEnd     = 20
+	warmWindows = 10
 )
 
 // warmProblem is a root in a column that does not change, its temperature perturbed.
@@ -163,7 +165,7 @@ func (p *problem) warm(ctx context.Context, s *state.State, limit float64, r *Re
 		f, err := p.frozen(p.solver, r.Wavelength)
 		return answered{f, p.solver}, err
 	}
-	if !p.set.mayWarm(s) {
+	if !p.set.mayWarm(s) || r.Time > warmWindows*p.set.Window {
 		return plain()
 	}
 	q, err := newWarm(p, s, r.Time)
@@ -193,7 +195,7 @@ func (p *problem) warm(ctx context.Context, s *state.State, limit float64, r *Re
 
 // warmTime is the time of a drip without T' with it, at the same wavelength.
 func (p *problem) warmTime(s *state.State, f Fastest) (float64, error) {
-	if math.IsInf(f.Time, 1) || !p.set.mayWarm(s) {
+	if f.Time > warmWindows*p.set.Window || !p.set.mayWarm(s) {
 		return f.Time, nil
 	}
 	q, err := newWarm(p, s, f.Time)

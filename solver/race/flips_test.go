@@ -209,7 +209,7 @@ func TestFlipOfHeatFlow(t *testing.T) {
 		p := problem(0.05)
 		for i := range p.Column.Layers {
 			l := &p.Column.Layers[i]
-			l.Conductivity.Reference = 3
+			l.Conductivity.Reference, l.HeatCapacity = 3, 1000
 		}
 		// expansivity makes the contrast depend on temperature
 		p.Column.Layers[1].Density = column.EquationOfState{Reference: 3480, Expansivity: 3e-4, ReferenceTemperature: 273}

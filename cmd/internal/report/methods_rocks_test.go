@@ -174,7 +174,7 @@ func TestReactedByDepth(t *testing.T) {
 		t.Errorf("one share: %s", got)
 	}
 	r.Kinetics = &column.Kinetics{Prefactor: 1}
-	if !strings.Contains(stays(&r), "history and the drip follow it") {
+	if !strings.Contains(stays(&r), "history, the drip and excise follow it") {
 		t.Error(stays(&r))
 	}
 }
