@@ -12,14 +12,21 @@ import (
 	"keelfall/solver/state"
 )
 
-// warmStep is the share of the drip time without T' that is one step; warmEnd is up to
-// how many times that a drip with T' is looked for. Where a drip without T' comes only after
-// warmWindows windows, T' is not followed: the verdict cannot hang on it.
+// warmStep is the share of the drip time without T' that is one step; warmEnd is up to how
+// many times that a drip with T' is looked for. T' is not followed where a drip without it
+// comes only after warmWindows windows, as the verdict cannot hang on it, nor at
+// wavelengths below the column's depth over warmShort, whose T' takes hundreds of states.
 const (
 	warmStep    = 1.0 / 64
 	warmEnd     = 20
 	warmWindows = 10
+	warmShort   = 20
 )
+
+// followsHeat says whether T' is followed for a drip without it at this time and wavelength.
+func (p *problem) followsHeat(s *state.State, f Fastest) bool {
+	return f.Time <= warmWindows*p.set.Window && f.Wavelength*warmShort >= s.Column.Depth() && p.set.mayWarm(s)
+}
 
 // warmProblem is a root in a column that does not change, its temperature perturbed.
 type warmProblem struct {
@@ -165,7 +172,7 @@ func (p *problem) warm(ctx context.Context, s *state.State, limit float64, r *Re
 		f, err := p.frozen(p.solver, r.Wavelength)
 		return answered{f, p.solver}, err
 	}
-	if !p.set.mayWarm(s) || r.Time > warmWindows*p.set.Window {
+	if !p.followsHeat(s, Fastest{r.Time, r.Wavelength}) {
 		return plain()
 	}
 	q, err := newWarm(p, s, r.Time)
@@ -195,7 +202,7 @@ func (p *problem) warm(ctx context.Context, s *state.State, limit float64, r *Re
 
 // warmTime is the time of a drip without T' with it, at the same wavelength.
 func (p *problem) warmTime(s *state.State, f Fastest) (float64, error) {
-	if f.Time > warmWindows*p.set.Window || !p.set.mayWarm(s) {
+	if !p.followsHeat(s, f) {
 		return f.Time, nil
 	}
 	q, err := newWarm(p, s, f.Time)
