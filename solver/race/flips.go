@@ -81,7 +81,7 @@ func (r *Result) flips(ctx context.Context, say func(string)) error {
 // flip looks for the nearest change of the verdict along one search, on one core.
 func (r *Result) flip(ctx context.Context, s *search, near float64) Flip {
 	p, now := r.Problem, r.Verdict.Outcome
-	look := func(x float64) trial {
+	at := func(x float64, drip func(*Problem, *state.State) (float64, error)) trial {
 		q := *p
 		q.Workers = 1
 		q.Column.Layers = slices.Clone(p.Column.Layers)
@@ -91,18 +91,47 @@ func (r *Result) flip(ctx context.Context, s *search, near float64) Flip {
 			if s.zones && !p.Moving() {
 				return r.Drip.Time, nil
 			}
+			return drip(&q, st)
+		})
+	}
+	look := func(x float64) trial {
+		return at(x, func(q *Problem, st *state.State) (float64, error) {
 			return q.dripTime(ctx, st, near, 3*q.Drip.Window) // further, the time of a drip guides no search
 		})
+	}
+	whole := func(x float64) string {
+		return at(x, func(q *Problem, st *state.State) (float64, error) {
+			d, err := Drip(ctx, q, st)
+			if err != nil {
+				return 0, err
+			}
+			return d.Time, nil
+		}).outcome
 	}
 	f := s.flip
 	f.To, f.Keys = f.From, s.keys(0)
 	if x, to := nearest(look, trial{now, math.Log(r.Drip.Time / until(r.Excision, p.Drip.Window))}, s.most); to != "" {
+		if !p.Moving() { // the quick time may miss the whole answer's by a little
+			x, to = confirmed(whole, x, now, to)
+		}
 		f.To, f.Found, f.Distance, f.Outcome, f.Keys, f.at = s.value(x), true, math.Abs(x), to, s.keys(x), x
 		if f.HasContrast {
 			f.ContrastTo = f.ContrastFrom + perDensity*x
 		}
 	}
 	return f
+}
+
+// confirmed moves a change found at x outwards until the whole computation has another
+// outcome than now as well: by nearestWidth at first, then twice as far each time.
+func confirmed(whole func(x float64) string, x float64, now, to string) (float64, string) {
+	for step := nearestWidth; step < 0.2; step *= 2 {
+		if there := whole(x); there != now {
+			return x, there
+		}
+		x += math.Copysign(step, x)
+	}
+	return x, to
 }
 
 // until is when something other than a drip decides, s.

@@ -162,7 +162,7 @@ func TestReversalKeys(t *testing.T) {
 
 // JSON carries the warnings that the commands print, and no number without a value.
 func TestJSON(t *testing.T) {
-	r, prov := result(t, "tarnvik")
+	r, prov := result(t, "tarnvik", "base.temperature=1300 degC")
 	b, err := Encode(Result(r, prov))
 	if err != nil {
 		t.Fatal(err)
