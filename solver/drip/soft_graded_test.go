@@ -69,6 +69,9 @@ func TestSoftGradedNewtonian(t *testing.T) {
 // In power-law rock the parts that are used are as good as four times as many, and as
 // many uniform layers, extrapolated to infinitely many (second order: TestGradedSliced).
 func TestSoftGradedParts(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and long under the race detector")
+	}
 	root := func(c *column.Column) *column.Column {
 		for i := range c.Layers {
 			c.Layers[i].Viscosity.Exponent = 3
@@ -115,6 +118,9 @@ func TestSoftGradedParts(t *testing.T) {
 
 // A root that grades in a column that does not change is the still one.
 func TestSoftGradedStill(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and long under the race detector")
+	}
 	s, err := state.New(gradedCrust(3), 1e-15)
 	if err != nil {
 		t.Fatal(err)
@@ -167,6 +173,9 @@ func growing() heat.Event {
 // (measured). Rock that comes to the base and reacts within the last cells moves any
 // course's times by some 0.5 % (TestRundalRuns).
 func TestSoftReactingNewtonian(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and long under the race detector")
+	}
 	set := common()
 	set.Window = 50 * myr
 	for _, v := range []struct {

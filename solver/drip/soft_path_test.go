@@ -82,6 +82,9 @@ func powerful(n float64) *column.Column {
 // A column in which nothing changes is the still one: the closure's time, and the best
 // estimate, of the same wavelength; its laws are tabulated otherwise.
 func TestSoftStill(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and long under the race detector")
+	}
 	c := powerful(3)
 	s, err := state.New(c, 1e-15)
 	if err != nil {
@@ -145,6 +148,9 @@ func TestSoftBlowUp(t *testing.T) {
 // In Newtonian rock the closure has nothing to soften: the linear course's times, with
 // heat, stretching, and rock that comes in.
 func TestSoftNewtonian(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and long under the race detector")
+	}
 	set := common()
 	set.Window = 50 * myr
 	sill := heat.Event{Verb: "intrude", Name: "sill", Layer: "lower crust", From: 1 * myr, To: 1 * myr, Thickness: 2e3, Temperature: 1400,
@@ -226,6 +232,9 @@ func TestSoftTangent(t *testing.T) {
 
 // Nodes four times as close in the middle's error, and finer steps, move no time by 0.1 %.
 func TestSoftHalved(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and long under the race detector")
+	}
 	for _, e := range []float64{0, 3e-16, -1e-15} {
 		p := chilled(0.005, e)
 		whole, fine := soften(t, p, softly()), soften(t, p, softly())

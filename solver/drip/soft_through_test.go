@@ -11,6 +11,9 @@ import (
 
 // The whole answer answers the quick one, and its drips come one after another.
 func TestSoftThrough(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and long under the race detector")
+	}
 	p, set := chilled(0.02, 3e-16), softly()
 	r, err := Through(ctx, p, set, Options{})
 	if err != nil {

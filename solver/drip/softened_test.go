@@ -53,6 +53,9 @@ func TestSoftenedNewtonian(t *testing.T) {
 // TestSoftenedSearch: creep laws drip the sooner, by far more than in proportion, the
 // larger the undulation, and a search around a wavelength finds the whole range's answer.
 func TestSoftenedSearch(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and long under the race detector")
+	}
 	s := creeping(t, 1e-15)
 	set := drip.Settings{Amplitude: 1500, Criterion: 1, Window: 30e6 * 365.25 * 86400, Removes: 0.3, Softening: "self"}
 	r, err := drip.Solve(context.Background(), s, set, drip.Options{})
@@ -72,6 +75,9 @@ func TestSoftenedSearch(t *testing.T) {
 
 // TestSoftenedBuoyant: a root lighter than what lies below it is said to be so.
 func TestSoftenedBuoyant(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and long under the race detector")
+	}
 	light := arc(3000)
 	light.Layers[1].Viscosity.Exponent = 2
 	s, err := state.New(light, 1e-15)

@@ -145,6 +145,9 @@ func TestWarmHalved(t *testing.T) {
 // Through answers with T' for the first drip and those after it, and its first trace ends
 // at the drip; the ratio of one wavelength is near that of the answer.
 func TestWarmThrough(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and long under the race detector")
+	}
 	set := common()
 	set.Window = 40 * myr
 	none, err := Through(ctx, cooling(0.02, 0), set, Options{From: 80e3, To: 240e3})

@@ -216,6 +216,9 @@ func joined(d *course) *course {
 // that cools, and in ones that stretch and thicken as they do. Both have the same
 // temperatures: those of two runs of the heat differ by as much themselves.
 func TestHalved(t *testing.T) {
+	if testing.Short() {
+		t.Skip("one goroutine, and long under the race detector")
+	}
 	for _, e := range []float64{0, 3e-16, -1e-15} {
 		set := common()
 		set.Window = 50 * myr
