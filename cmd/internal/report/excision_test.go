@@ -7,25 +7,13 @@ import (
 	"strings"
 	"testing"
 
-	"keelfall/configs"
 	"keelfall/solver/race"
 )
 
 // excised follows the zones of an example, changed.
 func excised(t *testing.T, name string, set ...string) *race.Result {
 	t.Helper()
-	text, err := configs.Example(name)
-	if err != nil {
-		t.Fatal(err)
-	}
-	e, err := configs.Reader{}.Read(name+".yaml", strings.NewReader(text), set...)
-	if err != nil {
-		t.Fatal(err)
-	}
-	p, err := e.Problem()
-	if err != nil {
-		t.Fatal(err)
-	}
+	_, p := builtIn(t, name, set...)
 	s, err := race.Prepare(&p)
 	if err != nil {
 		t.Fatal(err)

@@ -16,11 +16,9 @@ import (
 	"keelfall/solver/race"
 )
 
-// result runs a built-in experiment with changes, quickly: without softening by the drip
-// itself unless the changes ask for it.
-func result(t *testing.T, name string, set ...string) (*race.Result, ProvenanceJSON) {
+// builtIn reads a built-in experiment with changes.
+func builtIn(t *testing.T, name string, set ...string) (*configs.Experiment, race.Problem) {
 	t.Helper()
-	set = append([]string{"drip.softening=none"}, set...)
 	text, err := configs.Example(name)
 	if err != nil {
 		t.Fatal(err)
@@ -33,6 +31,15 @@ func result(t *testing.T, name string, set ...string) (*race.Result, ProvenanceJ
 	if err != nil {
 		t.Fatal(err)
 	}
+	return e, p
+}
+
+// result runs a built-in experiment with changes, quickly: without softening by the drip
+// itself unless the changes ask for it.
+func result(t *testing.T, name string, set ...string) (*race.Result, ProvenanceJSON) {
+	t.Helper()
+	set = append([]string{"drip.softening=none"}, set...)
+	e, p := builtIn(t, name, set...)
 	r, err := race.Run(context.Background(), &p)
 	if err != nil {
 		t.Fatal(err)
